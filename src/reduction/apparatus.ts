@@ -1,0 +1,73 @@
+/** The rig as the session file describes it: SI units, every `u_…` a standard uncertainty (0 where left out). */
+export interface Apparatus {
+  readonly coil?: Coil | undefined;
+  readonly magnet?: Magnet | undefined;
+  readonly fibre?: Fibre | undefined;
+}
+
+export type Coil = CoilByDimensions | CoilByConstant;
+
+/** Two coaxial coils; the second one's values default to the first one's. `spacing_m` is between their middle planes. */
+export interface CoilByDimensions {
+  readonly turns_per_coil: number;
+  readonly u_turns_per_coil?: number | undefined;
+  readonly turns_second_coil?: number | undefined;
+  readonly u_turns_second_coil?: number | undefined;
+  readonly radius_m: number;
+  readonly u_radius_m?: number | undefined;
+  readonly radius_second_coil_m?: number | undefined;
+  readonly u_radius_second_coil_m?: number | undefined;
+  readonly spacing_m: number;
+  readonly u_spacing_m?: number | undefined;
+}
+
+/** A coil pair whose field per ampere at the bar was measured. */
+export interface CoilByConstant {
+  readonly constant_T_per_A: number;
+  readonly u_constant_T_per_A?: number | undefined;
+}
+
+export type Magnet = Cylinder | Bar | KnownInertia;
+
+export interface Cylinder {
+  readonly shape: 'cylinder';
+  readonly mass_kg: number;
+  readonly u_mass_kg?: number | undefined;
+  readonly length_m: number;
+  readonly u_length_m?: number | undefined;
+  readonly diameter_m: number;
+  readonly u_diameter_m?: number | undefined;
+}
+
+export interface Bar {
+  readonly shape: 'bar';
+  readonly mass_kg: number;
+  readonly u_mass_kg?: number | undefined;
+  readonly length_m: number;
+  readonly u_length_m?: number | undefined;
+  /** Horizontal width, across the length. */
+  readonly width_m: number;
+  readonly u_width_m?: number | undefined;
+}
+
+export interface KnownInertia {
+  readonly inertia_kg_m2: number;
+  readonly u_inertia_kg_m2?: number | undefined;
+  /** Only for the mean of the coil field over the bar. */
+  readonly length_m?: number | undefined;
+  readonly u_length_m?: number | undefined;
+}
+
+export interface Fibre {
+  readonly stiffness_N_m_per_rad: number;
+  readonly u_stiffness_N_m_per_rad?: number | undefined;
+}
+
+/** Where and when, for the field that the World Magnetic Model expects there. `date` is YYYY-MM-DD. */
+export interface Place {
+  readonly latitude_deg: number;
+  readonly longitude_deg: number;
+  /** Height above the WGS84 ellipsoid. */
+  readonly height_m: number;
+  readonly date: string;
+}
