@@ -1,0 +1,28 @@
+import type { Estimate } from '../numerics/estimate.ts';
+import type { Point } from '../reduction/reduction.ts';
+import type { SegmentResult } from '../report/results.ts';
+
+const RAD = Math.PI / 180;
+
+/**
+ * A row of the table as the reduction sees it. Made from the row alone, so that a reduction repeated from a results
+ * file agrees with the first one to the last digit.
+ */
+export function pointOf(row: SegmentResult): Point {
+  return {
+    id: row.id,
+    current_A: row.current_A,
+    u_current_A: row.u_current_A,
+    sweep: row.sweep,
+    status: row.status,
+    f0_Hz: estimate(row.f0_Hz, row.u_f0_Hz, row.dof_f0, 1),
+    equilibrium_rad: estimate(row.equilibrium_deg, row.u_equilibrium_deg, row.dof_f0, RAD),
+    viewFrame: `${row.recording} ${row.view_kind}`,
+    ...(row.left_out !== null && { leftOut: row.left_out }),
+  };
+}
+
+function estimate(value: number | null, u: number | null, dof: number | null, unit: number): Estimate | null {
+  if (value === null || u === null) return null;
+  return { value: value * unit, u: u * unit, dof: dof ?? Number.POSITIVE_INFINITY };
+}
