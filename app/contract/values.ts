@@ -1,0 +1,259 @@
+import { z } from 'zod';
+import { sessionSchema } from '../../src/session/session.ts';
+
+/*
+ * The plain data that crosses between window and host. Long data are aligned columns in typed arrays.
+ * Units are in the names; angles are in degrees on this border, or pixels where `unit` says so.
+ */
+
+export const bytes = z.custom<Uint8Array<ArrayBuffer>>((v) => v instanceof Uint8Array, 'bytes');
+export const reals = z.custom<Float64Array>((v) => v instanceof Float64Array, 'a column of numbers');
+
+export const id = z.string().min(1).max(64);
+const nonNegative = z.number().nonnegative();
+
+/** A file that the user chose, dropped or named, as the window knows it. `token` is opaque. */
+export const fileToken = z.strictObject({ token: z.string().min(1).max(128), name: z.string().max(1024) });
+export type FileToken = z.infer<typeof fileToken>;
+
+export const region = z.strictObject({ x: z.number(), y: z.number(), width: z.number(), height: z.number() });
+
+/** A view that needn't be in the session yet: `SessionView` without id and recording. Displayed pixels, degrees. */
+export const looseView = z.discriminatedUnion('kind', [
+  z.strictObject({ kind: z.literal('plan'), region }),
+  z.strictObject({ kind: z.literal('oblique'), region, elevation_deg: z.number().gt(0).lte(90) }),
+  z.strictObject({
+    kind: z.literal('side'),
+    region,
+    axis_x_px: z.number(),
+    half_length_px: z.number().positive().nullable(),
+    facing_deg: z.number().min(-90).max(90).nullable(),
+  }),
+]);
+export type LooseView = z.infer<typeof looseView>;
+
+/** Facts of a recording, as `needlebeat inspect` prints them; the window shows them and reads the named ones. */
+export const recordingFacts = z.looseObject({
+  width_px: z.number(),
+  height_px: z.number(),
+  rotation_deg: z.number(),
+  frames: z.number(),
+  duration_s: z.number(),
+  container: z.string(),
+  codec: z.string(),
+  nominal_rate_Hz: z.number().nullable(),
+  measured_rate_Hz: z.number().nullable(),
+  longest_gap_s: z.number().nullable(),
+  rate_varies: z.boolean(),
+});
+export type RecordingFacts = z.infer<typeof recordingFacts>;
+
+/**
+ * One recording of the session as the host has it. `ready`: it can be looked at; `time_s` has the presentation time
+ * of every displayed frame (from the first one, after time_scale), so frame index = position in it.
+ * `missing`: not where the session says; ask the user for it. `unusable`: there, but `problem` says what is wrong.
+ */
+export const recordingState = z.object({
+  id,
+  name: z.string(),
+  state: z.enum(['opening', 'ready', 'missing', 'unusable']),
+  problem: z.string().nullable(),
+  facts: recordingFacts.nullable(),
+  time_s: reals.nullable(),
+});
+export type RecordingState = z.infer<typeof recordingState>;
+
+/** The document: the session (null: nothing is open) and what can be done with it. The host has the only copy that counts. */
+export const documentState = z.object({
+  session: sessionSchema.nullable(),
+  /** Grows with every change; an edit names the revision it was made on. */
+  revision: z.number(),
+  canUndo: z.boolean(),
+  undoLabel: z.string().nullable(),
+  canRedo: z.boolean(),
+  redoLabel: z.string().nullable(),
+  /** Differs from what its file holds (or has no file). The working copy is always safe on disk. */
+  dirty: z.boolean(),
+  /** Base name of its file, null: never saved. */
+  fileName: z.string().nullable(),
+  /** The session was brought back from the working copy of a run that ended without warning. */
+  restored: z.boolean(),
+  recordings: z.array(recordingState),
+});
+export type DocumentState = z.infer<typeof documentState>;
+
+export const check = z.object({
+  code: z.string(),
+  severity: z.enum(['note', 'doubt', 'fault']),
+  message: z.string(),
+});
+
+/** Value and standard uncertainty (k = 1) in the unit of the field that holds it. */
+export const estimate = z.object({ value: z.number(), u: z.number() });
+
+const number = z.number().nullable();
+
+/** One segment of results.json, named as there. */
+export const segmentResult = z.looseObject({
+  id,
+  recording: id,
+  start_s: z.number(),
+  end_s: z.number(),
+  current_A: number,
+  u_current_A: number,
+  sweep: z.enum(['rising', 'falling']).nullable().optional(),
+  status: z.enum(['measured', 'doubtful', 'unmeasured']),
+  f0_Hz: number,
+  u_f0_Hz: number,
+  fd_Hz: number,
+  u_fd_Hz: number,
+  gamma_per_s: number,
+  u_gamma_per_s: number,
+  amplitude_start_deg: number,
+  amplitude_end_deg: number,
+  equilibrium_deg: number,
+  u_equilibrium_deg: number,
+  cycles: number,
+  frames: number,
+  frames_lost: number,
+  residual_rms_deg: number,
+  swing_Hz: number,
+  swing_share: number,
+  checks: z.array(check),
+});
+export type SegmentResult = z.infer<typeof segmentResult>;
+
+/** `reduction` of results.json; fields that aren't named here pass through. */
+export const reductionResult = z.looseObject({
+  ambient_T: number.optional(),
+  u_ambient_T: number.optional(),
+  slope_Hz2_per_A: number.optional(),
+  u_slope_Hz2_per_A: number.optional(),
+  intercept_Hz2: number.optional(),
+  u_intercept_Hz2: number.optional(),
+  checks: z.array(check),
+});
+export type ReductionResult = z.infer<typeof reductionResult>;
+
+/**
+ * The results as they would be exported now, segments in session order (only those measured so far), and the reduction
+ * over them. `pending`: segments to be measured or being measured; `stale`: their last results are of an earlier edit.
+ */
+export const resultsState = z.object({
+  revision: z.number(),
+  results: z.looseObject({ segments: z.array(segmentResult), reduction: reductionResult }).nullable(),
+  pending: z.array(id),
+  stale: z.array(id),
+  /** The segment being measured, and how far: 0 to 1. */
+  measuring: z.object({ segment: id, share: z.number() }).nullable(),
+});
+export type ResultsState = z.infer<typeof resultsState>;
+
+/** A trace for drawing: rows ascending in time. */
+export const traceColumns = z.object({
+  unit: z.enum(['deg', 'px']),
+  time_s: reals,
+  angle: reals,
+  quality: reals,
+  x_px: reals,
+  y_px: reals,
+});
+export type TraceColumns = z.infer<typeof traceColumns>;
+
+/** What has been followed of one view, and the stretches that are covered (start, end in seconds). */
+export const overview = traceColumns.extend({ covered: z.array(z.tuple([z.number(), z.number()])) });
+export type Overview = z.infer<typeof overview>;
+
+/** A fit drawn over its data, row by row of the segment's trace; `used` is 1 where the row went into the fit. Spectra: amplitude in `unit`. */
+export const fitCurves = z.object({
+  unit: z.enum(['deg', 'px']),
+  time_s: reals,
+  angle: reals,
+  fitted: reals.nullable(),
+  residual: reals.nullable(),
+  used: bytes,
+  spectrum: z.object({ frequency_Hz: reals, amplitude: reals, residualAmplitude: reals.nullable() }).nullable(),
+});
+export type FitCurves = z.infer<typeof fitCurves>;
+
+/** The quick fit of a stretch of the overview trace. Lengths in `unit` where a field says so. */
+export const previewFit = z.discriminatedUnion('ok', [
+  z.object({
+    ok: z.literal(true),
+    unit: z.enum(['deg', 'px']),
+    f0_Hz: estimate,
+    fd_Hz: estimate,
+    gamma_per_s: estimate,
+    q: estimate.nullable(),
+    /** In `unit`. */
+    amplitudeStart: z.number(),
+    amplitudeEnd: z.number(),
+    equilibrium: estimate,
+    residualRms: z.number(),
+    cycles: z.number(),
+    checks: z.array(check),
+    curves: fitCurves,
+  }),
+  z.object({ ok: z.literal(false), checks: z.array(check), curves: fitCurves.nullable() }),
+]);
+export type PreviewFit = z.infer<typeof previewFit>;
+
+/** One picture of a recording; `width_px`, `height_px` are the JPEG's own size, `index` and `time_s` the frame's. */
+export const picture = z.object({
+  jpeg: bytes,
+  index: z.number(),
+  time_s: z.number(),
+  width_px: z.number(),
+  height_px: z.number(),
+});
+export type Picture = z.infer<typeof picture>;
+
+/** Where the bar was seen in one frame: outline points [x, y] in displayed pixels of the full-size frame. */
+export const barFound = z.discriminatedUnion('found', [
+  z.object({
+    found: z.literal(true),
+    frame: z.number(),
+    outline: z.array(z.tuple([z.number(), z.number()])),
+    unit: z.enum(['deg', 'px']),
+    angle: z.number(),
+    quality: z.number(),
+  }),
+  z.object({ found: z.literal(false), message: z.string() }),
+]);
+export type BarFound = z.infer<typeof barFound>;
+
+/**
+ * What became of something that was to be saved. `file`: it is at the place that the user chose. `download`: the browser is to fetch
+ * `address` (same origin, works once). `needs_place`: nothing was written; ask the user where, then call again with the token.
+ */
+export const saved = z.discriminatedUnion('saved', [
+  z.object({ saved: z.literal('file'), name: z.string() }),
+  z.object({ saved: z.literal('download'), name: z.string(), address: z.string() }),
+  z.object({ saved: z.literal('needs_place'), suggestedName: z.string() }),
+]);
+export type Saved = z.infer<typeof saved>;
+
+export const recentSession = z.object({ id, name: z.string(), title: z.string(), opened: z.string() });
+export type RecentSession = z.infer<typeof recentSession>;
+
+/** What About shows. */
+export const aboutFacts = z.object({
+  program: z.string(),
+  version: z.string(),
+  runtime: z.array(z.object({ name: z.string(), version: z.string() })),
+  ffmpeg: z.object({ version: z.string(), source: z.string() }).nullable(),
+  ffprobe: z.object({ version: z.string(), source: z.string() }).nullable(),
+  cautions: z.array(z.string()),
+});
+export type AboutFacts = z.infer<typeof aboutFacts>;
+
+/** Share of a job that is done. `rate` is seconds of recording per second, `frameRate_Hz` frames per second; null until known. */
+export const jobProgress = z.object({
+  job: id,
+  done_s: nonNegative,
+  total_s: nonNegative,
+  rate: number,
+  frameRate_Hz: number,
+  remaining_s: number,
+});
+export type JobProgress = z.infer<typeof jobProgress>;
