@@ -14,7 +14,7 @@ export interface CommandState {
   readonly busy: boolean;
 }
 
-export type Menu = 'file' | 'edit' | 'picture' | 'time' | 'segment' | 'help';
+export type Menu = 'file' | 'edit' | 'sheets' | 'picture' | 'time' | 'segment' | 'help';
 
 interface CommandEntry {
   readonly id: string;
@@ -46,6 +46,10 @@ export const commands = [
   { id: 'undo', menu: 'edit', label: 'Undo', accelerator: 'CmdOrCtrl+Z', needs: ['canUndo'] },
   { id: 'redo', menu: 'edit', label: 'Redo', accelerator: 'CmdOrCtrl+Shift+Z', needs: ['canRedo'] },
   { id: 'copy-table', menu: 'edit', label: 'Copy table', accelerator: 'CmdOrCtrl+Shift+C', needs: ['results'] },
+  { id: 'sheet-view', menu: 'sheets', label: 'View sheet', accelerator: '1', needs: ['recording'] },
+  { id: 'sheet-segment', menu: 'sheets', label: 'Segment sheet', accelerator: '2', needs: ['recording'] },
+  { id: 'sheet-field', menu: 'sheets', label: 'Field sheet', accelerator: '3', needs: ['recording'] },
+  { id: 'sheet-apparatus', menu: 'sheets', label: 'Apparatus sheet', accelerator: '4', needs: ['recording'] },
   { id: 'draw-region', menu: 'picture', label: 'Draw a region', accelerator: 'R', needs: ['recording'] },
   { id: 'zoom-in', menu: 'picture', label: 'Zoom in', accelerator: '+', needs: ['recording'] },
   { id: 'zoom-out', menu: 'picture', label: 'Zoom out', accelerator: '-', needs: ['recording'] },
@@ -60,8 +64,8 @@ export const commands = [
   { id: 'time-zoom-in', menu: 'time', label: 'Shorter stretch', accelerator: 'Shift+Up', needs: ['recording'] },
   { id: 'time-zoom-out', menu: 'time', label: 'Longer stretch', accelerator: 'Shift+Down', needs: ['recording'] },
   { id: 'time-zoom-fit', menu: 'time', label: 'Whole recording', accelerator: 'Shift+0', needs: ['recording'] },
-  { id: 'segment-start', menu: 'segment', label: 'Segment starts here', accelerator: '[', needs: ['view'] },
-  { id: 'segment-end', menu: 'segment', label: 'Segment ends here', accelerator: ']', needs: ['view'] },
+  { id: 'segment-start', menu: 'segment', label: 'Segment starts here', accelerator: 'B', needs: ['view'] },
+  { id: 'segment-end', menu: 'segment', label: 'Segment ends here', accelerator: 'E', needs: ['view'] },
   { id: 'segment-previous', menu: 'segment', label: 'Previous segment', accelerator: 'PageUp', needs: ['recording'] },
   { id: 'segment-next', menu: 'segment', label: 'Next segment', accelerator: 'PageDown', needs: ['recording'] },
   { id: 'edit-current', menu: 'segment', label: 'Type its current', accelerator: 'C', needs: ['segment'] },
@@ -78,6 +82,7 @@ export type Command = CommandEntry & { readonly id: CommandId };
 export const menuLabels: Readonly<Record<Menu, string>> = {
   file: 'File',
   edit: 'Edit',
+  sheets: 'Sheets',
   picture: 'Picture',
   time: 'Time',
   segment: 'Segment',
