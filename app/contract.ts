@@ -64,6 +64,8 @@ export interface HostApi {
   /** What the native menu shows as enabled. */
   menuState(a: { state: CommandState; undoLabel: string | null; redoLabel: string | null }): Empty;
 
+  /** Presentation time of every displayed frame, seconds from the first one after time_scale: a frame's index is its position here. Ask again where time_scale was edited. */
+  frameTimes(a: { recording: string }): { time_s: Float64Array };
   /** One frame as JPEG. `frame` is its index; `crop` in displayed pixels. */
   picture(a: {
     recording: string;
@@ -81,6 +83,8 @@ export interface HostApi {
 
   /** Job: follows the bar of a view of the session; `poses` and `progress` events, then `jobEnded`. Left out start or end: the recording's. */
   follow(a: { view: string; start_s?: number | undefined; end_s?: number | undefined }): Job;
+  /** Jobs that run, for a window that has just been loaded. Jobs of `filmStrip` and `play` end with the window that asked for them. */
+  jobs(a: Empty): { job: string; kind: 'follow' | 'filmStrip' | 'play'; view: string | null }[];
   /** Ends a job; it answers at once, `jobEnded` follows. A job that has ended already is no error. */
   cancel(a: { job: string }): Empty;
   /** What has been followed of a view, null: nothing. */
@@ -198,6 +202,7 @@ export const calls = {
     }),
     result: empty,
   },
+  frameTimes: { args: z.strictObject({ recording: v.id }), result: z.object({ time_s: v.reals }) },
   picture: {
     args: z.strictObject({ recording: v.id, frame, maxWidth_px: width_px, crop: v.region.optional() }),
     result: v.picture,
@@ -219,6 +224,10 @@ export const calls = {
   playAck: { args: z.strictObject({ job: v.id, index: frame }), result: empty },
   findBar: { args: z.strictObject({ recording: v.id, view: v.looseView, frame }), result: v.barFound },
   follow: { args: z.strictObject({ view: v.id, start_s: time_s.optional(), end_s: time_s.optional() }), result: job },
+  jobs: {
+    args: empty,
+    result: z.array(z.object({ job: v.id, kind: z.enum(['follow', 'filmStrip', 'play']), view: v.id.nullable() })),
+  },
   cancel: { args: z.strictObject({ job: v.id }), result: empty },
   overview: { args: z.strictObject({ view: v.id }), result: v.overview.nullable() },
   previewFit: {

@@ -49,8 +49,7 @@ export const recordingFacts = z.looseObject({
 export type RecordingFacts = z.infer<typeof recordingFacts>;
 
 /**
- * One recording of the session as the host has it. `ready`: it can be looked at; `time_s` has the presentation time
- * of every displayed frame (from the first one, after time_scale), so frame index = position in it.
+ * One recording of the session as the host has it. `ready`: it can be looked at, and `frameTimes` answers.
  * `missing`: not where the session says; ask the user for it. `unusable`: there, but `problem` says what is wrong.
  */
 export const recordingState = z.object({
@@ -59,7 +58,6 @@ export const recordingState = z.object({
   state: z.enum(['opening', 'ready', 'missing', 'unusable']),
   problem: z.string().nullable(),
   facts: recordingFacts.nullable(),
-  time_s: reals.nullable(),
 });
 export type RecordingState = z.infer<typeof recordingState>;
 
