@@ -26,6 +26,10 @@ export interface Recording {
   readonly timebase: { readonly numerator: number; readonly denominator: number };
   /** Presentation ticks of the frames a player would show, ascending, as the container states them (exact integers). */
   readonly ticks: Float64Array;
+  /** Indices into `ticks` of the frames from which decoding can begin, ascending. */
+  readonly keyframes: Uint32Array;
+  /** Whether decoding may begin in the middle; false where the container's clock is only right when it is read from the start. */
+  readonly seekable: boolean;
   /** Frame rate the container states, null where it states none. */
   readonly nominalRate_Hz: number | null;
   /** Size of the file in bytes. */
