@@ -3,6 +3,7 @@ import { type Session, sessionSchema } from '../src/session/session.ts';
 import { type CommandId, type CommandState, commands } from './contract/commands.ts';
 import * as v from './contract/values.ts';
 
+export type { Results, SegmentResult } from '../src/report/results.ts';
 export type { Session, SessionRecording, SessionSegment, SessionView } from '../src/session/session.ts';
 export * from './contract/commands.ts';
 export type * from './contract/transport.ts';

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import type { Results } from '../../src/report/results.ts';
 import { sessionSchema } from '../../src/session/session.ts';
 
 /*
@@ -89,49 +90,11 @@ export const check = z.object({
 /** Value and standard uncertainty (k = 1) in the unit of the field that holds it. */
 export const estimate = z.object({ value: z.number(), u: z.number() });
 
-const number = z.number().nullable();
-
-/** One segment of results.json, named as there. */
-export const segmentResult = z.looseObject({
-  id,
-  recording: id,
-  start_s: z.number(),
-  end_s: z.number(),
-  current_A: number,
-  u_current_A: number,
-  sweep: z.enum(['rising', 'falling']).nullable().optional(),
-  status: z.enum(['measured', 'doubtful', 'unmeasured']),
-  f0_Hz: number,
-  u_f0_Hz: number,
-  fd_Hz: number,
-  u_fd_Hz: number,
-  gamma_per_s: number,
-  u_gamma_per_s: number,
-  amplitude_start_deg: number,
-  amplitude_end_deg: number,
-  equilibrium_deg: number,
-  u_equilibrium_deg: number,
-  cycles: number,
-  frames: number,
-  frames_lost: number,
-  residual_rms_deg: number,
-  swing_Hz: number,
-  swing_share: number,
-  checks: z.array(check),
-});
-export type SegmentResult = z.infer<typeof segmentResult>;
-
-/** `reduction` of results.json; fields that aren't named here pass through. */
-export const reductionResult = z.looseObject({
-  ambient_T: number.optional(),
-  u_ambient_T: number.optional(),
-  slope_Hz2_per_A: number.optional(),
-  u_slope_Hz2_per_A: number.optional(),
-  intercept_Hz2: number.optional(),
-  u_intercept_Hz2: number.optional(),
-  checks: z.array(check),
-});
-export type ReductionResult = z.infer<typeof reductionResult>;
+/** The results file's object; the host makes it itself, so that a look at its outline is enough. */
+const resultsObject = z.custom<Results>(
+  (r) => typeof r === 'object' && r !== null && 'segments' in r && Array.isArray(r.segments) && 'reduction' in r,
+  'a results object',
+);
 
 /**
  * The results as they would be exported now, segments in session order (only those measured so far), and the reduction
@@ -139,7 +102,7 @@ export type ReductionResult = z.infer<typeof reductionResult>;
  */
 export const resultsState = z.object({
   revision: z.number(),
-  results: z.looseObject({ segments: z.array(segmentResult), reduction: reductionResult }).nullable(),
+  results: resultsObject.nullable(),
   pending: z.array(id),
   stale: z.array(id),
   /** The segment being measured, and how far: 0 to 1. */
@@ -250,8 +213,8 @@ export const jobProgress = z.object({
   job: id,
   done_s: nonNegative,
   total_s: nonNegative,
-  rate: number,
-  frameRate_Hz: number,
-  remaining_s: number,
+  rate: z.number().nullable(),
+  frameRate_Hz: z.number().nullable(),
+  remaining_s: z.number().nullable(),
 });
 export type JobProgress = z.infer<typeof jobProgress>;
