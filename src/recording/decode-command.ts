@@ -28,7 +28,8 @@ export function decodeArguments(
   ].join(';');
   const output = [...passthroughOption(tools.version), '-enc_time_base', '-1'];
   return [
-    ...inputArguments(recording, range, seek),
+    ...inputOptions(recording, range, seek),
+    ...['-i', inputName(recording.path)],
     ...['-filter_complex', graph],
     ...['-map', '[picture]', ...output, '-c:v', 'rawvideo', '-f', 'rawvideo', 'pipe:1'],
     // Without flushing, the ticks of hundreds of pictures would wait in ffmpeg's buffer while the pictures wait for their ticks.
@@ -36,14 +37,13 @@ export function decodeArguments(
   ];
 }
 
-/** Arguments up to and including the input, with the container's own clock kept; `seek` begins at the keyframe before the range. */
-export function inputArguments(recording: Recording, range: FrameRange, seek: boolean): readonly string[] {
+/** Options before the input: the container's own clock is kept; `seek` begins at the keyframe before the range. */
+export function inputOptions(recording: Recording, range: FrameRange, seek: boolean): readonly string[] {
   const keyframe = seek && recording.seekable ? keyframeBefore(recording, range.first) : 0;
   return [
     ...['-v', 'error', '-nostdin', ...untrustedInputOptions, '-noautorotate', '-copyts'],
     // The trim filter cuts exactly; ffmpeg's own cutting would count from where it takes the file to begin.
     ...(keyframe > 0 ? ['-noaccurate_seek', '-seek_timestamp', '1', '-ss', seconds(after(recording, keyframe))] : []),
-    ...['-i', inputName(recording.path)],
   ];
 }
 

@@ -3,9 +3,11 @@ import { decodeProblem } from './decode-problem.ts';
 import type { ChildEnd } from './ffmpeg-child.ts';
 import type { FfmpegTools } from './find-ffmpeg.ts';
 import { framesWithin, frameTime_s } from './frame-clock.ts';
-import { PictureStream } from './picture-stream.ts';
+import { lumaOf } from './luma.ts';
+import { RawPictures } from './raw-pictures.ts';
 import type { DecodeAccount, Frame, Recording, Region } from './recording.ts';
 import { storedRegion } from './stored-region.ts';
+import { TimedBlocks } from './timed-blocks.ts';
 
 /** What is to be decoded. */
 export interface DecodeRequest {
@@ -59,7 +61,8 @@ async function* decodeRange(
     for (const seek of attempts(recording, range)) {
       signal?.throwIfAborted();
       const args = decodeArguments(recording, range, region, tools, seek);
-      const pictures = new PictureStream(tools.ffmpeg, args, recording, region.width * region.height, signal);
+      const cutter = new RawPictures(region.width * region.height, lumaOf(recording.pixelFormat).bits);
+      const pictures = new TimedBlocks(tools.ffmpeg, args, recording.timebase, cutter, signal);
       try {
         for (let picture = await pictures.next(); picture !== null; picture = await pictures.next()) {
           const index = indexOfTick(recording.ticks, picture.tick, next, range.end);
@@ -73,7 +76,7 @@ async function* decodeRange(
             time_s: frameTime_s(recording, index, timeScale),
             width_px: region.width,
             height_px: region.height,
-            grey: picture.grey,
+            grey: picture.bytes,
           };
           signal?.throwIfAborted();
         }
