@@ -1,0 +1,95 @@
+import type { PlacedPicture } from './layers.ts';
+import { separate } from './layers.ts';
+import type { Motion } from './motion.ts';
+import type { Picture } from './picture.ts';
+import { emptyPicture, valueAt } from './picture.ts';
+import { pivotOf } from './pivot.ts';
+import { choosePoints, thinPoints } from './points.ts';
+import type { Agreement, Placement } from './register.ts';
+import { register } from './register.ts';
+import { searchTurn } from './search.ts';
+
+/** A placement with what is known of its worth; null where the picture didn't agree with the bar at all. */
+export interface TriedPlace {
+  readonly place: Placement;
+  readonly agreement: Agreement | null;
+}
+
+/** Farthest turn from the sample's middle that is looked for, radians. */
+const WIDEST_TURN = 1.2;
+
+/**
+ * First placements of the bar in a sample of pictures before anything is known of it but where the picture moves: one
+ * picture serves as the bar's likeness, the others are searched for the same pattern turned about the centre of motion,
+ * then about the pivot found from that.
+ */
+export function firstPlaces(pictures: readonly Picture<Uint8Array>[], motion: Motion, squash: number): TriedPlace[] {
+  const { width, height } = pictures[0]!;
+  const nothing = emptyPicture(width, height);
+  const middle = motion.middle;
+  let centre = { x: motion.x_px, y: motion.y_px };
+  let tried: TriedPlace[] = [];
+  for (let round = 0; round < 3; round++) {
+    const reference: PlacedPicture = {
+      picture: pictures[middle]!,
+      place: {
+        turn: motion.axis_rad,
+        x_px: centre.x,
+        y_px: centre.y,
+        gain: motion.gain[middle]!,
+        offset: motion.offset[middle]!,
+      },
+    };
+    const grid = {
+      halfU: Math.ceil(motion.along_px + 2 + Math.hypot(centre.x - motion.x_px, centre.y - motion.y_px)),
+      halfV: Math.ceil(motion.across_px + 2),
+      squash,
+    };
+    const layers = separate([reference], grid, null, null, motion.noise);
+    // Only what moves counts, and it may differ from the likeness by a good part of its own movement.
+    const c = Math.cos(motion.axis_rad);
+    const s = Math.sin(motion.axis_rad);
+    for (let at = 0; at < layers.weight.length; at++) {
+      const u = (at % layers.columns) - grid.halfU;
+      const v = Math.floor(at / layers.columns) - grid.halfV;
+      const energy = valueAt(motion.energy, centre.x + c * u - s * v, centre.y + squash * (s * u + c * v));
+      layers.weight[at] = layers.weight[at] !== 0 && energy > 0 ? 1 / (4 * motion.noise + 0.1 * energy) : 0;
+    }
+    const points = choosePoints(layers, 1500);
+    const few = thinPoints(points, 350);
+    const step = Math.max(0.01, 1.5 / points.reach_px);
+    const range = { from: motion.axis_rad - WIDEST_TURN, to: motion.axis_rad + WIDEST_TURN, step, tolerance: 3 };
+    tried = pictures.map((picture, t) => {
+      const place = { ...reference.place, gain: motion.gain[t]!, offset: motion.offset[t]! };
+      if (t !== middle) place.turn = searchTurn(picture, nothing, few, place, range).turn;
+      return { place, agreement: register(picture, nothing, points, place, [6, 6, 4, 4, 3, 3]) };
+    });
+    const pivot = pivotOf(soundOf(tried), squash, points.reach_px);
+    const moved = Math.hypot(pivot.u_px, pivot.v_px);
+    const from = tried[middle]!.place;
+    centre = {
+      x: from.x_px + Math.cos(from.turn) * pivot.u_px - Math.sin(from.turn) * pivot.v_px,
+      y: from.y_px + squash * (Math.sin(from.turn) * pivot.u_px + Math.cos(from.turn) * pivot.v_px),
+    };
+    if (moved < 0.03 * points.reach_px) break;
+  }
+  return tried;
+}
+
+/** The placements that agree with the bar about as well as most do. */
+export function soundOf(tried: readonly TriedPlace[]): Placement[] {
+  return soundIndices(tried).map((i) => tried[i]!.place);
+}
+
+/** Indices of the placements that agree with the bar about as well as most do. */
+export function soundIndices(tried: readonly TriedPlace[]): number[] {
+  const agreed = tried.flatMap(({ agreement }) => (agreement === null ? [] : [agreement]));
+  if (agreed.length === 0) return [];
+  const middle = (of: (a: Agreement) => number): number => agreed.map(of).sort((a, b) => a - b)[agreed.length >> 1]!;
+  const share = middle((a) => a.share);
+  const indices: number[] = [];
+  for (const [i, { agreement }] of tried.entries()) {
+    if (agreement !== null && agreement.share > 0.6 * share && agreement.lastStep_px < 1) indices.push(i);
+  }
+  return indices;
+}

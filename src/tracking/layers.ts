@@ -1,0 +1,282 @@
+import type { Picture } from './picture.ts';
+import { emptyPicture, valueAt } from './picture.ts';
+import type { Placement } from './register.ts';
+
+/** One picture with the place at which the bar was found in it. */
+export interface PlacedPicture {
+  readonly picture: Picture<Uint8Array>;
+  readonly place: Placement;
+}
+
+/** The bar's own picture in its own frame: a grid of `columns` by `rows`, (u, v) = (column - halfU, row - halfV). */
+export interface BarLayers {
+  readonly halfU: number;
+  readonly halfV: number;
+  readonly columns: number;
+  readonly rows: number;
+  readonly squash: number;
+  /** Mean of what is seen at each place of the bar's frame, at the bar's brightness (gain 1, offset 0). */
+  readonly mean: Float32Array;
+  /** Mean of the background at that place, where a background is known. */
+  readonly ground: Float32Array;
+  /** What is seen is `bar + see * background`, with this variance of the rest. */
+  readonly bar: Float32Array;
+  readonly see: Float32Array;
+  readonly variance: Float32Array;
+  /** One over the expected variance of a residual; 0 where nothing is known. */
+  readonly weight: Float32Array;
+  /** Variance of the sensor's noise. */
+  readonly noise: number;
+  readonly reach_px: number;
+}
+
+/** Where the bar's outline lies in its own frame, pixels. */
+export interface Outline {
+  readonly left: number;
+  readonly right: number;
+  readonly top: number;
+  readonly bottom: number;
+}
+
+/** A share of 1 inside the outline, 0 outside, with a slope `soft_px` wide between. */
+export function coverOf(outline: Outline, u: number, v: number, soft_px: number): number {
+  const inside = Math.min(u - outline.left, outline.right - u, v - outline.top, outline.bottom - v);
+  return Math.min(1, Math.max(0, inside / soft_px + 0.5));
+}
+
+/**
+ * Averages what is seen in the bar's frame and splits it into what belongs to the bar and what shines through from a
+ * static background: at every place the grey values of all pictures are regressed on the background's, pulled towards
+ * `seeExpected` where the background is too even to tell.
+ */
+export function separate(
+  pictures: readonly PlacedPicture[],
+  grid: { readonly halfU: number; readonly halfV: number; readonly squash: number },
+  background: Picture | null,
+  seeExpected: Float32Array | null,
+  noiseFloor: number,
+): BarLayers {
+  const { halfU, halfV, squash } = grid;
+  const columns = 2 * halfU + 1;
+  const rows = 2 * halfV + 1;
+  const size = columns * rows;
+  const n = new Float32Array(size);
+  const s1 = new Float64Array(size);
+  const s2 = new Float64Array(size);
+  const b1 = new Float64Array(size);
+  const b2 = new Float64Array(size);
+  const sb = new Float64Array(size);
+  for (const { picture, place } of pictures) {
+    const { width, height, data } = picture;
+    const c = Math.cos(place.turn);
+    const s = Math.sin(place.turn);
+    const scale = 1 / place.gain;
+    for (let row = 0; row < rows; row++) {
+      const v = row - halfV;
+      let x = place.x_px - c * halfU - s * v;
+      let y = place.y_px + squash * (-s * halfU + c * v);
+      for (let at = row * columns; at < (row + 1) * columns; at++, x += c, y += squash * s) {
+        if (!(x >= 0 && y >= 0 && x < width - 1 && y < height - 1)) continue;
+        const left = x | 0;
+        const top = y | 0;
+        const fx = x - left;
+        const fy = y - top;
+        const p = top * width + left;
+        const i0 = data[p]!;
+        const i1 = data[p + width]!;
+        const upper = i0 + fx * (data[p + 1]! - i0);
+        const seen = (upper + fy * (i1 + fx * (data[p + width + 1]! - i1) - upper) - place.offset) * scale;
+        n[at] = n[at]! + 1;
+        s1[at] = s1[at]! + seen;
+        s2[at] = s2[at]! + seen * seen;
+        if (background !== null) {
+          const g = background.data;
+          const g0 = g[p]!;
+          const g1 = g[p + width]!;
+          const gu = g0 + fx * (g[p + 1]! - g0);
+          const under = gu + fy * (g1 + fx * (g[p + width + 1]! - g1) - gu);
+          b1[at] = b1[at]! + under;
+          b2[at] = b2[at]! + under * under;
+          sb[at] = sb[at]! + seen * under;
+        }
+      }
+    }
+  }
+  const mean = new Float32Array(size);
+  const ground = new Float32Array(size);
+  const seen = new Float32Array(size);
+  const cov = new Float32Array(size);
+  const spread = new Float32Array(size);
+  for (let at = 0; at < size; at++) {
+    const k = n[at]!;
+    if (k === 0) continue;
+    mean[at] = s1[at]! / k;
+    ground[at] = b1[at]! / k;
+    seen[at] = Math.max(0, s2[at]! / k - (s1[at]! / k) ** 2);
+    cov[at] = sb[at]! / k - (s1[at]! / k) * (b1[at]! / k);
+    spread[at] = Math.max(0, b2[at]! / k - (b1[at]! / k) ** 2);
+  }
+  const bar = new Float32Array(size);
+  const see = new Float32Array(size);
+  const rest = new Float32Array(size);
+  // Where the background varies by less than a tenth of the noise's variance it tells nothing of what shines through.
+  const pull = noiseFloor * 0.5;
+  for (let at = 0; at < size; at++) {
+    const expected = seeExpected?.[at] ?? 0;
+    const beta =
+      background === null ? 0 : Math.min(1, Math.max(0, (cov[at]! + pull * expected) / (spread[at]! + pull)));
+    see[at] = beta;
+    bar[at] = mean[at]! - beta * ground[at]!;
+    rest[at] = Math.max(0, seen[at]! - 2 * beta * cov[at]! + beta * beta * spread[at]!);
+  }
+  const variance = smooth(rest, columns, rows);
+  const enough = 0.5 * pictures.length;
+  const filled: number[] = [];
+  for (let at = 0; at < size; at++) if (n[at]! > enough) filled.push(variance[at]!);
+  filled.sort((a, b) => a - b);
+  const noise = Math.max(0.05, filled[Math.floor(filled.length * 0.2)] ?? 0.05);
+  const weight = new Float32Array(size);
+  for (let at = 0; at < size; at++) if (n[at]! > enough) weight[at] = 1 / (noise + variance[at]!);
+  return {
+    halfU,
+    halfV,
+    columns,
+    rows,
+    squash,
+    mean,
+    ground,
+    bar,
+    see,
+    variance,
+    weight,
+    noise,
+    reach_px: Math.hypot(halfU, halfV),
+  };
+}
+
+/** Mean over three by three. */
+function smooth(from: Float32Array, columns: number, rows: number): Float32Array {
+  const to = new Float32Array(from.length);
+  for (let row = 0; row < rows; row++) {
+    for (let column = 0; column < columns; column++) {
+      let sum = 0;
+      let n = 0;
+      for (let r = Math.max(0, row - 1); r <= Math.min(rows - 1, row + 1); r++) {
+        for (let c = Math.max(0, column - 1); c <= Math.min(columns - 1, column + 1); c++) {
+          sum += from[r * columns + c]!;
+          n++;
+        }
+      }
+      to[row * columns + column] = sum / n;
+    }
+  }
+  return to;
+}
+
+/**
+ * The static background: at every pixel the mean over the pictures in which the bar (its outline widened by `margin_px`)
+ * doesn't cover it; where it always does, the grey is filled in from around.
+ */
+export function uncover(
+  pictures: readonly PlacedPicture[],
+  outline: Outline,
+  squash: number,
+  margin_px: number,
+): Picture {
+  const first = pictures[0]!.picture;
+  const { width, height } = first;
+  const result = emptyPicture(width, height);
+  const count = new Float32Array(width * height);
+  const sum = result.data;
+  const left = outline.left - margin_px;
+  const right = outline.right + margin_px;
+  const top = outline.top - margin_px;
+  const bottom = outline.bottom + margin_px;
+  for (const { picture, place } of pictures) {
+    const c = Math.cos(place.turn);
+    const s = Math.sin(place.turn);
+    const scale = 1 / place.gain;
+    const shift = -place.offset * scale;
+    const { data } = picture;
+    for (let y = 0; y < height; y++) {
+      const dy = (y - place.y_px) / squash;
+      let u = -c * place.x_px + s * dy;
+      let v = s * place.x_px + c * dy;
+      for (let at = y * width; at < (y + 1) * width; at++, u += c, v -= s) {
+        if (u > left && u < right && v > top && v < bottom) continue;
+        sum[at] = sum[at]! + data[at]! * scale + shift;
+        count[at] = count[at]! + 1;
+      }
+    }
+  }
+  const known = new Uint8Array(width * height);
+  for (let at = 0; at < sum.length; at++) {
+    if (count[at]! > 0) {
+      sum[at] = sum[at]! / count[at]!;
+      known[at] = 1;
+    }
+  }
+  fillIn(result, known);
+  return result;
+}
+
+/** Fills unknown pixels from known neighbours, ring by ring. */
+function fillIn(picture: Picture, known: Uint8Array): void {
+  const { width, height, data } = picture;
+  let unknown: number[] = [];
+  for (let at = 0; at < known.length; at++) if (known[at] === 0) unknown.push(at);
+  while (unknown.length > 0) {
+    const left: number[] = [];
+    const done: number[] = [];
+    for (const at of unknown) {
+      const x = at % width;
+      const y = (at - x) / width;
+      let sum = 0;
+      let n = 0;
+      for (const [dx, dy] of [
+        [-1, 0],
+        [1, 0],
+        [0, -1],
+        [0, 1],
+        [-1, -1],
+        [1, 1],
+        [1, -1],
+        [-1, 1],
+      ] as const) {
+        const nx = x + dx;
+        const ny = y + dy;
+        if (nx < 0 || ny < 0 || nx >= width || ny >= height) continue;
+        const to = ny * width + nx;
+        if (known[to] !== 1) continue;
+        sum += data[to]!;
+        n++;
+      }
+      if (n === 0) left.push(at);
+      else {
+        data[at] = sum / n;
+        done.push(at);
+      }
+    }
+    if (done.length === 0) return;
+    for (const at of done) known[at] = 1;
+    unknown = left;
+  }
+}
+
+/** What is expected to shine through: nothing inside the outline, everything outside it. */
+export function seeThrough(outline: Outline, grid: { readonly halfU: number; readonly halfV: number }): Float32Array {
+  const columns = 2 * grid.halfU + 1;
+  const rows = 2 * grid.halfV + 1;
+  const see = new Float32Array(columns * rows);
+  for (let row = 0; row < rows; row++) {
+    for (let column = 0; column < columns; column++) {
+      see[row * columns + column] = 1 - coverOf(outline, column - grid.halfU, row - grid.halfV, 2);
+    }
+  }
+  return see;
+}
+
+/** The grey of a layer at a place of the bar's frame. */
+export function layerAt(layers: BarLayers, layer: Float32Array, u: number, v: number): number {
+  return valueAt({ width: layers.columns, height: layers.rows, data: layer }, u + layers.halfU, v + layers.halfV);
+}

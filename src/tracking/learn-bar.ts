@@ -1,0 +1,180 @@
+import type { Frame } from '../recording/recording.ts';
+import { findAxis } from './axis.ts';
+import type { TriedPlace } from './first-places.ts';
+import { firstPlaces, soundIndices } from './first-places.ts';
+import type { BarLayers, Outline, PlacedPicture } from './layers.ts';
+import { seeThrough, separate, uncover } from './layers.ts';
+import { findMotion } from './motion.ts';
+import { findOutline } from './outline.ts';
+import type { Picture } from './picture.ts';
+import { emptyPicture } from './picture.ts';
+import { pivotOf } from './pivot.ts';
+import type { BarPoints } from './points.ts';
+import { choosePoints } from './points.ts';
+import type { Placement } from './register.ts';
+import { register } from './register.ts';
+import { shrink } from './vision.ts';
+
+/** What is known of the bar and its background after the opening of a stretch. */
+export interface BarModel {
+  readonly background: Picture;
+  readonly points: BarPoints;
+  readonly layers: BarLayers;
+  readonly outline: Outline;
+  /** Direction of the bar's axis in its own frame, and its standard uncertainty, radians. */
+  readonly axis_rad: number;
+  readonly u_axis_rad: number;
+  /** The bar's middle in its own frame, pixels. */
+  readonly middleU_px: number;
+  readonly middleV_px: number;
+  readonly halfLength_px: number;
+  /** What is usual of a sound frame. */
+  readonly usualShare: number;
+  readonly usualMisfit: number;
+  /** Turns seen, radians, and a placement to start from. */
+  readonly leastTurn: number;
+  readonly mostTurn: number;
+  readonly start: Placement;
+}
+
+/** Why no bar was found: nothing moves, or what moves is no bar that turns. */
+export type NoBar = 'still' | 'no_likeness' | 'no_outline';
+
+/** Most points compared per frame. */
+const MOST_POINTS = 2000;
+/** Pictures the bar is learnt from. */
+const SAMPLE = 32;
+/** Larger sides are shrunk below this for the first look, pixels. */
+const COARSE_SIDE = 200;
+
+/** Learns bar and background from the opening frames of a stretch (all of one size). */
+export function learnBar(frames: readonly Frame[], squash: number): BarModel | NoBar {
+  const sample = evenly(frames, SAMPLE).map((frame) => ({
+    width: frame.width_px,
+    height: frame.height_px,
+    data: frame.grey,
+  }));
+  const factor = Math.ceil(Math.max(sample[0]!.width, sample[0]!.height) / COARSE_SIDE);
+  const coarse = sample.map((picture) => shrink(picture, factor));
+  const motion = findMotion(coarse, squash);
+  if (motion === null) return 'still';
+  let tried = firstPlaces(coarse, motion, squash);
+  if (soundIndices(tried).length < 3) return 'no_likeness';
+  const nothing = emptyPicture(coarse[0]!.width, coarse[0]!.height);
+  const wide = {
+    halfU: Math.ceil(motion.along_px * 1.1 + 3),
+    halfV: Math.ceil(motion.across_px * 1.1 + 3),
+    squash,
+  };
+  let layers: BarLayers | null = null;
+  for (let round = 0; round < 3; round++) {
+    layers = separate(placed(coarse, tried), wide, null, null, motion.noise);
+    tried = again(coarse, nothing, choosePoints(layers, 1500), tried, [5, 4, 3]);
+    tried = recentre(tried, squash, motion.along_px);
+    if (soundIndices(tried).length < 3) return 'no_likeness';
+  }
+  layers = separate(placed(coarse, tried), wide, null, null, motion.noise);
+  const rough = findOutline(layers);
+  if (rough === null) return 'no_outline';
+  tried = tried.map(({ place, agreement }) => ({
+    place: { ...place, x_px: (place.x_px + 0.5) * factor - 0.5, y_px: (place.y_px + 0.5) * factor - 0.5 },
+    agreement,
+  }));
+  const margin = 6 + 2 * factor;
+  const grid = {
+    halfU: Math.ceil(Math.max(-rough.left, rough.right) * factor + margin),
+    halfV: Math.ceil(Math.max(-rough.top, rough.bottom) * factor + margin),
+    squash,
+  };
+  layers = separate(placed(sample, tried), grid, null, null, motion.noise);
+  let outline = findOutline(layers);
+  if (outline === null) return 'no_outline';
+  let background = emptyPicture(1, 1);
+  let points = choosePoints(layers, MOST_POINTS);
+  for (let round = 0; round < 3; round++) {
+    background = uncover(placed(sample, tried), outline, squash, 3);
+    layers = separate(placed(sample, tried), grid, background, seeThrough(outline, grid), layers.noise);
+    points = choosePoints(layers, MOST_POINTS);
+    tried = again(sample, background, points, tried, [4, 3, 3]);
+    if (soundIndices(tried).length < 3) return 'no_likeness';
+    outline = findOutline(layers) ?? outline;
+  }
+  layers = separate(placed(sample, tried), grid, background, seeThrough(outline, grid), layers.noise);
+  points = choosePoints(layers, MOST_POINTS);
+  return describe(layers, outline, background, points, tried, squash);
+}
+
+function describe(
+  layers: BarLayers,
+  outline: Outline,
+  background: Picture,
+  points: BarPoints,
+  tried: readonly TriedPlace[],
+  squash: number,
+): BarModel | NoBar {
+  const axis = findAxis(layers, outline);
+  if (axis === null) return 'no_outline';
+  const sound = soundIndices(tried).map((i) => tried[i]!);
+  const places = sound.map(({ place }) => place);
+  const pivot = pivotOf(places, squash, 2);
+  const turns = places.map(({ turn }) => turn);
+  const middle = (values: number[]): number => values.sort((a, b) => a - b)[values.length >> 1]!;
+  return {
+    background,
+    points,
+    layers,
+    outline,
+    axis_rad: axis.turn_rad,
+    u_axis_rad: axis.u_turn_rad,
+    middleU_px: pivot.u_px,
+    middleV_px: pivot.v_px,
+    halfLength_px: (outline.right - outline.left) / 2,
+    usualShare: middle(sound.map(({ agreement }) => agreement!.share)),
+    usualMisfit: middle(sound.map(({ agreement }) => agreement!.misfit)),
+    leastTurn: Math.min(...turns),
+    mostTurn: Math.max(...turns),
+    start: places[0]!,
+  };
+}
+
+function placed(pictures: readonly Picture<Uint8Array>[], tried: readonly TriedPlace[]): PlacedPicture[] {
+  return soundIndices(tried).map((i) => ({ picture: pictures[i]!, place: tried[i]!.place }));
+}
+
+function again(
+  pictures: readonly Picture<Uint8Array>[],
+  background: Picture,
+  points: BarPoints,
+  tried: readonly TriedPlace[],
+  tolerances: readonly number[],
+): TriedPlace[] {
+  return tried.map(({ place: before }, t) => {
+    const place = { ...before };
+    const agreement = register(pictures[t]!, background, points, place, tolerances);
+    return agreement === null ? { place: before, agreement } : { place, agreement };
+  });
+}
+
+/** Moves the origin of the bar's frame to its pivot. */
+function recentre(tried: readonly TriedPlace[], squash: number, reach_px: number): TriedPlace[] {
+  const sound = soundIndices(tried).map((i) => tried[i]!.place);
+  const pivot = pivotOf(sound, squash, reach_px / 4);
+  return tried.map(({ place, agreement }) => {
+    const c = Math.cos(place.turn);
+    const s = Math.sin(place.turn);
+    return {
+      place: {
+        ...place,
+        x_px: place.x_px + c * pivot.u_px - s * pivot.v_px,
+        y_px: place.y_px + squash * (s * pivot.u_px + c * pivot.v_px),
+      },
+      agreement,
+    };
+  });
+}
+
+/** At most `most` of the items, evenly spread from first to last. */
+function evenly<T>(items: readonly T[], most: number): T[] {
+  if (items.length <= most) return [...items];
+  return Array.from({ length: most }, (_, i) => items[Math.round((i * (items.length - 1)) / (most - 1))]!);
+}

@@ -1,0 +1,131 @@
+import type { BarLayers } from './layers.ts';
+
+/** Points of the bar's own frame at which a picture is compared with the model, as aligned columns. */
+export interface BarPoints {
+  readonly count: number;
+  /** Place along and across the bar, pixels of its own (unforeshortened) frame. */
+  readonly u: Float32Array;
+  readonly v: Float32Array;
+  /** The bar's share of the grey value, and how much of the background shows beside it. */
+  readonly bar: Float32Array;
+  readonly see: Float32Array;
+  /** Slopes of the two along u and v. */
+  readonly barU: Float32Array;
+  readonly barV: Float32Array;
+  readonly seeU: Float32Array;
+  readonly seeV: Float32Array;
+  /** One over the expected variance of the residual. */
+  readonly weight: Float32Array;
+  /** What the point tells of the angle: its share of one over the angle's variance; adds up to 1. */
+  readonly knowledge: Float32Array;
+  /** How much the view squeezes the bar's plane downwards: sin(elevation), 1 for a plan view. */
+  readonly squash: number;
+  /** Distance of the farthest points from the origin, pixels. */
+  readonly reach_px: number;
+}
+
+/** Every pixel of the layers as a point, or those of them that tell most of angle and place. */
+export function choosePoints(layers: BarLayers, most: number): BarPoints {
+  const { columns, rows, halfU, halfV, bar, see, weight } = layers;
+  const size = columns * rows;
+  const grad = (from: Float32Array, at: number, stride: number): number =>
+    (from[at + stride]! - from[at - stride]!) / 2;
+  const turning = new Float32Array(size);
+  const along = new Float32Array(size);
+  const across = new Float32Array(size);
+  let turningSum = 0;
+  let alongSum = 0;
+  let acrossSum = 0;
+  for (let row = 1; row < rows - 1; row++) {
+    for (let column = 1; column < columns - 1; column++) {
+      const at = row * columns + column;
+      const w = weight[at]!;
+      if (w === 0) continue;
+      const ground = layers.ground[at]!;
+      const gu = grad(bar, at, 1) + grad(see, at, 1) * ground;
+      const gv = grad(bar, at, columns) + grad(see, at, columns) * ground;
+      const t = (column - halfU) * gv - (row - halfV) * gu;
+      turning[at] = w * t * t;
+      along[at] = w * gu * gu;
+      across[at] = w * gv * gv;
+      turningSum += turning[at]!;
+      alongSum += along[at]!;
+      acrossSum += across[at]!;
+    }
+  }
+  const worth = new Float32Array(size);
+  const candidates: number[] = [];
+  for (let at = 0; at < size; at++) {
+    if (weight[at] === 0) continue;
+    worth[at] = (2 * turning[at]!) / (turningSum || 1) + along[at]! / (alongSum || 1) + across[at]! / (acrossSum || 1);
+    if (worth[at]! > 0) candidates.push(at);
+  }
+  let chosen = candidates;
+  if (candidates.length > most) {
+    // Four fifths are the most telling ones; the rest is spread over what is left, to fix brightness and notice a hand.
+    const telling = Math.round(most * 0.8);
+    const order = [...candidates].sort((a, b) => worth[b]! - worth[a]! || a - b);
+    const rest = order.slice(telling).sort((a, b) => a - b);
+    const stride = rest.length / (most - telling);
+    chosen = order.slice(0, telling);
+    for (let i = 0; i < most - telling; i++) chosen.push(rest[Math.floor(i * stride)]!);
+    // In memory order, so that neighbouring points read neighbouring pixels.
+    chosen.sort((a, b) => a - b);
+  }
+  const count = chosen.length;
+  const column = (): Float32Array => new Float32Array(count);
+  const points = {
+    count,
+    u: column(),
+    v: column(),
+    bar: column(),
+    see: column(),
+    barU: column(),
+    barV: column(),
+    seeU: column(),
+    seeV: column(),
+    weight: column(),
+    knowledge: column(),
+    squash: layers.squash,
+    reach_px: Math.max(1, layers.reach_px),
+  };
+  let known = 0;
+  for (const [i, at] of chosen.entries()) {
+    points.u[i] = (at % columns) - halfU;
+    points.v[i] = Math.floor(at / columns) - halfV;
+    points.bar[i] = bar[at]!;
+    points.see[i] = see[at]!;
+    points.barU[i] = grad(bar, at, 1);
+    points.barV[i] = grad(bar, at, columns);
+    points.seeU[i] = grad(see, at, 1);
+    points.seeV[i] = grad(see, at, columns);
+    points.weight[i] = weight[at]!;
+    points.knowledge[i] = turning[at]!;
+    known += turning[at]!;
+  }
+  for (let i = 0; i < count; i++) points.knowledge[i] = known > 0 ? points.knowledge[i]! / known : 1 / count;
+  return points;
+}
+
+/** About `most` of the points, evenly taken: enough to look for the bar coarsely. */
+export function thinPoints(points: BarPoints, most: number): BarPoints {
+  const stride = Math.max(1, points.count / most);
+  const count = Math.floor(points.count / stride);
+  const pick = (from: Float32Array): Float32Array =>
+    Float32Array.from({ length: count }, (_, i) => from[Math.floor(i * stride)]!);
+  return {
+    count,
+    u: pick(points.u),
+    v: pick(points.v),
+    bar: pick(points.bar),
+    see: pick(points.see),
+    barU: pick(points.barU),
+    barV: pick(points.barV),
+    seeU: pick(points.seeU),
+    seeV: pick(points.seeV),
+    weight: pick(points.weight),
+    knowledge: pick(points.knowledge),
+    squash: points.squash,
+    reach_px: points.reach_px,
+  };
+}

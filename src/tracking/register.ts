@@ -1,0 +1,237 @@
+import type { Picture } from './picture.ts';
+import type { BarPoints } from './points.ts';
+
+/**
+ * Where the bar lies in a picture and how bright the picture is. A point (u, v) of the bar's own frame is seen at
+ * x = x_px + cos(turn) u - sin(turn) v, y = y_px + squash (sin(turn) u + cos(turn) v); grey = gain * model + offset.
+ */
+export interface Placement {
+  /** Radians, clockwise as seen, since the picture's y runs down. */
+  turn: number;
+  x_px: number;
+  y_px: number;
+  gain: number;
+  offset: number;
+}
+
+/** How well the bar's points agree with a picture at the place found. */
+export interface Agreement {
+  /** Weighted mean of the squared residuals in units of the expected ones, outliers held down: about 1 for a clean frame. */
+  misfit: number;
+  /** Share of the points' knowledge of the angle that agreed with the picture, 0 to 1. */
+  share: number;
+  /** The same share of knowledge that lay outside the picture. */
+  outside: number;
+  /** Standard deviation of the angle if residuals are as expected, radians. */
+  sd_rad: number;
+  /** Size of the last step, pixels at the bar's ends. */
+  lastStep_px: number;
+}
+
+const PARAMETERS = 5;
+
+/** Solves the symmetric positive system A x = b of five unknowns in place by Cholesky; false where A is singular. */
+function solveSymmetric(a: Float64Array, b: Float64Array): boolean {
+  const n = PARAMETERS;
+  for (let j = 0; j < n; j++) {
+    let d = a[j * n + j]!;
+    const before = d;
+    for (let k = 0; k < j; k++) d -= a[j * n + k]! ** 2;
+    if (!(d > 1e-12 * before)) return false;
+    d = Math.sqrt(d);
+    a[j * n + j] = d;
+    for (let i = j + 1; i < n; i++) {
+      let s = a[i * n + j]!;
+      for (let k = 0; k < j; k++) s -= a[i * n + k]! * a[j * n + k]!;
+      a[i * n + j] = s / d;
+    }
+  }
+  for (let i = 0; i < n; i++) {
+    let s = b[i]!;
+    for (let k = 0; k < i; k++) s -= a[i * n + k]! * b[k]!;
+    b[i] = s / a[i * n + i]!;
+  }
+  for (let i = n - 1; i >= 0; i--) {
+    let s = b[i]!;
+    for (let k = i + 1; k < n; k++) s -= a[k * n + i]! * b[k]!;
+    b[i] = s / a[i * n + i]!;
+  }
+  return true;
+}
+
+/**
+ * Gauss-Newton registration of the two-layer model (bar over background) against a picture, with redescending weights
+ * (Geman and McClure 1987). Changes `place`; null where the points don't determine it.
+ *
+ * @param tolerances one entry per iteration: residuals beyond so many expected standard deviations lose their weight
+ */
+export function register(
+  picture: Picture<Uint8Array>,
+  background: Picture,
+  points: BarPoints,
+  place: Placement,
+  tolerances: readonly number[],
+): Agreement | null {
+  const { width, height, data } = picture;
+  const ground = background.data;
+  const { count, u, v, bar, see, barU, barV, seeU, seeV, weight, knowledge, squash } = points;
+  const normal = new Float64Array(PARAMETERS * PARAMETERS);
+  const step = new Float64Array(PARAMETERS);
+  const right = width - 1;
+  const bottom = height - 1;
+  let lastStep_px = 0;
+  let misfit = 0;
+  let share = 0;
+  let outside = 0;
+  for (const tolerance of tolerances) {
+    const c = Math.cos(place.turn);
+    const s = Math.sin(place.turn);
+    const { gain, offset } = place;
+    const limit = 1 / (tolerance * tolerance);
+    let h00 = 0;
+    let h10 = 0;
+    let h11 = 0;
+    let h20 = 0;
+    let h21 = 0;
+    let h22 = 0;
+    let h30 = 0;
+    let h31 = 0;
+    let h32 = 0;
+    let h33 = 0;
+    let h40 = 0;
+    let h41 = 0;
+    let h42 = 0;
+    let h43 = 0;
+    let h44 = 0;
+    let b0 = 0;
+    let b1 = 0;
+    let b2 = 0;
+    let b3 = 0;
+    let b4 = 0;
+    let squares = 0;
+    let weights = 0;
+    share = 0;
+    outside = 0;
+    for (let i = 0; i < count; i++) {
+      const pu = u[i]!;
+      const pv = v[i]!;
+      const x = place.x_px + c * pu - s * pv;
+      const y = place.y_px + squash * (s * pu + c * pv);
+      const w0 = weight[i]!;
+      if (!(x >= 0 && y >= 0 && x < right && y < bottom)) {
+        outside += knowledge[i]!;
+        continue;
+      }
+      const left = x | 0;
+      const top = y | 0;
+      const fx = x - left;
+      const fy = y - top;
+      const at = top * width + left;
+      const below = at + width;
+      const i0 = data[at]!;
+      const i1 = data[below]!;
+      const upper = i0 + fx * (data[at + 1]! - i0);
+      const seen = upper + fy * (i1 + fx * (data[below + 1]! - i1) - upper);
+      let under = 0;
+      if (see[i]! !== 0 || seeU[i]! !== 0 || seeV[i]! !== 0) {
+        const g0 = ground[at]!;
+        const g1 = ground[below]!;
+        const groundUpper = g0 + fx * (ground[at + 1]! - g0);
+        under = groundUpper + fy * (g1 + fx * (ground[below + 1]! - g1) - groundUpper);
+      }
+      const model = bar[i]! + see[i]! * under;
+      const r = seen - gain * model - offset;
+      const gu = gain * (barU[i]! + seeU[i]! * under);
+      const gv = gain * (barV[i]! + seeV[i]! * under);
+      const jt = pv * gu - pu * gv;
+      const e = r * r * w0;
+      const keep = 1 / (1 + e * limit);
+      const w = w0 * keep * keep;
+      squares += e * keep * keep;
+      weights += keep * keep;
+      share += keep * keep * knowledge[i]!;
+      const wt = w * jt;
+      const wu = -w * gu;
+      const wv = -w * gv;
+      const wm = w * model;
+      h00 += wt * jt;
+      h10 += wu * jt;
+      h11 -= wu * gu;
+      h20 += wv * jt;
+      h21 -= wv * gu;
+      h22 -= wv * gv;
+      h30 += wm * jt;
+      h31 -= wm * gu;
+      h32 -= wm * gv;
+      h33 += wm * model;
+      h40 += wt;
+      h41 += wu;
+      h42 += wv;
+      h43 += wm;
+      h44 += w;
+      b0 += wt * r;
+      b1 += wu * r;
+      b2 += wv * r;
+      b3 += wm * r;
+      b4 += w * r;
+    }
+    normal.set([
+      h00,
+      0,
+      0,
+      0,
+      0,
+      h10,
+      h11,
+      0,
+      0,
+      0,
+      h20,
+      h21,
+      h22,
+      0,
+      0,
+      h30,
+      h31,
+      h32,
+      h33,
+      0,
+      h40,
+      h41,
+      h42,
+      h43,
+      h44,
+    ]);
+    step.set([b0, b1, b2, b3, b4]);
+    if (!solveSymmetric(normal, step)) return null;
+    const turn = place.turn + step[0]!;
+    const cn = Math.cos(turn);
+    const sn = Math.sin(turn);
+    place.turn = turn;
+    place.x_px += cn * step[1]! - sn * step[2]!;
+    place.y_px += squash * (sn * step[1]! + cn * step[2]!);
+    place.gain += step[3]!;
+    place.offset += step[4]!;
+    lastStep_px = Math.hypot(Math.abs(step[0]!) * points.reach_px, step[1]!, step[2]!);
+    misfit = weights > 0 ? squares / weights : Number.POSITIVE_INFINITY;
+    if (!Number.isFinite(turn) || !(place.gain > 0)) return null;
+  }
+  // The angle's variance is the first element of the inverse: solve for the first unit vector with the factor at hand.
+  step.set([1, 0, 0, 0, 0]);
+  const sd_rad = Math.sqrt(firstOfInverse(normal));
+  return { misfit, share, outside, sd_rad, lastStep_px };
+}
+
+/** First diagonal element of the inverse of L Lt, L the lower triangle left by `solveSymmetric`. */
+function firstOfInverse(l: Float64Array): number {
+  const n = PARAMETERS;
+  const z = new Float64Array(n);
+  let sum = 0;
+  for (let i = 0; i < n; i++) {
+    let s = i === 0 ? 1 : 0;
+    for (let k = 0; k < i; k++) s -= l[i * n + k]! * z[k]!;
+    z[i] = s / l[i * n + i]!;
+    sum += z[i]! ** 2;
+  }
+  return sum;
+}
