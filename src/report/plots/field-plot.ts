@@ -1,0 +1,107 @@
+import type { FittedPoint, Reduction } from '../../reduction/reduction.ts';
+import type { SegmentResult } from '../results.ts';
+import { type CurrentCurves, type CurrentPoint, currentPlot } from './current-plot.ts';
+import type { PlotOptions } from './ring-down-plot.ts';
+import type { Label } from './svg.ts';
+
+/** The part of results that the plots against current draw. */
+export interface PlottedResults {
+  readonly segments: readonly SegmentResult[];
+  readonly reduction: Reduction;
+}
+
+/** f0² against current with the fitted curve, its standard uncertainty, and the residuals; an SVG document as text. */
+export function fieldPlot(results: PlottedResults, options: PlotOptions = {}): string {
+  return currentPlot(fieldCurves(results), options);
+}
+
+/** The rest direction against current with the fitted turning and the residuals; null where there is nothing to draw. */
+export function restDirectionPlot(results: PlottedResults, options: PlotOptions = {}): string | null {
+  const curves = restDirectionCurves(results);
+  return curves.points.length > 0 ? currentPlot(curves, { height: 340, ...options }) : null;
+}
+
+/** What `fieldPlot` draws: every segment with a current and a frequency, in Hz². */
+export function fieldCurves({ segments, reduction }: PlottedResults): CurrentCurves {
+  const fitted = new Map(reduction.points.map((p) => [p.id, p]));
+  const used = new Set(reduction.points_used);
+  const points = segments.flatMap((segment): CurrentPoint[] => {
+    const { current_A, f0_Hz, u_f0_Hz } = segment;
+    if (current_A === null || f0_Hz === null) return [];
+    const point = fitted.get(segment.id);
+    return [
+      {
+        ...place(segment, current_A, used),
+        value: f0_Hz ** 2,
+        u: u_f0_Hz === null ? null : 2 * f0_Hz * u_f0_Hz,
+        residual: point?.residual_Hz2 ?? null,
+        u_residual: point ? uncertainty(point.residual_Hz2, point.standardised_residual) : null,
+      },
+    ];
+  });
+  const { curve } = reduction;
+  const square: Label = [{ symbol: 'f' }, { sub: '0' }, '² / Hz²'];
+  return {
+    id: 'field',
+    title: 'Square of the undamped frequency against current, with the fitted curve and residuals',
+    quantity: square,
+    residualQuantity: ['resid. / Hz²'],
+    points,
+    curve: curve && { current_A: curve.current_A, value: curve.f0_squared_Hz2, u: curve.u_f0_squared_Hz2 },
+    curveName: reduction.model?.kind === 'line' ? 'fitted line' : 'fitted curve',
+  };
+}
+
+/** What `restDirectionPlot` draws, in degrees; fitted values are joined in the order of the current. */
+export function restDirectionCurves({ segments, reduction }: PlottedResults): CurrentCurves {
+  const used = new Set(reduction.points_used);
+  const rows = new Map(segments.map((s) => [s.id, s]));
+  const turned = reduction.points.filter((p) => p.equilibrium_deg !== null && p.fitted_equilibrium_deg !== null);
+  const points = turned.flatMap((point): CurrentPoint[] => {
+    const segment = rows.get(point.id);
+    if (!segment || point.equilibrium_deg === null) return [];
+    return [
+      {
+        ...place(segment, point.current_A, used),
+        value: point.equilibrium_deg,
+        u: segment.u_equilibrium_deg,
+        residual: point.equilibrium_residual_deg,
+        u_residual: uncertainty(point.equilibrium_residual_deg, point.standardised_equilibrium_residual),
+      },
+    ];
+  });
+  return {
+    id: 'rest',
+    title: 'Rest direction against current, with the fitted turning and residuals',
+    quantity: ['rest direction / °'],
+    residualQuantity: ['resid. / °'],
+    points,
+    curve: joined(turned),
+    curveName: 'fitted turning',
+  };
+}
+
+function joined(points: readonly FittedPoint[]): CurrentCurves['curve'] {
+  const ordered = [...points].sort((a, b) => a.current_A - b.current_A);
+  return {
+    current_A: ordered.map((p) => p.current_A),
+    value: ordered.map((p) => p.fitted_equilibrium_deg ?? Number.NaN),
+    u: null,
+  };
+}
+
+function place(segment: SegmentResult, current_A: number, used: ReadonlySet<string>) {
+  return {
+    id: segment.id,
+    current_A,
+    u_current_A: segment.u_current_A,
+    sweep: segment.sweep,
+    trusted: segment.status === 'measured',
+    used: used.has(segment.id),
+  };
+}
+
+/** A residual's own uncertainty from the residual and its standardised value. */
+function uncertainty(residual: number | null, standardised: number | null): number | null {
+  return residual === null || standardised === null || standardised === 0 ? null : Math.abs(residual / standardised);
+}
