@@ -9,7 +9,8 @@ export interface SegmentResult {
   readonly id: string;
   readonly recording: string;
   readonly view: string;
-  readonly view_kind: 'plan' | 'oblique' | 'side';
+  /** null only where a results file made elsewhere doesn't say: its rest directions can't be compared then. */
+  readonly view_kind: 'plan' | 'oblique' | 'side' | null;
   readonly start_s: number;
   readonly end_s: number;
   readonly current_A: number | null;
