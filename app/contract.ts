@@ -103,8 +103,8 @@ export interface HostEvents {
   document: v.DocumentState;
   results: v.ResultsState;
   progress: v.JobProgress;
-  /** New rows of a trace that is being followed, to be appended. `restart`: throw away what was there. */
-  poses: { job: string; view: string; restart: boolean; trace: v.TraceColumns };
+  /** Rows of a trace that is being followed: they replace whatever the overview had from `from_s` to `to_s` (both included). */
+  poses: { job: string; view: string; from_s: number; to_s: number; trace: v.TraceColumns };
   filmStripPicture: { job: string; position: number; picture: v.Picture };
   playFrame: { job: string; picture: v.Picture };
   /** `error` is null where it went well; reason `cancelled` where it was stopped. */
@@ -244,7 +244,7 @@ export const events = {
   document: v.documentState,
   results: v.resultsState,
   progress: v.jobProgress,
-  poses: z.object({ job: v.id, view: v.id, restart: z.boolean(), trace: v.traceColumns }),
+  poses: z.object({ job: v.id, view: v.id, from_s: z.number(), to_s: z.number(), trace: v.traceColumns }),
   filmStripPicture: z.object({ job: v.id, position: z.number(), picture: v.picture }),
   playFrame: z.object({ job: v.id, picture: v.picture }),
   jobEnded: z.object({ job: v.id, error: z.object({ reason: z.string(), message: z.string() }).nullable() }),

@@ -64,6 +64,8 @@ export type RecordingState = z.infer<typeof recordingState>;
 
 /** The document: the session (null: nothing is open) and what can be done with it. The host has the only copy that counts. */
 export const documentState = z.object({
+  /** Changes whenever another document is opened, never on an edit. */
+  key: z.string(),
   session: sessionSchema.nullable(),
   /** Grows with every change; an edit names the revision it was made on. */
   revision: z.number(),

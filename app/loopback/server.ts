@@ -56,7 +56,7 @@ export async function serveLoopback(options: LoopbackOptions): Promise<LoopbackS
     socket.on('error', () => socket.destroy());
     const refusal = gate.stranger(request, true) ?? (gate.admitted(request) ? null : 'no_cookie');
     if (refusal) return refuseUpgrade(socket, 403);
-    if (request.url !== '/socket') return refuseUpgrade(socket, 404);
+    if (request.url !== '/link') return refuseUpgrade(socket, 404);
     sockets.handleUpgrade(request, socket, head, (webSocket) => options.connect(socketTransport(webSocket)));
   });
 
