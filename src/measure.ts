@@ -97,7 +97,7 @@ export function assembleResults(
     program: programName,
     session: { title: session.title ?? '', sha256: file.sha256 },
     recordings: session.recordings.flatMap((r) => recordings.get(r.id)?.facts ?? []),
-    ffmpeg: tools.version,
+    ffmpeg: tools.version.text,
     ...rig,
     segments: rows,
     reduction: reduceSegments(rows, rig),

@@ -4,7 +4,7 @@ import { decodeFrames } from '../recording/decode-frames.ts';
 import type { FfmpegTools } from '../recording/find-ffmpeg.ts';
 import type { DecodeAccount, Frame } from '../recording/recording.ts';
 import type { Apparatus } from '../reduction/apparatus.ts';
-import { momentOfInertia } from '../reduction/inertia.ts';
+import { inertia } from '../reduction/inertia.ts';
 import type { SegmentResult } from '../report/results.ts';
 import type { Session, SessionSegment, SessionView } from '../session/session.ts';
 import type { TrackerPool } from '../tracking/pool.ts';
@@ -43,7 +43,8 @@ export async function measureSegment(
   return segmentResult({ segment, view, opened, outcome, account, ...fit });
 }
 
-async function followSegment(
+/** The first half of `measureSegment`: decodes one segment and follows the bar through it. */
+export async function followSegment(
   segment: SessionSegment,
   view: SessionView,
   opened: OpenRecording,
@@ -93,13 +94,10 @@ export function fitTrace(
 /** kappa / (4 pi² J f0²): the fibre's share of the restoring torque, where the rig's description gives kappa and J. */
 function fibreShare(f0_Hz: number, apparatus: Apparatus | undefined): { value: number; u: number } | null {
   const fibre = apparatus?.fibre;
-  const inertia = apparatus?.magnet ? momentOfInertia(apparatus.magnet) : null;
-  if (!fibre || !inertia) return null;
-  const value = fibre.stiffness_N_m_per_rad / (4 * Math.PI ** 2 * inertia.value * f0_Hz ** 2);
-  const relative = Math.hypot(
-    (fibre.u_stiffness_N_m_per_rad ?? 0) / (fibre.stiffness_N_m_per_rad || 1),
-    inertia.u / inertia.value,
-  );
+  const J = apparatus?.magnet ? inertia(apparatus.magnet) : null;
+  if (!fibre || !J) return null;
+  const value = fibre.stiffness_N_m_per_rad / (4 * Math.PI ** 2 * J.value * f0_Hz ** 2);
+  const relative = Math.hypot((fibre.u_stiffness_N_m_per_rad ?? 0) / (fibre.stiffness_N_m_per_rad || 1), J.u / J.value);
   // The field may still be pulled off the fibre's rest direction, which a share alone doesn't tell: never quite certain.
   return { value, u: Math.max(0.005, value * relative) };
 }

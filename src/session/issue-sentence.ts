@@ -50,8 +50,8 @@ function expectation(issue: Issue): string {
     case 'invalid_value':
       return issue.values.map((v) => JSON.stringify(v)).join(' or ');
     case 'invalid_union':
-      return Array.isArray(issue.options)
-        ? issue.options.map((v) => JSON.stringify(v)).join(' or ')
+      return 'options' in issue && Array.isArray(issue.options)
+        ? issue.options.map((option: unknown) => JSON.stringify(option)).join(' or ')
         : 'of a known kind';
     case 'invalid_format':
       return issue.format === 'date' ? 'a date as YYYY-MM-DD' : 'a name without control characters';
