@@ -9,9 +9,11 @@ export function estimateText(value: number | null, u: number | null, unit: strin
   const power = threes(Math.max(Math.abs(value), u ?? 0));
   const scale = 10 ** -power;
   const { both } = roundedText(value * scale, u === null ? null : u * scale);
+  const bracketed = both.includes('±') ? `(${both})` : both;
   const tail = unit === '' ? '' : unit === '°' ? '°' : ` ${unit}`;
-  if (power === 0) return both.includes('±') && tail === '°' ? `(${both})°` : `${both}${tail}`;
-  return `${both.includes('±') ? `(${both})` : both} × 10${raised(power)}${tail}`;
+  // A sign of degree or per cent belongs to both numbers.
+  if (power === 0) return `${unit === '°' || unit === '%' ? bracketed : both}${tail}`;
+  return `${bracketed} × 10${raised(power)}${tail}`;
 }
 
 /** A number with so many significant digits, in powers of ten where it is very large or small. */

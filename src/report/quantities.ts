@@ -83,13 +83,7 @@ export const quantities: readonly Quantity[] = [
   ),
   quantity('moment_A_m2', 'Magnetic moment', 'm', ['A m²', 1], 'Magnetic moment of the bar.'),
   quantity('inertia_kg_m2', 'Moment of inertia', 'J', ['kg m²', 1], 'Moment of inertia of the bar about the fibre.'),
-  quantity(
-    'fibre_stiffness_N_m_per_rad',
-    'Fibre stiffness',
-    'κ',
-    ['N m/rad', 1],
-    'Torsional stiffness of the fibre.',
-  ),
+  quantity('fibre_stiffness_N_m_per_rad', 'Fibre stiffness', 'κ', ['N m/rad', 1], 'Torsional stiffness of the fibre.'),
   quantity(
     'fibre_share',
     'Fibre’s share of the torque',

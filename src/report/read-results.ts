@@ -32,14 +32,17 @@ export function parseResults(text: string, name: string): Results {
 /** The file most easily taken for a results file deserves its own sentence. */
 function refuseSession(value: unknown, name: string): void {
   if (typeof value === 'object' && value !== null && 'format' in value && value.format === 'needlebeat/session') {
-    throw new InputError(`${name}: this is a session file; a results file (results.json), which measuring a session writes, was expected.`);
+    throw new InputError(
+      `${name}: this is a session file; a results file (results.json), which measuring a session writes, was expected.`,
+    );
   }
 }
 
 function checkSegments(segments: Results['segments'], name: string): void {
   const seen = new Set<string>();
   for (const { id, f0_Hz, u_f0_Hz, status } of segments) {
-    if (seen.has(id)) throw new InputError(`${name}: segments: two entries have the id "${id}"; each id must be unique.`);
+    if (seen.has(id))
+      throw new InputError(`${name}: segments: two entries have the id "${id}"; each id must be unique.`);
     seen.add(id);
     if (status !== 'unmeasured' && (f0_Hz === null || u_f0_Hz === null)) {
       throw new InputError(

@@ -73,7 +73,8 @@ export function traceFileName(id: string): string {
  */
 export function traceFileNames(ids: readonly string[]): ReadonlyMap<string, string> {
   const alike = new Map<string, number>();
-  for (const id of new Set(ids)) alike.set(traceFileName(id).toLowerCase(), (alike.get(traceFileName(id).toLowerCase()) ?? 0) + 1);
+  for (const id of new Set(ids))
+    alike.set(traceFileName(id).toLowerCase(), (alike.get(traceFileName(id).toLowerCase()) ?? 0) + 1);
   return new Map(
     ids.map((id) => {
       const name = traceFileName(id);
@@ -86,7 +87,9 @@ export function traceFileNames(ids: readonly string[]): ReadonlyMap<string, stri
 function encoded(id: string, plain: RegExp): string {
   let text = '';
   for (const character of id) {
-    text += plain.test(character) ? character : Buffer.from(character, 'utf8').reduce((t, byte) => t + percent(byte), '');
+    text += plain.test(character)
+      ? character
+      : Buffer.from(character, 'utf8').reduce((t, byte) => t + percent(byte), '');
   }
   return text;
 }

@@ -56,12 +56,25 @@ export function currentPlot(curves: CurrentCurves, options: PlotOptions = {}): s
   };
   const currentLabel: Label = ['current ', { symbol: 'I' }, ' / A'];
   let content = panelAxes(upper, { x: residuals ? null : currentLabel, y: curves.quantity }, theme);
-  content += clip(upper, clipId(curves.id, 'c'), levelLine(upper, 0, theme) + band(upper, curves, theme) + fitted(upper, curves, theme));
+  content += clip(
+    upper,
+    clipId(curves.id, 'c'),
+    levelLine(upper, 0, theme) + band(upper, curves, theme) + fitted(upper, curves, theme),
+  );
   content += curves.points.map((p) => mark(upper, p, p.value, p.u, theme)).join('');
   if (residuals) {
-    const lower: Panel = { left, right, top: split, bottom, x, y: linearScale(residualDomain(curves), [bottom, split], 4) };
+    const lower: Panel = {
+      left,
+      right,
+      top: split,
+      bottom,
+      x,
+      y: linearScale(residualDomain(curves), [bottom, split], 4),
+    };
     content += panelAxes(lower, { x: currentLabel, y: curves.residualQuantity }, theme) + levelLine(lower, 0, theme);
-    const marks = curves.points.map((p) => (p.residual === null ? '' : mark(lower, p, p.residual, p.u_residual, theme)));
+    const marks = curves.points.map((p) =>
+      p.residual === null ? '' : mark(lower, p, p.residual, p.u_residual, theme),
+    );
     content += clip(lower, clipId(curves.id, 'd'), marks.join(''));
   }
   content += legend(entries(curves, theme), left, 14, theme);
@@ -119,7 +132,10 @@ function mark(panel: Panel, point: CurrentPoint, value: number, u: number | null
   if (x === null || y === null) return '';
   const stroke = colour(point, theme);
   let bars = '';
-  const [x0, x1] = [panel.x.place(point.current_A - point.u_current_A), panel.x.place(point.current_A + point.u_current_A)];
+  const [x0, x1] = [
+    panel.x.place(point.current_A - point.u_current_A),
+    panel.x.place(point.current_A + point.u_current_A),
+  ];
   if (x0 !== null && x1 !== null && x1 - x0 > 1) bars += path([x0, y], [x1, y]);
   const [y0, y1] = [panel.y.place(value - (u ?? 0)), panel.y.place(value + (u ?? 0))];
   if (y0 !== null && y1 !== null && y0 - y1 > 1) {

@@ -30,7 +30,8 @@ export function panelAxes(
     if (at === null || at < left - 0.5 || at > right + 0.5) continue;
     lines += element('path', { d: path([at, top], [at, bottom]) });
     marks += element('path', { d: path([at, bottom], [at, bottom + TICK]) });
-    if (labels.x) texts += element('text', { x: at, y: bottom + TICK + FONT, 'text-anchor': 'middle' }, escapeText(tick.text));
+    if (labels.x)
+      texts += element('text', { x: at, y: bottom + TICK + FONT, 'text-anchor': 'middle' }, escapeText(tick.text));
   }
   for (const tick of panel.y.ticks) {
     const at = panel.y.place(tick.value);

@@ -51,7 +51,11 @@ export function ringDownPlot(curves: RingDownCurves, options: PlotOptions = {}):
     curves.unit === 'deg' ? ['angle ', { symbol: 'θ' }, ` / ${unit}`] : ['position ', { symbol: 'x' }, ` / ${unit}`];
   const timeLabel: Label = ['time ', { symbol: 't' }, ' / s'];
   let content = panelAxes(upper, { x: curves.residual ? null : timeLabel, y: quantity }, theme);
-  content += clip(upper, clipId(curves.id, 'a'), fitLine(upper, curves, theme) + dots(upper, curves, curves.angle, theme));
+  content += clip(
+    upper,
+    clipId(curves.id, 'a'),
+    fitLine(upper, curves, theme) + dots(upper, curves, curves.angle, theme),
+  );
   if (curves.residual) {
     const lower = residualPanel(left, right, split, bottom, x, curves);
     content += panelAxes(lower, { x: timeLabel, y: [`resid. / ${unit}`] }, theme) + levelLine(lower, 0, theme);
@@ -62,7 +66,14 @@ export function ringDownPlot(curves: RingDownCurves, options: PlotOptions = {}):
   return svgDocument({ width, height }, { title, background: theme.background }, content);
 }
 
-function residualPanel(left: number, right: number, top: number, bottom: number, x: Panel['x'], curves: RingDownCurves) {
+function residualPanel(
+  left: number,
+  right: number,
+  top: number,
+  bottom: number,
+  x: Panel['x'],
+  curves: RingDownCurves,
+) {
   const residual = curves.residual ?? [];
   const used = Array.from(residual).filter((_, i) => !curves.used || curves.used[i]);
   // The used rows set the height; a row left out may lie far off and is cut.
@@ -88,7 +99,8 @@ function dots(panel: Panel, curves: RingDownCurves, y: ArrayLike<number>, theme:
     // A dot is a line of no length with round ends: one path for all of them keeps the page small.
     if (px !== null && py !== null) d += `M${coordinate(px)} ${coordinate(py)}h0`;
   }
-  let markup = d && element('path', { d, stroke: theme.data, 'stroke-width': 2.2, 'stroke-linecap': 'round', fill: 'none' });
+  let markup =
+    d && element('path', { d, stroke: theme.data, 'stroke-width': 2.2, 'stroke-linecap': 'round', fill: 'none' });
   if (curves.used) {
     const out = Array.from(curves.used, (u) => (u ? 0 : 1));
     for (const i of decimated(curves.time_s, y, columns, out)) {

@@ -33,11 +33,7 @@ export function domainOf(values: Iterable<number | null>, margin = 0.05): readon
 /**
  * Scale from `domain` to `range` (drawing units, either way up) with about `count` ticks at 1, 2 or 5 times a power of ten.
  */
-export function linearScale(
-  domain: readonly [number, number],
-  range: readonly [number, number],
-  count: number,
-): Scale {
+export function linearScale(domain: readonly [number, number], range: readonly [number, number], count: number): Scale {
   const [low, high] = domain;
   const factor = (range[1] - range[0]) / (high - low || 1);
   return {

@@ -71,8 +71,7 @@ function spectrumLine(
 ): string {
   const d = curve(panel, x, y, decimated(x, y, Math.round(panel.right - panel.left)));
   return (
-    d &&
-    element('path', { d, fill: 'none', stroke: style.stroke, 'stroke-width': 1.3, 'stroke-dasharray': style.dash })
+    d && element('path', { d, fill: 'none', stroke: style.stroke, 'stroke-width': 1.3, 'stroke-dasharray': style.dash })
   );
 }
 

@@ -42,10 +42,12 @@ export function labelMarkup(label: Label, fontSize: number): string {
   let shifted = 0;
   let markup = '';
   for (const piece of label) {
-    const target = typeof piece === 'string' || 'symbol' in piece ? 0 : 'sub' in piece ? 0.22 * fontSize : -0.36 * fontSize;
+    const target =
+      typeof piece === 'string' || 'symbol' in piece ? 0 : 'sub' in piece ? 0.22 * fontSize : -0.36 * fontSize;
     const dy = target - shifted || null;
     shifted = target;
-    if (typeof piece === 'string') markup += dy === null ? escapeText(piece) : element('tspan', { dy }, escapeText(piece));
+    if (typeof piece === 'string')
+      markup += dy === null ? escapeText(piece) : element('tspan', { dy }, escapeText(piece));
     else if ('symbol' in piece) markup += element('tspan', { dy, 'font-style': 'italic' }, escapeText(piece.symbol));
     else {
       const text = 'sub' in piece ? piece.sub : piece.sup;
@@ -58,7 +60,9 @@ export function labelMarkup(label: Label, fontSize: number): string {
 /** A label as plain text, for titles that are read aloud. */
 export function labelText(label: Label): string {
   return label
-    .map((p) => (typeof p === 'string' ? p : 'symbol' in p ? p.symbol : 'sub' in p ? p.sub : p.sup === '2' ? '²' : p.sup))
+    .map((p) =>
+      typeof p === 'string' ? p : 'symbol' in p ? p.symbol : 'sub' in p ? p.sub : p.sup === '2' ? '²' : p.sup,
+    )
     .join('');
 }
 

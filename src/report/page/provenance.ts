@@ -1,0 +1,92 @@
+import { numberText, typedText } from '../number-text.ts';
+import type { Results } from '../results.ts';
+import { html, type Markup, type Piece, table } from './html.ts';
+
+/** Where the numbers come from: session, recordings, programs, rig and place. */
+export function provenance(results: Results): Markup {
+  const { session, recordings } = results;
+  const rows = recordings.map((r) => [
+    r.id,
+    html`${r.file}<br><code>${r.content}</code>`,
+    groups(r.bytes),
+    typedText(r.time_scale),
+    numberText(r.u_time_scale, 2),
+  ]);
+  return html`<section>
+<h2>Session, recordings and programs</h2>
+<dl class="facts">
+<dt>Session file, SHA-256</dt><dd><code>${session.sha256}</code></dd>
+<dt>Program</dt><dd>${results.program}</dd>
+<dt>Decoder</dt><dd>${results.ffmpeg || 'not stated'}</dd>
+</dl>
+${
+  rows.length === 0
+    ? null
+    : table({
+        heads: ['Recording', 'File and content hash', 'Bytes', 'Time scale', html`<i>u</i>(time scale)`],
+        rows,
+        numbers: [2, 3, 4],
+      })
+}
+${rig(results)}
+</section>`;
+}
+
+const NAMES: Readonly<Record<string, readonly [string, string]>> = {
+  turns_per_coil: ['Turns per coil', ''],
+  turns_second_coil: ['Turns of the second coil', ''],
+  radius_m: ['Coil radius', 'm'],
+  radius_second_coil_m: ['Radius of the second coil', 'm'],
+  spacing_m: ['Coil spacing', 'm'],
+  constant_T_per_A: ['Coil constant', 'T/A'],
+  shape: ['Shape of the magnet', ''],
+  mass_kg: ['Mass', 'kg'],
+  length_m: ['Length', 'm'],
+  diameter_m: ['Diameter', 'm'],
+  width_m: ['Width', 'm'],
+  inertia_kg_m2: ['Moment of inertia', 'kg m²'],
+  stiffness_N_m_per_rad: ['Fibre stiffness', 'N m/rad'],
+  latitude_deg: ['Latitude', '°'],
+  longitude_deg: ['Longitude', '°'],
+  height_m: ['Height', 'm'],
+  date: ['Date', ''],
+};
+
+function rig({ apparatus, place }: Results): Markup | null {
+  const rows: Piece[][] = [];
+  const groupsOfFacts: readonly (readonly [string, object | undefined])[] = [
+    ['Coils', apparatus?.coil],
+    ...Object.entries(apparatus ?? {})
+      .filter(([name]) => name !== 'coil')
+      .map(([name, facts]): [string, object | undefined] => [titleCase(name), facts as object | undefined]),
+    ['Place', place],
+  ];
+  for (const [part, facts] of groupsOfFacts) {
+    const entries = new Map<string, unknown>(Object.entries(facts ?? {}));
+    let first = true;
+    for (const [key, value] of entries) {
+      if (key.startsWith('u_') && entries.has(key.slice(2))) continue;
+      const [name, unit] = NAMES[key] ?? [key.replaceAll('_', ' '), ''];
+      rows.push([first ? part : '', name, shown(value), shown(entries.get(`u_${key}`)), unit]);
+      first = false;
+    }
+  }
+  if (rows.length === 0) return null;
+  return html`<h3>Apparatus as described in the session</h3>
+${table({ heads: ['Part', 'Quantity', 'Value', 'Standard uncertainty', 'Unit'], rows, numbers: [2, 3] })}`;
+}
+
+function titleCase(name: string): string {
+  return name.charAt(0).toUpperCase() + name.slice(1).replaceAll('_', ' ');
+}
+
+function shown(value: unknown): string {
+  if (typeof value === 'number')
+    return Math.abs(value) >= 1e-3 || value === 0 ? typedText(value) : numberText(value, 5);
+  return typeof value === 'string' ? value : '';
+}
+
+/** Digits in groups of three, set apart by thin spaces. */
+function groups(value: number): string {
+  return String(value).replace(/\B(?=(\d{3})+$)/g, '\u2009');
+}
