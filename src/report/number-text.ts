@@ -16,6 +16,11 @@ export function estimateText(value: number | null, u: number | null, unit: strin
   return `${bracketed} × 10${raised(power)}${tail}`;
 }
 
+/** A number with at most so many significant digits, without zeros at its end. */
+export function shortText(value: number | null, digits = 6): string {
+  return value === null || !Number.isFinite(value) ? NOTHING : typedText(Number(value.toPrecision(digits)));
+}
+
 /** A number with so many significant digits, in powers of ten where it is very large or small. */
 export function numberText(value: number | null, digits = 4): string {
   if (value === null || !Number.isFinite(value)) return NOTHING;
@@ -26,9 +31,17 @@ export function numberText(value: number | null, digits = 4): string {
   return `${minus(lead)} × 10${raised(power)}`;
 }
 
+/** A standard or expanded uncertainty alone, with two significant digits and its unit. */
+export function uncertaintyText(u: number, unit: string): string {
+  const tail = unit === '' || unit === '°' ? unit : ` ${unit}`;
+  return `${numberText(u, 2)}${tail}`;
+}
+
 /** A number as it was typed: all its digits, no rounding, a true minus sign. */
 export function typedText(value: number | null): string {
-  return value === null ? NOTHING : minus(String(value));
+  if (value === null) return NOTHING;
+  const [lead = '', exponent] = String(value).split('e');
+  return exponent === undefined ? minus(lead) : `${minus(lead)} × 10${raised(Number(exponent))}`;
 }
 
 /** A whole number of degrees of freedom, or infinity where there is no limit. */

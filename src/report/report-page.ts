@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { cautions } from './page/cautions.ts';
 import { findings } from './page/findings.ts';
-import { pageHead } from './page/head.ts';
+import { mainResults, pageHead } from './page/head.ts';
 import { html, type Markup, trusted } from './page/html.ts';
 import { provenance } from './page/provenance.ts';
 import { fitDetails, reductionSection } from './page/reduction.ts';
@@ -16,6 +16,8 @@ import type { Results } from './results.ts';
 export interface ReportExtras {
   /** Curves of segments by id, for the plots of ring-downs; segments without any have none. */
   readonly traces?: ReadonlyMap<string, RingDownCurves>;
+  /** Names of trace files that were found and don't belong to these results. */
+  readonly strangers?: readonly string[];
   /** Date on which the page is made, as it is to stand there; left out: not shown. */
   readonly madeOn?: string;
 }
@@ -39,13 +41,14 @@ export function reportPage(results: Results, extras: ReportExtras = {}): string 
 <body>
 ${pageHead(results, extras.madeOn ?? null)}
 ${cautions()}
-${reductionSection(results)}
+${mainResults(results)}
 ${figures(results)}
+${reductionSection(results)}
 ${segmentTables(results)}
 ${findings(results)}
 ${uncertaintySection(results)}
 ${fitDetails(results)}
-${ringDowns(results, extras.traces ?? new Map())}
+${ringDowns(results, extras)}
 ${provenance(results)}
 <footer>Made by ${results.program} from a results file. Every value is given with its standard uncertainty (<i>k</i> = 1) unless it says otherwise.</footer>
 </body>
@@ -67,7 +70,7 @@ ${
 }`;
 }
 
-function ringDowns(results: Results, traces: ReadonlyMap<string, RingDownCurves>): Markup | null {
+function ringDowns(results: Results, { traces = new Map(), strangers = [] }: ReportExtras): Markup | null {
   const plots = results.segments.flatMap((segment) => {
     const curves = traces.get(segment.id);
     if (!curves || curves.time_s.length < 2) return [];
@@ -77,8 +80,12 @@ function ringDowns(results: Results, traces: ReadonlyMap<string, RingDownCurves>
 `,
     ];
   });
-  return plots.length === 0
+  if (plots.length === 0 && strangers.length === 0) return null;
+  return html`<section><h2>Ring-downs</h2>
+${
+  strangers.length === 0
     ? null
-    : html`<section><h2>Ring-downs</h2>
+    : html`<p>Not shown, since they are not of this measurement or can’t be read: ${strangers.join(', ')}.</p>`
+}
 ${plots}</section>`;
 }

@@ -9,8 +9,5 @@ export const cautionSentences: readonly string[] = [
 
 /** The cautions as a box. */
 export function cautions(): Markup {
-  return html`<div class="cautions">${cautionSentences.map(
-    (sentence) => html`<p>${sentence}</p>
-`,
-  )}</div>`;
+  return html`<p class="cautions">${cautionSentences.join(' ')}</p>`;
 }

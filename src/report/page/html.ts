@@ -25,8 +25,13 @@ export function trusted(markup: string): Markup {
 function pieceText(piece: Piece): string {
   if (piece === null) return '';
   if (piece instanceof Markup) return piece.text;
-  if (typeof piece === 'string' || typeof piece === 'number') return escapeText(printable(String(piece)));
+  if (typeof piece === 'string' || typeof piece === 'number') return escapeText(unbroken(printable(String(piece))));
   return piece.map(pieceText).join('');
+}
+
+/** A number stays on the line of its sign of per cent or its uncertainty. */
+function unbroken(text: string): string {
+  return text.replace(/(\d) (?=%|± )/g, '$1\u00a0').replace(/± (?=\d)/g, '±\u00a0');
 }
 
 /** A symbol such as `f_0²`: Latin and Greek letters slanted, the sign after `_` lowered. */

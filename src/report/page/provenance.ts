@@ -81,8 +81,7 @@ function titleCase(name: string): string {
 }
 
 function shown(value: unknown): string {
-  if (typeof value === 'number')
-    return Math.abs(value) >= 1e-3 || value === 0 ? typedText(value) : numberText(value, 5);
+  if (typeof value === 'number') return typedText(value);
   return typeof value === 'string' ? value : '';
 }
 

@@ -1,5 +1,5 @@
 import type { ModelKind, Reduction } from '../../reduction/reduction.ts';
-import { dofText, estimateText, NOTHING, numberText, percentText, typedText } from '../number-text.ts';
+import { dofText, estimateText, NOTHING, numberText, percentText, typedText, uncertaintyText } from '../number-text.ts';
 import { type Quantity, quantities } from '../quantities.ts';
 import type { Results } from '../results.ts';
 import { severityMark } from './findings.ts';
@@ -42,7 +42,7 @@ function resultRows(reduction: Reduction, known: readonly Quantity[]): Markup {
         q.title,
         symbolMarkup(q.symbol),
         shown(q, reduction[q.name], reduction[`u_${q.name}`]),
-        budget ? estimateText(Number((budget.expanded_u * q.perUnit).toPrecision(2)), null, q.unit) : NOTHING,
+        budget ? uncertaintyText(budget.expanded_u * q.perUnit, q.unit) : NOTHING,
         budget ? budget.coverage_factor.toFixed(2) : NOTHING,
       ];
     }),
@@ -122,7 +122,7 @@ export function fitDetails({ reduction }: Results): Markup | null {
     const field =
       sweeps.difference_T === null
         ? ''
-        : `, a change of the field by ${estimateText(sweeps.difference_T * 1e6, null, 'µT')}`;
+        : `, a change of the field by ${uncertaintyText(sweeps.difference_T * 1e6, 'µT')}`;
     parts.push(
       html`<p>Falling less rising steps (${sweeps.falling} and ${sweeps.rising}): ${difference} in ${symbolMarkup('f_0²')}${field}; a larger difference has a chance of ${percentText(sweeps.p_value)} where there is none.</p>`,
     );

@@ -55,7 +55,7 @@ function frequencyRow(s: SegmentResult): Piece[] {
       : s.u_current_A > 0
         ? roundedText(s.current_A, s.u_current_A).both
         : typedText(s.current_A),
-    s.sweep === 'rising' ? '↑ rising' : s.sweep === 'falling' ? '↓ falling' : '',
+    s.sweep === null ? '' : html`<span class="nb">${s.sweep === 'rising' ? '↑' : '↓'} ${s.sweep}</span>`,
     s.left_out === null ? s.status : `${s.status}, left out`,
     pair(s.f0_Hz, s.u_f0_Hz),
     pair(s.fd_Hz, s.u_fd_Hz),

@@ -12,6 +12,7 @@ body {
 header { border-bottom: 1.6pt solid #1c2126; padding-bottom: 3mm; margin-bottom: 4mm; }
 header p { margin: 0; color: #5b646d; }
 h1 { font-size: 19pt; line-height: 1.2; font-weight: 600; margin: 1mm 0 1.5mm; letter-spacing: -0.01em; }
+h2 + p { break-after: avoid; }
 h2 { font-size: 12pt; font-weight: 600; margin: 8mm 0 2mm; padding-bottom: 1mm; border-bottom: 0.6pt solid #9aa5ae; break-after: avoid; }
 h3 { font-size: 9.5pt; font-weight: 600; margin: 4.5mm 0 1mm; break-after: avoid; }
 p { margin: 0 0 2mm; max-width: 165mm; }
@@ -34,7 +35,7 @@ tr.total td { border-top: 0.8pt solid #414a52; border-bottom: 0; font-weight: 60
 tr.doubtful td { background: #fdf3e7; }
 tr.unmeasured td { background: #f6edf2; }
 tr.out td { color: #5b646d; }
-.nb { white-space: nowrap; }
+td:has(.nb), .nb { white-space: nowrap; }
 .key { display: grid; grid-template-columns: repeat(3, 1fr); gap: 0; border: 0.6pt solid #9aa5ae; margin: 0 0 4mm; }
 .key div { padding: 2.4mm 3.2mm; border-left: 0.4pt solid #dde2e6; }
 .key div:first-child { border-left: 0; }
@@ -49,8 +50,7 @@ tr.out td { color: #5b646d; }
 .mark.fault { color: #8e2c63; }
 .mark.doubt { color: #a34a00; }
 .mark.note { color: #5b646d; font-weight: 400; }
-.cautions { border-left: 2pt solid #d55e00; padding: 1mm 0 1mm 3mm; margin: 4mm 0; break-inside: avoid; }
-.cautions p { margin: 0 0 1mm; max-width: none; }
+.cautions { border-left: 2pt solid #d55e00; padding: 0.3mm 0 0.3mm 3mm; margin: 0 0 4mm; font-size: 8pt; color: #414a52; break-inside: avoid; }
 figure { margin: 2mm 0 4mm; break-inside: avoid; }
 figure svg { display: block; width: 100%; height: auto; }
 figcaption { font-size: 8.5pt; color: #414a52; margin-top: 1mm; }

@@ -1,5 +1,5 @@
 import type { Budget, ResultName } from '../../reduction/reduction.ts';
-import { dofText, estimateText, NOTHING, numberText, percentText } from '../number-text.ts';
+import { dofText, estimateText, NOTHING, numberText, percentText, shortText, uncertaintyText } from '../number-text.ts';
 import { type Quantity, quantities } from '../quantities.ts';
 import type { Results } from '../results.ts';
 import { html, type Markup, symbolMarkup, table } from './html.ts';
@@ -24,7 +24,7 @@ ${monteCarlo(reduction.monte_carlo)}
 function budgetTable(q: Quantity, budget: Budget): Markup {
   const rows = budget.rows.map((row) => [
     row.input,
-    html`<span class="nb">${numberText(row.value, 6)}</span>`,
+    html`<span class="nb">${shortText(row.value)}</span>`,
     numberText(row.u, 2),
     row.unit === '1' ? '' : row.unit,
     numberText(row.sensitivity, 3),
@@ -33,7 +33,7 @@ function budgetTable(q: Quantity, budget: Budget): Markup {
     budget.u > 0 ? percentText((row.contribution / budget.u) ** 2) : NOTHING,
   ]);
   const total = [
-    html`${q.title} ${symbolMarkup(q.symbol)}`,
+    html`Result ${symbolMarkup(q.symbol)}`,
     numberText(budget.value, 6),
     '',
     budget.unit === '1' ? '' : budget.unit,
@@ -43,7 +43,7 @@ function budgetTable(q: Quantity, budget: Budget): Markup {
     '',
   ];
   return html`<section class="whole">
-<h3>${q.title} ${symbolMarkup(q.symbol)} = ${estimateText(budget.value * q.perUnit, budget.u * q.perUnit, q.unit)}; expanded <i>U</i> = ${estimateText(Number((budget.expanded_u * q.perUnit).toPrecision(2)), null, q.unit)} (<i>k</i> = ${budget.coverage_factor.toFixed(2)}, 95 %)</h3>
+<h3>${q.title} ${symbolMarkup(q.symbol)} = ${estimateText(budget.value * q.perUnit, budget.u * q.perUnit, q.unit)}; expanded <i>U</i> = ${uncertaintyText(budget.expanded_u * q.perUnit, q.unit)} (<i>k</i> = ${budget.coverage_factor.toFixed(2)}, 95 %)</h3>
 ${table({
   heads: [
     'Quantity',

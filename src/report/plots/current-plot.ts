@@ -61,7 +61,9 @@ export function currentPlot(curves: CurrentCurves, options: PlotOptions = {}): s
     clipId(curves.id, 'c'),
     levelLine(upper, 0, theme) + band(upper, curves, theme) + fitted(upper, curves, theme),
   );
-  content += curves.points.map((p) => mark(upper, p, p.value, p.u, theme)).join('');
+  // What needs attention is drawn last, on top of the others.
+  const points = [...curves.points].sort((a, b) => weight(a) - weight(b));
+  content += points.map((p) => mark(upper, p, p.value, p.u, theme)).join('');
   if (residuals) {
     const lower: Panel = {
       left,
@@ -72,13 +74,15 @@ export function currentPlot(curves: CurrentCurves, options: PlotOptions = {}): s
       y: linearScale(residualDomain(curves), [bottom, split], 4),
     };
     content += panelAxes(lower, { x: currentLabel, y: curves.residualQuantity }, theme) + levelLine(lower, 0, theme);
-    const marks = curves.points.map((p) =>
-      p.residual === null ? '' : mark(lower, p, p.residual, p.u_residual, theme),
-    );
+    const marks = points.map((p) => (p.residual === null ? '' : mark(lower, p, p.residual, p.u_residual, theme)));
     content += clip(lower, clipId(curves.id, 'd'), marks.join(''));
   }
   content += legend(entries(curves, theme), left, 14, theme);
   return svgDocument({ width, height }, { title: curves.title, background: theme.background }, content);
+}
+
+function weight(point: CurrentPoint): number {
+  return (point.trusted ? 0 : 1) + (point.used ? 0 : 2);
 }
 
 function currentDomain(curves: CurrentCurves): readonly [number, number] {

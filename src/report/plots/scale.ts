@@ -75,11 +75,11 @@ export function niceTicks(low: number, high: number, count: number): readonly Ti
   return ticks;
 }
 
-/** The smallest of 1, 2, 5 times a power of ten that is not below `rough`. */
+/** Whichever of 1, 2, 5 times a power of ten is nearest to `rough` by ratio. */
 export function niceStep(rough: number): number {
   const power = 10 ** Math.floor(Math.log10(rough));
   const lead = rough / power;
-  const nice = lead <= 1 + 1e-9 ? 1 : lead <= 2 + 1e-9 ? 2 : lead <= 5 + 1e-9 ? 5 : 10;
+  const nice = lead < Math.SQRT2 ? 1 : lead < Math.sqrt(10) ? 2 : lead < Math.sqrt(50) ? 5 : 10;
   return nice * power;
 }
 

@@ -1,0 +1,52 @@
+import { z } from 'zod';
+import { sessionSchema } from '../session/session.ts';
+import { columns } from './columns.ts';
+import { fieldDescriptions } from './field-descriptions.ts';
+import { quantities } from './quantities.ts';
+import { resultsSchema } from './results-schema.ts';
+
+/** Names of the schemas; they name no place on the web, since there is none to fetch them from. */
+export const SESSION_SCHEMA_ID = 'urn:needlebeat:schema:session:1';
+export const RESULTS_SCHEMA_ID = 'urn:needlebeat:schema:results:1';
+
+/** JSON Schema (draft 2020-12) of a session file. What fields say of each other (overlaps, unknown ids) is beyond it. */
+export function sessionJsonSchema(): object {
+  return published(sessionSchema, SESSION_SCHEMA_ID, 'Session of Needlebeat: what a user decided about recordings');
+}
+
+/** JSON Schema (draft 2020-12) of a results file as this program writes it; a reader may meet further keys. */
+export function resultsJsonSchema(): object {
+  return published(resultsSchema, RESULTS_SCHEMA_ID, 'Results of Needlebeat: segments, frequencies and reduction');
+}
+
+/** The text of a schema's file. */
+export function schemaText(schema: object): string {
+  return `${JSON.stringify(schema, null, 2)}\n`;
+}
+
+function published(schema: z.ZodType, id: string, title: string): object {
+  const { $schema, ...rest } = z.toJSONSchema(schema, {
+    target: 'draft-2020-12',
+    io: 'output',
+    override: ({ zodSchema, jsonSchema }) => {
+      const { properties } = jsonSchema;
+      if (!properties) return;
+      for (const [key, property] of Object.entries(properties)) {
+        const description = descriptions.get(key);
+        if (description !== undefined && typeof property === 'object') property.description = description;
+      }
+      // Only an object that refuses unknown keys when it is read says so.
+      const { catchall } = zodSchema._zod.def as { catchall?: z.core.$ZodType };
+      if (catchall?._zod.def.type !== 'never') delete jsonSchema.additionalProperties;
+    },
+  });
+  return { $schema, $id: id, title, ...rest };
+}
+
+/** One description per key: a name means the same wherever it stands. */
+const descriptions: ReadonlyMap<string, string> = new Map([
+  ...Object.entries(fieldDescriptions),
+  ...columns.map((c): [string, string] => [c.name, c.unit ? `${c.description} Unit: ${c.unit.text}.` : c.description]),
+  ...quantities.map((q): [string, string] => [q.name, q.description]),
+  ...quantities.map((q): [string, string] => [`u_${q.name}`, `Standard uncertainty (k = 1) of ${q.name}.`]),
+]);
