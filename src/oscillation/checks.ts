@@ -1,0 +1,198 @@
+import type { Estimate } from '../numerics/estimate.ts';
+import type { Jump } from './jumps.ts';
+import type { Check, RingDown, RingDownOptions, Severity } from './ring-down.ts';
+import { type RingDownCode, SENTENCES } from './sentences.ts';
+import type { SwingLine } from './swing.ts';
+import type { CrossingResult } from './zero-crossings.ts';
+
+/** What the checks judge: the ring-down and what was seen on the way to it. Angles in the trace's unit. */
+export interface Facts {
+  readonly ringDown: RingDown;
+  readonly options: RingDownOptions;
+  readonly refused: number;
+  readonly duration_s: number;
+  readonly medianInterval_s: number;
+  readonly longestInterval_s: number;
+  /** Drift of the rest direction per second. */
+  readonly drift: Estimate;
+  /** Standard uncertainty of f0 without the clock. */
+  readonly noiseOnlyU_Hz: number;
+  /** Noise near the twist's frequency over the mean square of the residuals: 1 for white noise. */
+  readonly levelRatio: number;
+  readonly crossings: CrossingResult | null;
+  readonly jump: Jump | null;
+  readonly swings: readonly SwingLine[];
+  readonly angleLine: { readonly frequency_Hz: number; readonly amplitude: number } | null;
+  /** Another frequency that fits nearly as well, null where there is none. */
+  readonly rival_Hz: number | null;
+  /** A frequency above half the frame rate that fits the uneven frame times better, null where there is none. */
+  readonly folded_Hz: number | null;
+  /** Energy of the twist over the noise: its mean square times the number of samples over the noise variance. */
+  readonly signal: number;
+  readonly converged: boolean;
+}
+
+function check<C extends RingDownCode>(
+  code: C,
+  severity: Severity,
+  facts: Parameters<(typeof SENTENCES)[C]>[0],
+): Check {
+  // Each sentence takes its own facts; the table's union can't be called without saying so.
+  const sentence = SENTENCES[code] as (f: Parameters<(typeof SENTENCES)[C]>[0]) => string;
+  return { code, severity, message: sentence(facts) };
+}
+
+const DEG = Math.PI / 180;
+/** Fewer cycles than this give no frequency; fewer than the second number one to be doubted. */
+const FEWEST_CYCLES = 2.5;
+const FEW_CYCLES = 3.5;
+
+/** Faults that leave a segment unmeasured. */
+export const faults = {
+  tooFewPoses: (poses: number, refused: number): Check[] => [check('too_few_poses', 'fault', { poses, refused })],
+  noOscillation: (): Check[] => [check('no_oscillation', 'fault', undefined)],
+  ofFacts(facts: Facts): Check[] {
+    const { ringDown } = facts;
+    const u = ringDown.f0_Hz.u / ringDown.f0_Hz.value;
+    if (!facts.converged || !Number.isFinite(u)) return [check('fit_failed', 'fault', undefined)];
+    if (!(facts.signal > 60)) return faults.noOscillation();
+    if (ringDown.cycles < FEWEST_CYCLES) return [check('too_few_cycles', 'fault', { cycles: ringDown.cycles })];
+    if (u > 0.02) return [check('not_determined', 'fault', { relative: u })];
+    return [];
+  },
+};
+
+/** Notes and doubts about a segment that has been measured. */
+export function findings(facts: Facts): Check[] {
+  return [...sampled(facts), ...disturbed(facts), ...moved(facts), ...judged(facts)];
+}
+
+/** How it was filmed. */
+function sampled(facts: Facts): Check[] {
+  const { ringDown, options } = facts;
+  const out: Check[] = [];
+  const frequency_Hz = ringDown.fd_Hz.value;
+  const rate_Hz = 1 / facts.medianInterval_s;
+  if (facts.folded_Hz !== null) {
+    out.push(check('folded_frequency', 'doubt', { frequency_Hz, other_Hz: facts.folded_Hz }));
+  } else if (frequency_Hz > 0.4 * rate_Hz) {
+    out.push(check('near_half_frame_rate', 'doubt', { frequency_Hz, rate_Hz }));
+  } else if (frequency_Hz > 0.2 * rate_Hz) {
+    out.push(check('few_frames_per_cycle', 'note', { frequency_Hz, rate_Hz }));
+  }
+  const gapCycles = facts.longestInterval_s * frequency_Hz;
+  if (facts.rival_Hz !== null) {
+    out.push(check('ambiguous_frequency', 'doubt', { frequency_Hz, other_Hz: facts.rival_Hz }));
+  } else if (gapCycles > 0.75) {
+    out.push(check('long_gap', 'note', { gap_s: facts.longestInterval_s, cycles: gapCycles }));
+  }
+  const facing = options.facing_rad ?? null;
+  if (options.view === 'side' && facing !== null && Math.abs(facing) > 65 * DEG) {
+    out.push(check('broadside_view', 'doubt', { facing_deg: facing / DEG }));
+  }
+  if (ringDown.unit === 'px') out.push(check('unscaled_view', 'doubt', undefined));
+  const frames = ringDown.usedRows.length + facts.refused;
+  if (facts.refused > 0.1 * frames) {
+    out.push(check('bad_poses', facts.refused > 0.4 * frames ? 'doubt' : 'note', { refused: facts.refused, frames }));
+  }
+  const count = ringDown.usedRows.length - ringDown.used;
+  if (count > 0.01 * ringDown.usedRows.length) {
+    const severity = count > 0.1 * ringDown.usedRows.length ? 'doubt' : 'note';
+    out.push(check('outliers', severity, { count, poses: ringDown.usedRows.length }));
+  }
+  return out;
+}
+
+/** What else moved. */
+function disturbed(facts: Facts): Check[] {
+  const { ringDown, jump } = facts;
+  const out: Check[] = [];
+  if (jump !== null && isJump(facts, jump)) out.push(check('jump', 'doubt', { time_s: jump.time_s, size: jump.size }));
+  const twist_Hz = ringDown.fd_Hz.value;
+  const swing = ringDown.swing;
+  const closest = facts.swings
+    .map((line) => line.frequency_Hz)
+    .sort((a, b) => Math.abs(a - twist_Hz) - Math.abs(b - twist_Hz))[0];
+  if (
+    closest !== undefined &&
+    swing !== null &&
+    swing.share > 0.05 &&
+    Math.abs(closest - twist_Hz) * facts.duration_s < 0.8
+  ) {
+    out.push(check('swing_close', 'doubt', { frequency_Hz: closest, twist_Hz, share: swing.share }));
+  } else if (facts.angleLine !== null && facts.angleLine.amplitude > 0.5 * ringDown.amplitudeStart) {
+    const share = facts.angleLine.amplitude / ringDown.amplitudeStart;
+    out.push(check('second_line', 'doubt', { frequency_Hz: facts.angleLine.frequency_Hz, share }));
+  } else if (swing !== null && swing.share > 0.01) {
+    out.push(check('swing_seen', 'note', { frequency_Hz: swing.frequency_Hz, share: swing.share }));
+  }
+  return out;
+}
+
+/** A jump counts where it can't be chance and either is large or would move the frequency by more than its uncertainty. */
+function isJump(facts: Facts, jump: Jump): boolean {
+  if (!(jump.evidence > 30)) return false;
+  const shift_Hz = Math.abs(jump.omegaShift) / (2 * Math.PI);
+  return jump.size > 0.05 || (jump.size > 0.005 && shift_Hz > 1.5 * facts.noiseOnlyU_Hz);
+}
+
+/** How the bar moved. */
+function moved(facts: Facts): Check[] {
+  const { ringDown } = facts;
+  const { unit, amplitudeStart, amplitudeEnd } = ringDown;
+  const out: Check[] = [];
+  if (unit === 'rad') {
+    if (amplitudeStart > 45 * DEG) out.push(check('amplitude_extreme', 'doubt', { amplitude: amplitudeStart }));
+    else if (ringDown.amplitudeShift > 2e-3) {
+      out.push(check('amplitude_large', 'note', { amplitude: amplitudeStart, shift: ringDown.amplitudeShift }));
+    }
+  }
+  if (ringDown.quadraticDrag > 0) {
+    const quadratic = ((4 / 3) * ringDown.quadraticDrag * ringDown.fd_Hz.value * 2 * amplitudeStart) / 1;
+    const share = quadratic / (quadratic + Math.max(ringDown.gamma_per_s.value, 0));
+    if (share > 0.02) out.push(check('drag_quadratic', 'note', { share }));
+  }
+  const growth = Math.log(amplitudeEnd / amplitudeStart);
+  if (growth > 0.02 && -ringDown.gamma_per_s.value > 3 * ringDown.gamma_per_s.u) {
+    out.push(check('amplitude_grows', 'doubt', { start: amplitudeStart, end: amplitudeEnd, unit }));
+  }
+  const drift = Math.abs(facts.drift.value) * facts.duration_s;
+  const significant = Math.abs(facts.drift.value) > 4 * facts.drift.u;
+  if (significant && drift > 0.03 * amplitudeStart) {
+    out.push(check('rest_drifts', drift > 0.3 * amplitudeStart ? 'doubt' : 'note', { drift, unit }));
+  }
+  return out;
+}
+
+/** How far the numbers carry. */
+function judged(facts: Facts): Check[] {
+  const { ringDown, options, crossings } = facts;
+  const out: Check[] = [];
+  if (ringDown.cycles < FEW_CYCLES) out.push(check('too_few_cycles', 'doubt', { cycles: ringDown.cycles }));
+  if (crossings !== null) {
+    const difference = Math.abs(crossings.frequency_Hz - crossings.model_Hz);
+    if (difference > 5 * Math.hypot(crossings.u_Hz, facts.noiseOnlyU_Hz) && difference > 1e-5 * crossings.model_Hz) {
+      const facts = { counted_Hz: crossings.frequency_Hz, fitted_Hz: crossings.model_Hz };
+      out.push(check('crossings_disagree', 'doubt', facts));
+    }
+  }
+  const amplitude = Math.sqrt((ringDown.amplitudeStart ** 2 + ringDown.amplitudeEnd ** 2) / 2);
+  if (ringDown.residualRms > 0.15 * amplitude) {
+    const facts = { rms: ringDown.residualRms, amplitude, unit: ringDown.unit };
+    out.push(check('residuals_not_noise', 'doubt', facts));
+  } else if (facts.levelRatio > 4) {
+    out.push(check('residuals_correlated', 'note', { factor: Math.sqrt(facts.levelRatio) }));
+  }
+  const relative = ringDown.f0_Hz.u / ringDown.f0_Hz.value;
+  if (relative > 5e-3) out.push(check('imprecise', 'doubt', { relative }));
+  if (options.u_time_scale > Math.SQRT1_2 * relative) {
+    out.push(check('clock_unverified', 'note', { relative: options.u_time_scale }));
+  }
+  return out;
+}
+
+/** The contract's status from the checks: any fault leaves a segment unmeasured, any doubt makes it doubtful. */
+export function statusOf(checks: readonly Check[]): 'measured' | 'doubtful' | 'unmeasured' {
+  if (checks.some((c) => c.severity === 'fault')) return 'unmeasured';
+  return checks.some((c) => c.severity === 'doubt') ? 'doubtful' : 'measured';
+}

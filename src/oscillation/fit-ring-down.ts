@@ -1,0 +1,188 @@
+import type { Estimate } from '../numerics/estimate.ts';
+import { rootMeanSquare } from '../numerics/statistics.ts';
+import type { Trace } from '../tracking/trace.ts';
+import { amplitudeAt, frequencyRatio, meanSquareAmplitude, startAmplitude } from './amplitude.ts';
+import { setUp } from './assumptions.ts';
+import { type Facts, faults, findings } from './checks.ts';
+import { chooseStart } from './choose-start.ts';
+import { findJump } from './jumps.ts';
+import { DRAG, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA } from './model.ts';
+import type { RingDown, RingDownOptions, RingDownOutcome } from './ring-down.ts';
+import { foldedFrom, gapRival } from './rivals.ts';
+import { angleSeries, type Series, sampling } from './series.ts';
+import { addLines, type FitWithLines, motionAt } from './side-lines.ts';
+import { dragEvidence, fitTwist, type TwistFit, uncertaintyOf } from './twist-fit.ts';
+import { compareCrossings, crossings } from './zero-crossings.ts';
+
+/** Fewer poses than this give no ring-down. */
+const FEWEST_POSES = 24;
+/** An unscaled side view is fitted as if its largest excursion were this angle; the prior on the share says how little that is known. */
+const NOMINAL_AMPLITUDE_rad = 0.14;
+/** Fall of chi-square by one more parameter that Akaike's criterion asks for, beside the correction for few samples. */
+const AIC_PENALTY = 2;
+
+/**
+ * Fits the decaying twist of one segment: frequency in the limit of small amplitude, damping, rest direction, each with a standard uncertainty
+ * from noise with its correlation, what the fit had to assume, and (for rates) the clock; and says in checks what keeps the numbers
+ * from being trusted. Throws RangeError for a trace whose columns don't fit together or whose times don't ascend.
+ */
+export function fitRingDown(trace: Trace, options: RingDownOptions): RingDownOutcome {
+  const raw = angleSeries(trace);
+  const poses = raw.time_s.length;
+  const refused = trace.refused.length;
+  if (poses < FEWEST_POSES) return { ok: false, checks: faults.tooFewPoses(poses, refused) };
+  const series: Series =
+    trace.unit === 'rad' ? raw : { time_s: raw.time_s, value: raw.value.map(nominalAngle(raw.value)) };
+  const unitScale = trace.unit === 'rad' ? 1 : 1 / nominalAngle(raw.value)(1, 0, raw.value);
+  const { duration_s } = sampling(series);
+  const start = chooseStart(series, trace, options.view === 'side');
+  if (start === null) return { ok: false, checks: faults.noOscillation() };
+
+  const first = setUp(start, duration_s, options, trace.unit, false);
+  const plain = fitTwist(series, first.model, first.start);
+  if (plain === null) return { ok: false, checks: faults.noOscillation() };
+  const lined = addLines(series, trace, plain, options.view === 'side');
+  const fit = withDrag(series, lined.fit);
+  const facts = factsOf(fit, { ...lined, fit }, trace, options, unitScale);
+  const fault = faults.ofFacts(facts);
+  if (fault.length > 0) return { ok: false, checks: fault };
+  return { ok: true, ringDown: facts.ringDown, checks: findings(facts) };
+}
+
+function nominalAngle(value: Float64Array): (v: number, i: number, all: Float64Array) => number {
+  const middle = value.reduce((a, b) => a + b, 0) / value.length;
+  const swing = Math.SQRT2 * rootMeanSquare(value.map((v) => v - middle));
+  const factor = swing > 0 ? NOMINAL_AMPLITUDE_rad / swing : 1;
+  return (v) => factor * v;
+}
+
+/** Frees the quadratic drag of its prior where Akaike's criterion asks for it. */
+function withDrag(series: Series, fit: TwistFit): TwistFit {
+  const n = fit.residual.length;
+  const k = fit.parameters.length;
+  const correction = (2 * (2 * k + 1)) / Math.max(1, n - k - 2);
+  if (dragEvidence(fit) < AIC_PENALTY + correction) return fit;
+  const model = { ...fit.model, priors: fit.model.priors.filter((prior) => prior.parameter !== DRAG) };
+  const freed = fitTwist(series, model, fit.parameters, fit);
+  // Negative drag would drive the bar: no physics, so the prior stays.
+  return freed !== null && freed.parameters[DRAG]! > 0 ? freed : fit;
+}
+
+/** Value and standard uncertainty of a function of the parameters: derivatives over half a standard uncertainty to either side. */
+function derived(fit: TwistFit, dof: number, f: (p: Float64Array) => number): Estimate {
+  const { parameters, covariance } = fit;
+  const n = parameters.length;
+  const gradient = parameters.map((value, k) => {
+    const u = uncertaintyOf(fit, k);
+    if (u === 0) return 0;
+    const moved = parameters.slice();
+    moved[k] = value + u / 2;
+    const high = f(moved);
+    moved[k] = value - u / 2;
+    return (high - f(moved)) / u;
+  });
+  let variance = 0;
+  for (let a = 0; a < n; a++)
+    for (let b = 0; b < n; b++) variance += gradient[a]! * covariance[a * n + b]! * gradient[b]!;
+  return { value: f(parameters), u: Math.sqrt(Math.max(0, variance)), dof };
+}
+
+/** Adds the clock's relative uncertainty to a rate. */
+function withClock(estimate: Estimate, u_time_scale: number): Estimate {
+  const clock = Math.abs(estimate.value) * u_time_scale;
+  const u = Math.hypot(estimate.u, clock);
+  // Welch-Satterthwaite with a clock known exactly enough (JCGM 100:2008 G.4).
+  return {
+    value: estimate.value,
+    u,
+    dof: estimate.u > 0 ? estimate.dof * (u / estimate.u) ** 4 : Number.POSITIVE_INFINITY,
+  };
+}
+
+function factsOf(
+  fit: TwistFit,
+  { swings, angleLine }: FitWithLines,
+  trace: Trace,
+  options: RingDownOptions,
+  unitScale: number,
+): Facts {
+  const { parameters, samples } = fit;
+  const motion = motionOf(parameters);
+  const raw = angleSeries(trace);
+  const rate = sampling(raw);
+  const end = raw.time_s[raw.time_s.length - 1]!;
+  const dof = Math.max(
+    1,
+    (fit.residual.length - fit.model.fixed.filter((held) => !held).length) / (1 + fit.noise.coefficients.length),
+  );
+  const clocked = (f: (p: Float64Array) => number) => withClock(derived(fit, dof, f), options.u_time_scale);
+  const seenAt = (p: Float64Array) => {
+    const m = motionOf(p);
+    return frequencyRatio(m, Math.sqrt(meanSquareAmplitude(m, startAmplitude(m), end)));
+  };
+  const f0 = clocked((p) => p[OMEGA]! / (2 * Math.PI));
+  const fd = clocked((p) => (Math.sqrt(Math.max(0, p[OMEGA]! ** 2 - p[GAMMA]! ** 2)) / (2 * Math.PI)) * seenAt(p));
+  const gamma = clocked((p) => p[GAMMA]!);
+  const rest = derived(fit, dof, (p) => p[OFFSET]! * unitScale);
+  const a0 = startAmplitude(motion);
+  const period_s = 1 / fd.value;
+
+  const fitted = new Float64Array(raw.time_s.length);
+  evaluateModel(fit.model, parameters, raw.time_s, fitted, null);
+  for (let i = 0; i < fitted.length; i++) fitted[i] = fitted[i]! * unitScale;
+  const { twist, rate: twistRate } = motionAt(fit, samples.time_s);
+  const swung = samples.value.map((_, i) => twist[i]! * fit.model.blur + fit.residual[i]!);
+  const size = (t: number) => amplitudeAt(motion, a0, t);
+  const counted = compareCrossings(
+    crossings({ time_s: samples.time_s, value: swung }, period_s, size),
+    crossings({ time_s: samples.time_s, value: twist }, period_s, size),
+    period_s,
+  );
+  const half = trace.halfLength_px;
+  const swing = swings[0];
+  const shareOf = (amplitude: number) => amplitude / a0;
+  const ringDown: RingDown = {
+    unit: trace.unit,
+    f0_Hz: f0,
+    fd_Hz: fd,
+    gamma_per_s: gamma,
+    q: gamma.value > 2 * gamma.u ? derived(fit, dof, (p) => p[OMEGA]! / (2 * p[GAMMA]!)) : null,
+    equilibrium: { ...rest, u: Math.hypot(rest.u, trace.u_common) },
+    amplitudeStart: a0 * unitScale,
+    amplitudeEnd: size(end) * unitScale,
+    cycles: fd.value * end,
+    used: fit.residual.length,
+    residualRms: rootMeanSquare(fit.residual) * unitScale,
+    crossings_Hz: counted === null ? null : { value: counted.frequency_Hz, u: counted.u_Hz, dof: counted.dof },
+    swing:
+      swing !== undefined && half !== null
+        ? { frequency_Hz: swing.frequency_Hz, share: shareOf(swing.amplitude_px / half) }
+        : angleLine !== null
+          ? { frequency_Hz: angleLine.frequency_Hz, share: shareOf(angleLine.amplitude) }
+          : null,
+    amplitudeShift: 1 / seenAt(parameters) - 1,
+    quadraticDrag: fit.model.priors.some((prior) => prior.parameter === DRAG) ? 0 : parameters[DRAG]!,
+    fitted,
+    residual: fitted.map((value, i) => trace.angle[i]! - value),
+    usedRows: fit.used,
+  };
+  return {
+    ringDown,
+    options,
+    refused: trace.refused.length,
+    duration_s: end,
+    medianInterval_s: rate.medianInterval_s,
+    longestInterval_s: rate.longestInterval_s,
+    drift: { ...derived(fit, dof, (p) => p[OFFSET + 1]! * unitScale) },
+    noiseOnlyU_Hz: derived(fit, dof, (p) => p[OMEGA]! / (2 * Math.PI)).u,
+    levelRatio: fit.level / Math.max(rootMeanSquare(fit.residual) ** 2, 1e-300),
+    crossings: counted,
+    jump: findJump(fit, twist, twistRate, Math.max(period_s, 0.05 * end)),
+    swings,
+    angleLine,
+    rival_Hz: gapRival(fit),
+    folded_Hz: foldedFrom(fit),
+    signal: (fit.residual.length * rootMeanSquare(twist) ** 2) / fit.level,
+    converged: fit.converged,
+  };
+}
