@@ -1,6 +1,7 @@
 /** What the keys of session and results files mean, besides the columns of the table and the results of the reduction. */
 export const fieldDescriptions: Readonly<Record<string, string>> = {
   format: 'Kind of file.',
+  id: 'Name, unique within its list.',
   version: 'Version of the format.',
   title: 'Title of the session, for people.',
   recordings: 'Video files as the camera wrote them.',
@@ -20,7 +21,7 @@ export const fieldDescriptions: Readonly<Record<string, string>> = {
   length_m: 'Length of the bar in m.',
   diameter_m: 'Diameter of a cylindrical bar in m.',
   width_m: 'Horizontal width of a rectangular bar, across its length, in m.',
-  fibre: 'The fibre that the bar hangs on.',
+  fibre: 'In an apparatus: the fibre that the bar hangs on. In a model: where the fibre’s share comes from.',
   stiffness_N_m_per_rad: 'Torsional stiffness of the fibre in N m/rad.',
   place: 'Where and when the recording was made, for the field expected there.',
   latitude_deg: 'Geographic latitude in degrees, north positive.',
@@ -49,7 +50,7 @@ export const fieldDescriptions: Readonly<Record<string, string>> = {
   message: 'The finding as a plain sentence.',
   points_used: 'Segments that entered the fit.',
   points_left_out: 'Segments that did not, each with its reason.',
-  model: 'Which model the numbers come from, and why.',
+  model: 'Which model the numbers come from.',
   fit: 'The fit of the chosen model.',
   points: 'Every segment with a current and a frequency against the fit.',
   leave_one_out: 'How the results move when one segment is left out.',

@@ -45,8 +45,8 @@ function published(schema: z.ZodType, id: string, title: string): object {
 
 /** One description per key: a name means the same wherever it stands. */
 const descriptions: ReadonlyMap<string, string> = new Map([
-  ...Object.entries(fieldDescriptions),
   ...columns.map((c): [string, string] => [c.name, c.unit ? `${c.description} Unit: ${c.unit.text}.` : c.description]),
   ...quantities.map((q): [string, string] => [q.name, q.description]),
   ...quantities.map((q): [string, string] => [`u_${q.name}`, `Standard uncertainty (k = 1) of ${q.name}.`]),
+  ...Object.entries(fieldDescriptions),
 ]);
