@@ -6,19 +6,6 @@ export interface Ticks {
 
 const LARGEST_COUNT = 1000;
 
-/**
- * Round marks (1, 2 or 5 times a power of ten) within [from, to], about `target` of them.
- * An empty or reversed span gives none.
- */
-export function niceTicks(from: number, to: number, target: number): Ticks {
-  const span = to - from;
-  if (!(span > 0) || !(target > 0)) return { places: [], decimals: 0 };
-  const rough = span / target;
-  const power = 10 ** Math.floor(Math.log10(rough));
-  const step = power * ([1, 2, 5, 10].find((m) => m * power >= rough * 0.999) ?? 10);
-  return { places: multiples(from, to, step), decimals: Math.max(0, -Math.floor(Math.log10(step) + 1e-9)) };
-}
-
 const TIME_STEPS_S = [
   0.001, 0.002, 0.005, 0.01, 0.02, 0.05, 0.1, 0.2, 0.5, 1, 2, 5, 10, 15, 30, 60, 120, 300, 600, 900, 1800, 3600, 7200,
 ];

@@ -1,0 +1,126 @@
+import { useEffect, useState } from 'preact/hooks';
+import { edit, session } from '../state/document.ts';
+import {
+  COIL_FIELDS,
+  type CoilKind,
+  coilKind,
+  FIBRE_FIELD,
+  MAGNET_FIELDS,
+  type MagnetKind,
+  magnetKind,
+  withPart,
+} from './apparatus-fields.ts';
+import { PlacePart } from './place-part.tsx';
+import { RigPart } from './rig-part.tsx';
+
+const COILS: readonly (readonly [CoilKind, string])[] = [
+  ['none', 'not described'],
+  ['dimensions', 'by dimensions'],
+  ['constant', 'by measured constant'],
+];
+const MAGNETS: readonly (readonly [MagnetKind, string])[] = [
+  ['none', 'not described'],
+  ['cylinder', 'cylinder'],
+  ['bar', 'rectangular bar'],
+  ['inertia', 'by moment of inertia'],
+];
+
+/** The rig: coils, magnet, fibre, place. Every number has its standard uncertainty beside it. */
+export function ApparatusSheet() {
+  const rig = session.value?.apparatus;
+  const [coil, chooseCoil] = useKind<CoilKind>(coilKind(rig?.coil));
+  const [magnet, chooseMagnet] = useKind<MagnetKind>(magnetKind(rig?.magnet));
+  return (
+    <div class="apparatus-sheet">
+      <p class="quiet">
+        With the coils the reduction gives the field, with the magnet its moment and inertia as well. Behind ± stands
+        the standard uncertainty.
+      </p>
+      <section>
+        <header class="sheet-head">
+          <h2>Coils</h2>
+          <Choice
+            label="How the coils are described"
+            options={COILS}
+            value={coil}
+            onChange={(kind) => {
+              chooseCoil(kind);
+              if (kind === 'none') edit('Coils', (s) => withPart(s, 'coil', undefined));
+            }}
+          />
+        </header>
+        <RigPart
+          key={coil}
+          name="coil"
+          kind={coil}
+          fields={COIL_FIELDS[coil]}
+          part={coilKind(rig?.coil) === coil ? rig?.coil : undefined}
+        />
+      </section>
+      <section>
+        <header class="sheet-head">
+          <h2>Magnet</h2>
+          <Choice
+            label="How the magnet is described"
+            options={MAGNETS}
+            value={magnet}
+            onChange={(kind) => {
+              chooseMagnet(kind);
+              if (kind === 'none') edit('Magnet', (s) => withPart(s, 'magnet', undefined));
+            }}
+          />
+        </header>
+        <RigPart
+          key={magnet}
+          name="magnet"
+          kind={magnet}
+          fields={MAGNET_FIELDS[magnet]}
+          fixed={magnet === 'cylinder' || magnet === 'bar' ? { shape: magnet } : {}}
+          part={magnetKind(rig?.magnet) === magnet ? rig?.magnet : undefined}
+        />
+      </section>
+      <section>
+        <header class="sheet-head">
+          <h2>Fibre</h2>
+        </header>
+        <RigPart name="fibre" kind="fibre" fields={[FIBRE_FIELD]} part={rig?.fibre} />
+      </section>
+      <section>
+        <header class="sheet-head">
+          <h2>Place and day</h2>
+        </header>
+        <PlacePart place={session.value?.place} />
+      </section>
+    </div>
+  );
+}
+
+/** The kind chosen in the form: what the session holds, or what the user has begun to describe. */
+function useKind<K extends string>(held: K): readonly [K, (kind: K) => void] {
+  const [chosen, choose] = useState<K>(held);
+  useEffect(() => {
+    if (held !== 'none') choose(held);
+  }, [held]);
+  return [chosen, choose];
+}
+
+function Choice<K extends string>(props: {
+  label: string;
+  options: readonly (readonly [K, string])[];
+  value: K;
+  onChange(kind: K): void;
+}) {
+  return (
+    <select
+      aria-label={props.label}
+      value={props.value}
+      onChange={(event) => props.onChange(event.currentTarget.value as K)}
+    >
+      {props.options.map(([kind, words]) => (
+        <option key={kind} value={kind}>
+          {words}
+        </option>
+      ))}
+    </select>
+  );
+}

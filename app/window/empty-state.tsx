@@ -1,0 +1,75 @@
+import { useEffect, useState } from 'preact/hooks';
+import type { Result } from '../contract.ts';
+import { documentState } from './state/document.ts';
+import { chooseAndOpen, openDemo, openRecent } from './state/files.ts';
+import { ask } from './state/host.ts';
+
+const STEPS = [
+  ['Open the recording', 'of the bench: any video that a phone writes.'],
+  ['Draw the region', 'around the reach of the bar, and say how the camera looks.'],
+  ['Follow the bar', 'and see its angle over the whole recording.'],
+  ['Mark a segment', 'wherever the bar was left alone, and type its current.'],
+  ['Read and export', 'frequencies, field and moment with their uncertainties.'],
+] as const;
+
+/** Nothing is open: what to do, the demo session, sessions used before, and the cautions. */
+export function EmptyState() {
+  const [recent, setRecent] = useState<Result<'recentSessions'>>([]);
+  const [about, setAbout] = useState<Result<'about'> | null>(null);
+  const asked = documentState.value !== null;
+  useEffect(() => {
+    if (!asked) return;
+    void ask('recentSessions', {}).then((found) => setRecent(found ?? []));
+    void ask('about', {}).then(setAbout);
+  }, [asked]);
+  return (
+    <main class="empty-state">
+      <div class="empty-page">
+        <h1>Time a magnet on a fibre from a phone recording</h1>
+        <p class="lead">Drop a recording or a session file here, or</p>
+        <div class="empty-buttons">
+          <button type="button" class="primary large" onClick={() => void chooseAndOpen()}>
+            Open a recording or session…
+          </button>
+          <button type="button" class="large" onClick={() => void openDemo()}>
+            Open the demo session
+          </button>
+        </div>
+        <ol class="steps">
+          {STEPS.map(([what, how]) => (
+            <li key={what}>
+              <b>{what}</b> <span>{how}</span>
+            </li>
+          ))}
+        </ol>
+        {recent.length > 0 ? (
+          <section>
+            <h2>Used before</h2>
+            <ul class="recent">
+              {recent.map((one) => (
+                <li key={one.id}>
+                  <button type="button" onClick={() => void openRecent(one.id)}>
+                    <b>{one.title || one.name}</b>
+                    <span class="quiet">
+                      {one.name}, {one.opened.slice(0, 10)}
+                    </span>
+                  </button>
+                </li>
+              ))}
+            </ul>
+          </section>
+        ) : null}
+        {about && about.cautions.length > 0 ? (
+          <section class="cautions">
+            <h2>Cautions</h2>
+            <ul>
+              {about.cautions.map((text) => (
+                <li key={text}>{text}</li>
+              ))}
+            </ul>
+          </section>
+        ) : null}
+      </div>
+    </main>
+  );
+}

@@ -1,0 +1,27 @@
+import { quantityText } from '../numbers/quantity-text.ts';
+
+interface QuantityRowProps {
+  /** Symbol or short name, e.g. f₀. */
+  readonly symbol: string;
+  /** What it is, in words. */
+  readonly name: string;
+  readonly value: number | null | undefined;
+  readonly u?: number | null | undefined;
+  readonly unit: string;
+  readonly factor?: number;
+}
+
+/** One row of a table of quantities: name, value, uncertainty, unit, aligned in columns. */
+export function QuantityRow({ symbol, name, value, u, unit, factor = 1 }: QuantityRowProps) {
+  const text = quantityText(value, u, unit, factor);
+  return (
+    <tr>
+      <th scope="row">
+        <span class="symbol">{symbol}</span> <span class="quantity-name">{name}</span>
+      </th>
+      <td class="value">{text.value}</td>
+      <td class="u">{text.u}</td>
+      <td class="unit">{text.unit}</td>
+    </tr>
+  );
+}

@@ -1,0 +1,218 @@
+import type { SessionView } from '../../contract.ts';
+import { addView, replaceView, SMALLEST_REGION_PX, viewWithRegion } from '../session-edits/view-edits.ts';
+import { viewDraft } from '../state/bar.ts';
+import { edit } from '../state/document.ts';
+import {
+  drawing,
+  lensDraft,
+  lensNow,
+  lensShown,
+  panel,
+  pictureSize,
+  placeLens,
+  zoom,
+  zoomNow,
+} from '../state/picture-tools.ts';
+import { recording, sheet, showView, view } from '../state/selection.ts';
+import { pannedBy, rectangleOnPanel, toPicture } from './picture-zoom.ts';
+import {
+  between,
+  type Handle,
+  handleAt,
+  isInside,
+  moved,
+  type Point,
+  type Rectangle,
+  withHandleMoved,
+} from './region-shape.ts';
+
+/** What a press on the picture takes hold of. */
+export type Grip =
+  | { readonly kind: 'draw' | 'lens' | 'lens-corner' | 'picture' }
+  | { readonly kind: 'region' | 'axis' }
+  | { readonly kind: 'region-handle'; readonly handle: Handle }
+  | { readonly kind: 'half-length'; readonly side: 1 | -1 };
+
+/** A drag that has begun; points are panel coordinates. */
+export interface Drag {
+  to(at: Point): void;
+  end(at: Point): void;
+  giveUp(): void;
+}
+
+const REACH_PX = 8;
+const SMALLEST_LENS_PX = 24;
+
+/** What lies under a point of the panel, the smallest things first. `push`: the middle button moves the picture, whatever lies there. */
+export function gripAt(at: Point, push: boolean): Grip {
+  if (push) return { kind: 'picture' };
+  const v = view.value;
+  if (drawing.value !== null || !v) return { kind: 'draw' };
+  const now = zoomNow();
+  const region = rectangleOnPanel(now, v.region);
+  const handle = handleAt(region, at, REACH_PX);
+  if (handle) return { kind: 'region-handle', handle };
+  if (lensShown()) {
+    const lens = rectangleOnPanel(now, lensNow());
+    if (handleAt(lens, at, REACH_PX) === 'se') return { kind: 'lens-corner' };
+    if (isInside(lens, at) && !isInside(region, at)) return { kind: 'lens' };
+  }
+  if (v.kind === 'side') {
+    const axis_x = v.axis_x_px * now.scale + now.x;
+    const half = (v.half_length_px ?? v.region.width / 3) * now.scale;
+    const inside = at.y >= region.y && at.y <= region.y + region.height;
+    for (const side of [1, -1] as const) {
+      if (inside && Math.abs(at.x - axis_x - side * half) <= REACH_PX) return { kind: 'half-length', side };
+    }
+    if (inside && Math.abs(at.x - axis_x) <= REACH_PX) return { kind: 'axis' };
+  }
+  return isInside(region, at) ? { kind: 'region' } : { kind: 'picture' };
+}
+
+/** Begins a drag; null where there is nothing to drag. */
+export function dragFrom(grip: Grip, from: Point): Drag | null {
+  const v = view.value;
+  switch (grip.kind) {
+    case 'draw':
+      return drawDrag(from);
+    case 'picture':
+      return pictureDrag(from);
+    case 'lens':
+    case 'lens-corner':
+      return lensDrag(grip.kind, from);
+    case 'region':
+    case 'region-handle':
+    case 'axis':
+    case 'half-length':
+      return v ? viewDrag(v, grip, from) : null;
+    default:
+      return grip satisfies never;
+  }
+}
+
+function drawDrag(from: Point): Drag {
+  const start = toPicture(zoomNow(), from);
+  const region = (at: Point) => between(start, toPicture(zoomNow(), at), pictureSize());
+  const id = recording.value?.id ?? '';
+  return {
+    to(at) {
+      viewDraft.value = draftWith(region(at), id);
+    },
+    end(at) {
+      viewDraft.value = null;
+      setRegion(region(at));
+    },
+    giveUp() {
+      viewDraft.value = null;
+    },
+  };
+}
+
+function draftWith(region: Rectangle, recordingId: string): SessionView | null {
+  if (region.width < 2 || region.height < 2) return null;
+  const v = drawing.value === 'new-view' ? null : view.value;
+  return v ? viewWithRegion(v, region) : { id: 'new', recording: recordingId, kind: 'plan', region };
+}
+
+/** Takes a region that was drawn: for the view shown, or for a new one. One that is too small was a slip. */
+export function setRegion(region: Rectangle): void {
+  const r = recording.value;
+  const v = drawing.value === 'new-view' ? null : view.value;
+  if (!r || region.width < SMALLEST_REGION_PX || region.height < SMALLEST_REGION_PX) return;
+  drawing.value = null;
+  if (v) return edit('Draw the region', (s) => replaceView(s, viewWithRegion(v, region)));
+  let id: string | null = null;
+  edit('Draw a region', (s) => {
+    const added = addView(s, r.id, view.value?.kind ?? 'plan', region);
+    id = added.id;
+    return added.session;
+  });
+  if (id !== null) showView(id);
+  sheet.value = 'view';
+}
+
+/** A region in the middle of the picture, for whoever has no pointer. */
+export function middleRegion(): Rectangle {
+  const { width, height } = pictureSize();
+  const side = Math.round(Math.min(width, height) * 0.7);
+  return { x: Math.round((width - side) / 2), y: Math.round((height - side) / 2), width: side, height: side };
+}
+
+function pictureDrag(from: Point): Drag {
+  let before = from;
+  return {
+    to(at) {
+      zoom.value = pannedBy(zoomNow(), at.x - before.x, at.y - before.y, pictureSize(), panel.value);
+      before = at;
+    },
+    end() {},
+    giveUp() {},
+  };
+}
+
+function lensDrag(kind: 'lens' | 'lens-corner', from: Point): Drag {
+  const start = lensNow();
+  const shape = (at: Point): Rectangle => {
+    const { scale } = zoomNow();
+    const dx = (at.x - from.x) / scale;
+    const dy = (at.y - from.y) / scale;
+    return kind === 'lens'
+      ? moved(start, dx, dy, pictureSize())
+      : withHandleMoved(start, 'se', dx, dy, pictureSize(), SMALLEST_LENS_PX);
+  };
+  return {
+    to(at) {
+      lensDraft.value = shape(at);
+    },
+    end: (at) => placeLens(shape(at)),
+    giveUp() {
+      lensDraft.value = null;
+    },
+  };
+}
+
+type ViewGrip = Exclude<Grip, { kind: 'draw' | 'lens' | 'lens-corner' | 'picture' }>;
+
+const LABELS = {
+  region: 'Move the region',
+  'region-handle': 'Resize the region',
+  axis: 'Move the fibre line',
+  'half-length': 'Set the half length',
+};
+
+function viewDrag(start: SessionView, grip: ViewGrip, from: Point): Drag {
+  const shape = (at: Point): SessionView => {
+    const { scale } = zoomNow();
+    return draggedView(start, grip, (at.x - from.x) / scale, (at.y - from.y) / scale);
+  };
+  return {
+    to(at) {
+      viewDraft.value = shape(at);
+    },
+    end(at) {
+      viewDraft.value = null;
+      if (at.x !== from.x || at.y !== from.y)
+        edit(LABELS[grip.kind], (s) => replaceView(s, shape(at)));
+    },
+    giveUp() {
+      viewDraft.value = null;
+    },
+  };
+}
+
+/** The view after one of its grips has been dragged by (dx, dy) displayed pixels. */
+export function draggedView(start: SessionView, grip: Grip, dx: number, dy: number): SessionView {
+  const size = pictureSize();
+  if (grip.kind === 'region') return viewWithRegion(start, moved(start.region, dx, dy, size));
+  if (grip.kind === 'region-handle') {
+    const region = withHandleMoved(start.region, grip.handle, dx, dy, size, SMALLEST_REGION_PX);
+    return start.kind === 'side' ? { ...start, region } : { ...start, region };
+  }
+  if (start.kind !== 'side') return start;
+  if (grip.kind === 'axis') return { ...start, axis_x_px: Math.round(start.axis_x_px + dx) };
+  if (grip.kind === 'half-length') {
+    const before = start.half_length_px ?? start.region.width / 3;
+    return { ...start, half_length_px: Math.max(2, Math.round(before + grip.side * dx)) };
+  }
+  return start;
+}

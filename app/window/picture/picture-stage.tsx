@@ -1,0 +1,132 @@
+import { useEffect, useRef } from 'preact/hooks';
+import { viewDraft } from '../state/bar.ts';
+import { drawing, panel, pictureSize, zoom, zoomNow } from '../state/picture-tools.ts';
+import { shown, wantedWidth_px } from '../state/pictures.ts';
+import { recording, view } from '../state/selection.ts';
+import { BarOutline } from './bar-outline.tsx';
+import { type Drag, dragFrom, type Grip, gripAt } from './drags.ts';
+import { LensFrame } from './lens-frame.tsx';
+import { zoomedAbout } from './picture-zoom.ts';
+import { RegionFrame } from './region-frame.tsx';
+import { SideGuides } from './side-guides.tsx';
+
+const CURSORS: Readonly<Record<string, string>> = {
+  nw: 'nwse-resize',
+  se: 'nwse-resize',
+  ne: 'nesw-resize',
+  sw: 'nesw-resize',
+  n: 'ns-resize',
+  s: 'ns-resize',
+  e: 'ew-resize',
+  w: 'ew-resize',
+};
+
+/** The picture on its panel, with everything that is drawn over it and can be dragged there. */
+export function PictureStage() {
+  const stage = useRef<HTMLDivElement>(null);
+  const canvas = useRef<HTMLCanvasElement>(null);
+  const drag = useRef<Drag | null>(null);
+  const now = zoomNow();
+  const size = panel.value;
+  const picture = pictureSize();
+  const picked = shown.value;
+
+  useEffect(() => {
+    const element = stage.current;
+    if (!element) return;
+    const observer = new ResizeObserver(() => {
+      panel.value = { width: element.clientWidth, height: element.clientHeight };
+    });
+    observer.observe(element);
+    return () => observer.disconnect();
+  }, []);
+
+  useEffect(() => {
+    const wanted = Math.ceil((picture.width * now.scale * devicePixelRatio) / 160) * 160;
+    wantedWidth_px.value = Math.max(160, Math.min(wanted, picture.width, 3840));
+  }, [picture.width, now.scale]);
+
+  useEffect(() => {
+    const surface = canvas.current;
+    const context = surface?.getContext('2d');
+    if (!surface || !context) return;
+    const ratio = devicePixelRatio;
+    surface.width = Math.round(size.width * ratio);
+    surface.height = Math.round(size.height * ratio);
+    if (!picked || picked.recording !== recording.value?.id) return;
+    context.imageSmoothingEnabled = now.scale < 4;
+    context.imageSmoothingQuality = 'high';
+    context.setTransform(ratio, 0, 0, ratio, 0, 0);
+    context.drawImage(picked.bitmap, now.x, now.y, picture.width * now.scale, picture.height * now.scale);
+  }, [picked, now.scale, now.x, now.y, size.width, size.height]);
+
+  function place(event: PointerEvent | WheelEvent) {
+    const box = stage.current?.getBoundingClientRect();
+    return { x: event.clientX - (box?.left ?? 0), y: event.clientY - (box?.top ?? 0) };
+  }
+
+  function show(grip: Grip): void {
+    if (!stage.current) return;
+    stage.current.style.cursor = grip.kind === 'region-handle' ? (CURSORS[grip.handle] ?? 'default') : cursorOf(grip);
+  }
+
+  return (
+    <div
+      ref={stage}
+      class="picture-stage"
+      onPointerDown={(event) => {
+        if (event.button > 1) return;
+        drag.current = dragFrom(gripAt(place(event), event.button === 1), place(event));
+        if (drag.current) event.currentTarget.setPointerCapture(event.pointerId);
+      }}
+      onPointerMove={(event) => {
+        if (drag.current) drag.current.to(place(event));
+        else show(gripAt(place(event), false));
+      }}
+      onPointerUp={(event) => {
+        drag.current?.end(place(event));
+        drag.current = null;
+      }}
+      onPointerCancel={() => {
+        drag.current?.giveUp();
+        drag.current = null;
+      }}
+      onWheel={(event) => {
+        event.preventDefault();
+        zoom.value = zoomedAbout(zoomNow(), place(event), 1.0015 ** -event.deltaY, picture, size);
+      }}
+      data-drawing={drawing.value ?? undefined}
+    >
+      <canvas
+        ref={canvas}
+        role="img"
+        aria-label={picked ? `Frame ${picked.index} at ${picked.time_s.toFixed(3)} s` : 'No frame yet'}
+      />
+      <svg class="overlay" width={size.width} height={size.height}>
+        <RegionFrame view={viewDraft.value ?? view.value} />
+        <SideGuides view={viewDraft.value ?? view.value} />
+        <BarOutline />
+        <LensFrame />
+      </svg>
+    </div>
+  );
+}
+
+function cursorOf(grip: Grip): string {
+  switch (grip.kind) {
+    case 'draw':
+      return 'crosshair';
+    case 'region':
+    case 'lens':
+      return 'move';
+    case 'lens-corner':
+      return 'nwse-resize';
+    case 'axis':
+    case 'half-length':
+      return 'ew-resize';
+    case 'picture':
+      return zoom.value ? 'grab' : 'default';
+    default:
+      return 'default';
+  }
+}
