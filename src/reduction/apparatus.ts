@@ -3,6 +3,7 @@ export interface Apparatus {
   readonly coil?: Coil | undefined;
   readonly magnet?: Magnet | undefined;
   readonly fibre?: Fibre | undefined;
+  readonly meter?: Meter | undefined;
 }
 
 export type Coil = CoilByDimensions | CoilByConstant;
@@ -61,6 +62,16 @@ export interface KnownInertia {
 export interface Fibre {
   readonly stiffness_N_m_per_rad: number;
   readonly u_stiffness_N_m_per_rad?: number | undefined;
+}
+
+/** The current meter: what all steps have in common, and its last digit. */
+export interface Meter {
+  /** Relative standard uncertainty of its scale. */
+  readonly u_gain?: number | undefined;
+  /** Standard uncertainty of its zero, A. */
+  readonly u_zero_A?: number | undefined;
+  /** Step of its last digit, A; a reading is taken to lie evenly within it. */
+  readonly resolution_A?: number | undefined;
 }
 
 /** Where and when, for the field that the World Magnetic Model expects there. `date` is YYYY-MM-DD. */

@@ -1,84 +1,153 @@
-import { yorkLine } from '../numerics/york-line.ts';
+import { chiSquareProbability } from '../numerics/distributions.ts';
 import type { Check } from '../oscillation/ring-down.ts';
+import { budgetOf, correlationOf, uncertaintyOf } from './budget.ts';
+import type { KnownFibre, ScaledCandidate } from './candidates.ts';
+import { checksOf } from './checks.ts';
+import { chooseModel, type ModelChoice } from './choose-model.ts';
 import { coilConstant } from './coil-constant.ts';
-import { inertia } from './inertia.ts';
-import type { Reduction, ReductionInput } from './reduction.ts';
-import { noCoil, noMagnet, tooFewCurrents } from './sentences.ts';
+import { curveOf } from './curve.ts';
+import { expectedField, u_modelHorizontal_T } from './expected-field.ts';
+import { fittedPoints } from './fitted-points.ts';
+import { inertia as inertiaOf } from './inertia.ts';
+import { leaveOneOut } from './leave-one-out.ts';
+import { modelOf } from './model-summary.ts';
+import { monteCarlo } from './monte-carlo.ts';
+import { observe } from './observations.ts';
+import type { Budget, FitSummary, Reduction, ReductionInput, ResultName } from './reduction.ts';
+import { type ResultInputs, type ResultValues, resultNames, results } from './results.ts';
+import { noModelField } from './sentences.ts';
+import { type Source, type SourceContext, sources } from './sources.ts';
+import { compareSweeps, repeatedCurrents } from './sweep-comparison.ts';
+import { at } from './sweep-model.ts';
 import { distinctCurrents, selectPoints } from './used-points.ts';
 
-/** From frequencies and currents to field, moment and stiffness. Never throws for anything a user can meet. */
+/**
+ * From frequencies and currents to field, moment and stiffness, with a budget. What can't be had is null, with a sentence in
+ * `checks`; nothing that a user can meet throws.
+ */
 export function reduce(input: ReductionInput): Reduction {
-  const { used, leftOut } = selectPoints(input.points);
-  const checks: Check[] = [];
-  const coil = input.apparatus?.coil;
-  const magnet = input.apparatus?.magnet;
-  const k = coil ? coilConstant(coil, magnet) : null;
-  const j = magnet ? inertia(magnet) : null;
-  if (k === null) checks.push(noCoil());
-  if (j === null) checks.push(noMagnet());
-  const currents = distinctCurrents(used);
-  if (currents < 2) checks.push(tooFewCurrents(currents));
-  const tiny = 1e-12;
-  const line =
-    currents < 2
-      ? null
-      : yorkLine(
-          used.map((p) => p.current_A),
-          used.map((p) => p.f0_Hz.value ** 2),
-          used.map((p) => p.u_current_A),
-          used.map((p) => Math.max(2 * p.f0_Hz.value * p.f0_Hz.u, tiny)),
-        );
-  const four = 4 * Math.PI ** 2;
-  const ratio = line && k ? (four * Math.abs(line.slope)) / k.value : null;
-  const u_ratio = line && k ? ratio! * Math.hypot(line.u_slope / line.slope, k.u / k.value) : null;
-  const along_A = line ? line.intercept / line.slope : null;
-  const u_along_A = line
-    ? Math.sqrt(line.u_intercept ** 2 + (along_A! * line.u_slope) ** 2 - 2 * along_A! * line.covariance) /
-      Math.abs(line.slope)
-    : null;
-  const ambient = along_A !== null && k ? Math.abs(along_A) * k.value : null;
-  const u_ambient = along_A !== null && k ? Math.hypot(u_along_A! * k.value, along_A * k.u) : null;
-  const moment = ratio !== null && j ? ratio * j.value : null;
+  const { apparatus, place } = input;
+  const selection = selectPoints(input.points);
+  const data = observe(selection.used, apparatus?.meter);
+  const coil = apparatus?.coil === undefined ? null : coilConstant(apparatus.coil, apparatus.magnet);
+  const inertia = apparatus?.magnet === undefined ? null : inertiaOf(apparatus.magnet);
+  const fibre = apparatus?.fibre;
+  const stiffness =
+    fibre === undefined ? null : { value: fibre.stiffness_N_m_per_rad, u: fibre.u_stiffness_N_m_per_rad ?? 0 };
+  const choice = distinctCurrents(selection.used) < 2 ? null : chooseModel(data, knownFibre(stiffness, inertia?.value));
+  const candidate = choice?.chosen ?? null;
+  const context: SourceContext = {
+    inputs: resultInputs(candidate, coil?.value ?? null, inertia?.value ?? null),
+    candidate,
+    coil,
+    inertia,
+    meter: apparatus?.meter,
+    stiffness,
+  };
+  const values = results(context.inputs);
+  const from = sources(context);
+  const u = (name: ResultName) => uncertaintyOf(name, from);
+  const expected = place === undefined ? null : expectedField(place);
+  const expectedChecks: Check[] =
+    expected !== null && !expected.ok ? [noModelField(expected.reason, place?.date ?? '')] : [];
+  const details = {
+    points: fittedPoints(input.points, data, candidate, apparatus?.meter),
+    leave_one_out: candidate === null ? [] : leaveOneOut(candidate, context.inputs, values, u),
+    sweeps: candidate === null ? null : compareSweeps(selection.used, candidate, coil?.value ?? null),
+    repeats: candidate === null ? [] : repeatedCurrents(candidate),
+    model: choice === null ? null : modelOf(choice),
+    expected_field:
+      expected?.ok !== true
+        ? null
+        : {
+            ...expected.field,
+            u_horizontal_T: u_modelHorizontal_T,
+            measured_less_expected_share:
+              values.ambient_T === null ? null : values.ambient_T / expected.field.horizontal_T - 1,
+          },
+  };
   return {
-    ambient_T: ambient,
-    u_ambient_T: u_ambient,
-    apparent_ambient_T: ambient,
-    u_apparent_ambient_T: u_ambient,
-    ambient_along_axis_T: along_A !== null && k ? along_A * k.value : null,
-    u_ambient_along_axis_T: u_ambient,
-    ambient_across_axis_T: null,
-    u_ambient_across_axis_T: null,
-    misalignment_deg: null,
-    u_misalignment_deg: null,
-    slope_Hz2_per_A: line?.slope ?? null,
-    u_slope_Hz2_per_A: line?.u_slope ?? null,
-    intercept_Hz2: line?.intercept ?? null,
-    u_intercept_Hz2: line?.u_intercept ?? null,
-    coil_constant_T_per_A: k?.value ?? null,
-    u_coil_constant_T_per_A: k?.u ?? null,
-    moment_to_inertia: ratio,
-    u_moment_to_inertia: u_ratio,
-    moment_A_m2: moment,
-    u_moment_A_m2: moment !== null ? moment * Math.hypot(u_ratio! / ratio!, j!.u / j!.value) : null,
-    inertia_kg_m2: j?.value ?? null,
-    u_inertia_kg_m2: j?.u ?? null,
-    fibre_stiffness_N_m_per_rad: null,
-    u_fibre_stiffness_N_m_per_rad: null,
-    fibre_share: null,
-    u_fibre_share: null,
-    points_used: line ? used.map((p) => p.id) : [],
-    points_left_out: leftOut,
-    checks,
-    model: null,
-    fit: null,
-    points: [],
-    leave_one_out: [],
-    sweeps: null,
-    repeats: [],
-    budget: {},
-    correlation: { results: [], matrix: [] },
-    monte_carlo: null,
-    expected_field: null,
-    curve: null,
+    ...withUncertainties(values, from),
+    points_used: candidate === null ? [] : selection.used.map(({ id }) => id),
+    points_left_out: selection.leftOut,
+    checks: [...checksOf({ selection, data, choice, context, values, sources: from, ...details }), ...expectedChecks],
+    fit: candidate === null ? null : fitSummary(candidate, choice),
+    ...details,
+    budget: budgets(values, from),
+    correlation: correlationOf(values, from),
+    monte_carlo:
+      (input.monteCarloDraws ?? 0) > 0 && (candidate !== null || coil !== null || inertia !== null)
+        ? monteCarlo(context, Math.floor(input.monteCarloDraws ?? 0), input.seed ?? 1, u)
+        : null,
+    curve: candidate === null ? null : curveOf(candidate),
+  };
+}
+
+/** The fibre's part of f0² from its stiffness; its own uncertainty only, the inertia's is common with other things. */
+function knownFibre(stiffness: { value: number; u: number } | null, inertia: number | undefined): KnownFibre | null {
+  if (stiffness === null || inertia === undefined) return null;
+  const four = 4 * Math.PI ** 2 * inertia;
+  return { value: stiffness.value / four, u: stiffness.u / four };
+}
+
+function resultInputs(candidate: ScaledCandidate | null, coil: number | null, inertia: number | null): ResultInputs {
+  const signs = candidate?.fit.model.signs ?? null;
+  return {
+    parameters: candidate?.fit.parameters ?? null,
+    side: signs?.every((sign) => sign < 0) === true ? -1 : 1,
+    horizontal: candidate?.proposal.kind === 'turning',
+    fibre: candidate !== null && candidate.fibre !== 'assumed',
+    coil_T_per_A: coil,
+    felt_T_per_A: coil,
+    inertia_kg_m2: inertia,
+  };
+}
+
+function withUncertainties(values: ResultValues, from: readonly Source[]) {
+  const u = Object.fromEntries(
+    resultNames.map((name) => [`u_${name}`, values[name] === null ? null : uncertaintyOf(name, from)]),
+  ) as { [name in ResultName as `u_${name}`]: number | null };
+  return { ...values, ...u };
+}
+
+function budgets(values: ResultValues, from: readonly Source[]): { [name in ResultName]?: Budget } {
+  const out: { [name in ResultName]?: Budget } = {};
+  for (const name of resultNames) {
+    const value = values[name];
+    if (value !== null) out[name] = budgetOf(name, value, from);
+  }
+  return out;
+}
+
+function fitSummary(candidate: ScaledCandidate, choice: ModelChoice | null): FitSummary {
+  const { fit } = candidate;
+  const p = fit.parameters;
+  const named: readonly (readonly [number, string, string])[] = [
+    [at.slope, 'slope', 'Hz²/A'],
+    [at.along, 'ambient field along the axis over the coil constant', 'A'],
+    ...(fit.model.fixed.across
+      ? []
+      : [[at.across, 'ambient field across the axis over the coil constant', 'A'] as const]),
+    [at.fibre, 'fibre’s part of f0²', 'Hz²'],
+    ...(fit.model.fixed.twist
+      ? []
+      : [[at.twist, 'fibre’s untwisted direction from the ambient field', 'rad'] as const]),
+    ...(choice !== null && fit.model.directions
+      ? candidate.data.frames.map(
+          (frame, k) => [at.zeros + k, `direction of the coil axis in ${frame}`, 'rad'] as const,
+        )
+      : []),
+  ];
+  const covariance = (a: number, b: number) => fit.covariance[a * p.length + b]!;
+  return {
+    chi_square: candidate.statedChiSquare,
+    dof: fit.dof,
+    p_value: fit.dof > 0 ? 1 - chiSquareProbability(candidate.statedChiSquare, fit.dof) : null,
+    scale_frequencies: candidate.scaleFrequencies,
+    scale_directions: candidate.scaleDirections,
+    parameters: named.map(([k, name, unit]) => ({ name, unit, value: p[k]!, u: Math.sqrt(covariance(k, k)) })),
+    correlation: named.map(([a]) =>
+      named.map(([b]) => (a === b ? 1 : covariance(a, b) / Math.sqrt(covariance(a, a) * covariance(b, b)))),
+    ),
   };
 }

@@ -12,6 +12,8 @@ export interface Derived {
   readonly value: number;
   readonly u: number;
   readonly rows: readonly DerivedRow[];
+  /** The quantity at other values of the inputs, in the order of `rows`. */
+  of(values: readonly number[]): number;
 }
 
 /** One input's part in a derived quantity. */
@@ -32,5 +34,5 @@ export function derive(inputs: readonly BudgetInput[], of: (values: readonly num
     return { ...input, sensitivity: (at(step) - at(-step)) / (2 * step) };
   });
   const u = Math.sqrt(rows.reduce((sum, row) => sum + (row.sensitivity * row.u) ** 2, 0));
-  return { value: of(values), u, rows };
+  return { value: of(values), u, rows, of };
 }

@@ -1,0 +1,195 @@
+import { blankRest, type Turn, wrappedLine } from './bar-on-fibre.ts';
+import { type BranchSplit, branchSplits, isPlausible } from './branch-splits.ts';
+import {
+  type Candidate,
+  fitProposal,
+  type KnownFibre,
+  type Proposal,
+  type ScaledCandidate,
+  scaleToScatter,
+} from './candidates.ts';
+import type { Observations } from './observations.ts';
+import { at, predict, type SweepModel } from './sweep-model.ts';
+
+/** The model that the data can carry, and those it was chosen from. */
+export interface ModelChoice {
+  readonly chosen: ScaledCandidate;
+  readonly candidates: readonly ScaledCandidate[];
+  /** Rest directions were there but could not be brought together with any model. */
+  readonly directionsIgnored: boolean;
+}
+
+/** Rest directions further than this from every model are not those of the bar in the field (the camera was moved, say). */
+const wildDirection_rad = (2 * Math.PI) / 180;
+/** By how much Akaike's criterion must fall before an across component is believed from frequencies alone. */
+const clearGain = 6;
+
+/**
+ * Fits every model that the data could carry and chooses. Rest directions are used where they exist, since they alone show which
+ * way the field is turned; else a plain line or two, unless frequencies alone clearly show the hyperbola of a field component
+ * across the coil axis. Null where not even a line can be fitted.
+ */
+export function chooseModel(data: Observations, known: KnownFibre | null): ModelChoice | null {
+  const splits = branchSplits(data);
+  const best = splits[0];
+  if (best === undefined) return null;
+  const plain = plainCandidates(data, splits, known);
+  if (plain.length === 0) return null;
+  const starts = splits.slice(0, 3);
+  const hasDirections = data.frame.some((frame) => frame >= 0);
+  const turning = hasDirections
+    ? fitAll(
+        data,
+        starts.flatMap((split) => turningProposals(data, split)),
+        known,
+      )
+    : [];
+  const turned = lowest(turning);
+  if (turned !== null && directionMiss(turned) < wildDirection_rad) {
+    return { chosen: turned, candidates: [...plain, ...turning], directionsIgnored: false };
+  }
+  const hyperbolas = fitAll(data, starts.flatMap(hyperbolaProposals), known);
+  const straight = lowest(plain)!;
+  const curved = lowest(hyperbolas);
+  const isCurved = curved !== null && curved.aicc < straight.aicc - clearGain && isAcrossSeen(curved);
+  return {
+    chosen: isCurved ? curved : straight,
+    candidates: [...plain, ...hyperbolas, ...turning],
+    directionsIgnored: hasDirections,
+  };
+}
+
+/** The candidate with the lowest criterion; null for none. */
+function lowest(candidates: readonly ScaledCandidate[]): ScaledCandidate | null {
+  return candidates.reduce<ScaledCandidate | null>((best, c) => (best === null || c.aicc < best.aicc ? c : best), null);
+}
+
+function plainCandidates(
+  data: Observations,
+  splits: readonly BranchSplit[],
+  known: KnownFibre | null,
+): ScaledCandidate[] {
+  const proposals = splits.slice(0, 4).flatMap((split): Proposal[] => {
+    const start = startVector(data, split);
+    const line: Proposal = {
+      kind: split.reversal_A === null ? 'line' : 'two branches',
+      turn: split.reversal_A === null ? 'free' : 'set back',
+      signs: split.signs,
+      start,
+    };
+    if (split.reversal_A === null) return [line];
+    return [line, { ...line, turn: 'with the field', signs: null }];
+  });
+  return fitAll(data, proposals, known);
+}
+
+function hyperbolaProposals(split: BranchSplit): Proposal[] {
+  const turns: Turn[] = split.reversal_A === null ? ['free'] : ['set back', 'with the field'];
+  return turns.flatMap((turn) =>
+    [0.1, 0.4].map((share) => {
+      const start = new Float64Array(at.zeros);
+      start.set([split.slope, split.along_A, share * Math.abs(split.along_A), split.fibre_Hz2, 0]);
+      return { kind: 'hyperbola' as const, turn, signs: null, start };
+    }),
+  );
+}
+
+function turningProposals(data: Observations, split: BranchSplit): Proposal[] {
+  const overtaken = split.along_A * split.signs[0]! < 0;
+  const turns: Turn[] =
+    split.reversal_A !== null
+      ? ['with the field', 'against the field', 'set back']
+      : [overtaken ? 'set back' : 'with the field'];
+  const oneSide = split.reversal_A === null;
+  const shares = oneSide ? [0.1] : [-0.4, -0.1, 0.1, 0.4];
+  // Not from an untwisted fibre: there the twist has no effect and the fit could leave to the side of a negative stiffness.
+  const starts = shares.flatMap((share) => (oneSide ? [-0.2, 0.2] : [0]).map((twist) => ({ share, twist })));
+  return turns.flatMap((turn) =>
+    starts.map(({ share, twist }) => {
+      const start = startVector(data, split);
+      start[at.across] = share * Math.abs(split.along_A);
+      start[at.twist] = twist;
+      if (oneSide) start[at.fibre] = 0.05 * split.slope * Math.abs(split.along_A);
+      const model: SweepModel = {
+        turn,
+        signs: null,
+        directions: true,
+        fixed: { across: false, fibre: false, twist: false },
+        priors: [],
+      };
+      setZeros(data, model, start);
+      return { kind: 'turning' as const, turn, signs: null, start };
+    }),
+  );
+}
+
+function startVector(data: Observations, split: BranchSplit): Float64Array {
+  const start = new Float64Array(at.zeros + data.frames.length);
+  start.set([split.slope, split.along_A, 0, split.fibre_Hz2, 0]);
+  return start;
+}
+
+/** Puts each zero of directions where the model's rest directions fit best: mean of the doubled angles, as lines have no ends. */
+function setZeros(data: Observations, model: SweepModel, start: Float64Array): void {
+  const rest = blankRest();
+  for (let frame = 0; frame < data.frames.length; frame++) {
+    let cos = 0;
+    let sin = 0;
+    for (let i = 0; i < data.y.length; i++) {
+      if (data.frame[i] !== frame || !predict(model, start, i, data.current_A[i]!, rest)) continue;
+      // Weighted by the field: strong fields hold the bar near the axis whatever the guess.
+      const away = 2 * (data.angle[i]! - rest.angle);
+      cos += data.y[i]! * Math.cos(away);
+      sin += data.y[i]! * Math.sin(away);
+    }
+    start[at.zeros + frame] = wrappedLine(Math.atan2(sin, cos) / 2);
+  }
+}
+
+function fitAll(data: Observations, proposals: readonly Proposal[], known: KnownFibre | null): ScaledCandidate[] {
+  const best = new Map<string, Candidate>();
+  for (const proposal of proposals) {
+    const fitted = fitProposal(data, proposal, known);
+    if (fitted === null || !hasPlausibleSides(data, fitted)) continue;
+    // Starts from several sides often end in one place: of each kind and side the best is kept.
+    const { reversal_A } = fitted;
+    if (proposal.kind === 'two branches' && reversal_A === null) continue;
+    const below = data.current_A.filter((current) => reversal_A !== null && current < reversal_A).length;
+    const key = `${proposal.kind} ${below === 0 ? '' : `${proposal.turn} ${below}`}`;
+    const other = best.get(key);
+    if (other === undefined || misfit(fitted) < misfit(other)) best.set(key, fitted);
+  }
+  return [...best.values()].map((candidate) => scaleToScatter(data, candidate));
+}
+
+/** Chi-square, with a fibre that pushes instead of pulling put last: that is a second, mirrored minimum. */
+function misfit({ fit }: Candidate): number {
+  const u = Math.sqrt(fit.covariance[at.fibre * fit.parameters.length + at.fibre]!);
+  return fit.chiSquare + 2 * fit.free + (fit.parameters[at.fibre]! < -0.3 * u ? 1000 : 0);
+}
+
+function hasPlausibleSides(data: Observations, { fit }: Candidate): boolean {
+  const p = fit.parameters;
+  const side = (positive: boolean) =>
+    new Set(data.current_A.filter((current) => current + p[at.along]! > 0 === positive)).size;
+  const share = p[at.fibre]! / (p[at.slope]! * Math.hypot(p[at.along]!, p[at.across]!));
+  return isPlausible(Math.min(side(true), side(false)), share);
+}
+
+/** An across component larger than twice its own uncertainty. */
+function isAcrossSeen({ fit }: ScaledCandidate): boolean {
+  const u = Math.sqrt(fit.covariance[at.across * fit.parameters.length + at.across]!);
+  return Math.abs(fit.parameters[at.across]!) > 2 * u;
+}
+
+/** Root mean square of the rest directions' residuals, rad. */
+function directionMiss({ fit, data }: ScaledCandidate): number {
+  let sum = 0;
+  let count = 0;
+  for (let i = 0; i < data.y.length; i++) {
+    if (data.frame[i]! < 0) continue;
+    sum += fit.angleResidual[i]! ** 2;
+    count++;
+  }
+  return count > 0 ? Math.sqrt(sum / count) : 0;
+}
