@@ -1,4 +1,6 @@
 import type { BarLayers, Outline } from './layers.ts';
+import type { Quarters } from './quarters.ts';
+import { NEITHER, quarterOf, quartersOf } from './quarters.ts';
 
 /** The bar's own axis in its frame. */
 export interface BarAxis {
@@ -6,40 +8,44 @@ export interface BarAxis {
   readonly turn_rad: number;
   /** Its standard uncertainty. */
   readonly u_turn_rad: number;
-  /** v of the axis at u = 0, pixels. */
+  /** v of the axis at the bar's middle, pixels. */
   readonly v_px: number;
 }
 
 interface Line {
   readonly slope: number;
-  readonly at0: number;
   readonly u_slope: number;
+  /** v at the bar's middle. */
+  readonly v_px: number;
 }
 
 /**
  * The axis as the middle line between the two long edges, each a robust straight line through the places where the
- * averaged picture is steepest. Null where an edge can't be followed.
+ * averaged picture is steepest. The halves of an edge may be offset against each other, since shading makes the edge of
+ * a bright half seem to lie elsewhere than that of a dark one. Null where an edge can't be followed.
  */
 export function findAxis(layers: BarLayers, outline: Outline): BarAxis | null {
-  const upper = edgeLine(layers, outline, outline.top);
-  const lower = edgeLine(layers, outline, outline.bottom);
+  const quarters = quartersOf(layers, outline);
+  const upper = edgeLine(layers, outline, outline.top, quarters);
+  const lower = edgeLine(layers, outline, outline.bottom, quarters);
   if (upper === null || lower === null) return null;
   const slope = (upper.slope + lower.slope) / 2;
   const apart = upper.slope - lower.slope;
   return {
     turn_rad: Math.atan(slope),
     u_turn_rad: Math.sqrt((upper.u_slope ** 2 + lower.u_slope ** 2) / 4 + apart ** 2 / 12),
-    v_px: (upper.at0 + lower.at0) / 2,
+    v_px: (upper.v_px + lower.v_px) / 2,
   };
 }
 
-function edgeLine(layers: BarLayers, outline: Outline, edge: number): Line | null {
+function edgeLine(layers: BarLayers, outline: Outline, edge: number, quarters: Quarters): Line | null {
   const { columns, rows, halfU, halfV, mean, noise } = layers;
   const trim = 0.06 * (outline.right - outline.left) + 1;
   const reach = Math.max(2, Math.min(4, 0.25 * (outline.bottom - outline.top)));
   const us: number[] = [];
   const vs: number[] = [];
   const ws: number[] = [];
+  const halves: number[] = [];
   for (let u = Math.ceil(outline.left + trim); u <= outline.right - trim; u++) {
     let centre = edge;
     let strength = 0;
@@ -62,47 +68,62 @@ function edgeLine(layers: BarLayers, outline: Outline, edge: number): Line | nul
       if (Math.abs(centre - edge) > 2 * reach) break;
     }
     if (strength < 4 * noise || Math.abs(centre - edge) > 2 * reach) continue;
+    const quarter = quarterOf(quarters, u, edge);
+    if (quarter === NEITHER) continue;
     us.push(u);
+    halves.push(quarter % 2);
     vs.push(centre);
     ws.push(strength / (strength + 100 * noise));
   }
   if (us.length < 8) return null;
-  return robustLine(us, vs, ws);
+  return robustLine(us, vs, ws, halves);
 }
 
-/** Weighted straight line with Tukey's weights; its uncertainty counts residuals as correlated over four places. */
-function robustLine(us: readonly number[], vs: readonly number[], ws: readonly number[]): Line {
+/** Straight line with an offset for each half, by Tukey's weights; residuals count as correlated over four places. */
+function robustLine(
+  us: readonly number[],
+  vs: readonly number[],
+  ws: readonly number[],
+  halves: readonly number[],
+): Line {
   let slope = 0;
-  let at0 = 0;
   let u_slope = 0;
+  let offsets = [0, 0];
   let limit = Number.POSITIVE_INFINITY;
   for (let pass = 0; pass < 6; pass++) {
-    let w = 0;
-    let x = 0;
-    let y = 0;
-    let xx = 0;
-    let xy = 0;
-    const keep = us.map((u, i) => {
-      const r = (vs[i]! - slope * u - at0) / limit;
-      return ws[i]! * (Math.abs(r) < 1 ? (1 - r * r) ** 2 : 0);
+    const rest = us.map((u, i) => vs[i]! - slope * u - offsets[halves[i]!]!);
+    const keep = rest.map((r, i) => ws[i]! * (Math.abs(r) < limit ? (1 - (r / limit) ** 2) ** 2 : 0));
+    const sums = [0, 1].map((half) => {
+      let w = 0;
+      let x = 0;
+      let y = 0;
+      for (const [i, k] of keep.entries()) {
+        if (halves[i] !== half) continue;
+        w += k;
+        x += k * us[i]!;
+        y += k * vs[i]!;
+      }
+      return { x: w > 0 ? x / w : 0, y: w > 0 ? y / w : 0, w };
     });
+    let sxx = 0;
+    let sxy = 0;
     for (const [i, k] of keep.entries()) {
-      w += k;
-      x += k * us[i]!;
-      y += k * vs[i]!;
-      xx += k * us[i]! ** 2;
-      xy += k * us[i]! * vs[i]!;
+      const { x, y } = sums[halves[i]!]!;
+      sxx += k * (us[i]! - x) ** 2;
+      sxy += k * (us[i]! - x) * (vs[i]! - y);
     }
-    const mx = x / w;
-    const my = y / w;
-    const sxx = xx - w * mx * mx;
-    slope = (xy - w * mx * my) / sxx;
-    at0 = my - slope * mx;
-    const rest = us.map((u, i) => Math.abs(vs[i]! - slope * u - at0)).sort((a, b) => a - b);
-    limit = Math.max(0.05, 4.685 * 1.4826 * rest[rest.length >> 1]!);
+    slope = sxy / sxx;
+    offsets = sums.map(({ x, y }) => y - slope * x);
+    const after = us.map((u, i) => vs[i]! - slope * u - offsets[halves[i]!]!);
+    const sizes = after.map(Math.abs).sort((a, b) => a - b);
+    limit = Math.max(0.05, 4.685 * 1.4826 * sizes[sizes.length >> 1]!);
     let squares = 0;
-    for (const [i, k] of keep.entries()) squares += k * (vs[i]! - slope * us[i]! - at0) ** 2;
+    let w = 0;
+    for (const [i, k] of keep.entries()) {
+      squares += k * after[i]! ** 2;
+      w += k;
+    }
     u_slope = Math.sqrt((4 * squares) / w / sxx);
   }
-  return { slope, at0, u_slope };
+  return { slope, u_slope, v_px: (offsets[0]! + offsets[1]!) / 2 };
 }

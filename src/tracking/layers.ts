@@ -116,15 +116,15 @@ export function separate(
     cov[at] = sb[at]! / k - (s1[at]! / k) * (b1[at]! / k);
     spread[at] = Math.max(0, b2[at]! / k - (b1[at]! / k) ** 2);
   }
+  const open = background === null || seeExpected === null ? null : openBand(seeExpected, columns, rows);
   const bar = new Float32Array(size);
   const see = new Float32Array(size);
   const rest = new Float32Array(size);
-  // Where the background varies by less than a tenth of the noise's variance it tells nothing of what shines through.
-  const pull = noiseFloor * 0.5;
+  // Where the background varies by less than the noise it tells little of what shines through.
+  const pull = noiseFloor * 2;
   for (let at = 0; at < size; at++) {
     const expected = seeExpected?.[at] ?? 0;
-    const beta =
-      background === null ? 0 : Math.min(1, Math.max(0, (cov[at]! + pull * expected) / (spread[at]! + pull)));
+    const beta = open?.[at] ? Math.min(1, Math.max(0, (cov[at]! + pull * expected) / (spread[at]! + pull))) : expected;
     see[at] = beta;
     bar[at] = mean[at]! - beta * ground[at]!;
     rest[at] = Math.max(0, seen[at]! - 2 * beta * cov[at]! + beta * beta * spread[at]!);
@@ -152,6 +152,19 @@ export function separate(
     noise,
     reach_px: Math.hypot(halfU, halfV),
   };
+}
+
+/** Places within two pixels of the expected outline: only there is it open whose grey is seen. */
+function openBand(see: Float32Array, columns: number, rows: number): Uint8Array {
+  const open = new Uint8Array(see.length);
+  for (let row = 2; row < rows - 2; row++) {
+    for (let column = 2; column < columns - 2; column++) {
+      const at = row * columns + column;
+      const around = see[at - 2]! + see[at + 2]! + see[at - 2 * columns]! + see[at + 2 * columns]!;
+      open[at] = around > 0 && around < 4 ? 1 : 0;
+    }
+  }
+  return open;
 }
 
 /** Mean over three by three. */

@@ -5,7 +5,7 @@ import { firstPlaces, soundIndices } from './first-places.ts';
 import type { BarLayers, Outline, PlacedPicture } from './layers.ts';
 import { seeThrough, separate, uncover } from './layers.ts';
 import { findMotion } from './motion.ts';
-import { findOutline } from './outline.ts';
+import { findOutline, straightenBy } from './outline.ts';
 import type { Picture } from './picture.ts';
 import { emptyPicture } from './picture.ts';
 import { pivotOf } from './pivot.ts';
@@ -13,6 +13,7 @@ import type { BarPoints } from './points.ts';
 import { choosePoints } from './points.ts';
 import type { Placement } from './register.ts';
 import { register } from './register.ts';
+import { withSlides } from './slides.ts';
 import { shrink } from './vision.ts';
 
 /** What is known of the bar and its background after the opening of a stretch. */
@@ -66,13 +67,15 @@ export function learnBar(frames: readonly Frame[], squash: number): BarModel | N
     halfV: Math.ceil(motion.across_px * 1.1 + 3),
     squash,
   };
-  let layers: BarLayers | null = null;
+  let layers: BarLayers;
   for (let round = 0; round < 3; round++) {
     layers = separate(placed(coarse, tried), wide, null, null, motion.noise);
     tried = again(coarse, nothing, choosePoints(layers, 1500), tried, [5, 4, 3]);
     tried = recentre(tried, squash, motion.along_px);
     if (soundIndices(tried).length < 3) return 'no_likeness';
   }
+  const lean = straightenBy(separate(placed(coarse, tried), wide, null, null, motion.noise));
+  tried = turned(tried, lean);
   layers = separate(placed(coarse, tried), wide, null, null, motion.noise);
   const rough = findOutline(layers);
   if (rough === null) return 'no_outline';
@@ -89,18 +92,28 @@ export function learnBar(frames: readonly Frame[], squash: number): BarModel | N
   layers = separate(placed(sample, tried), grid, null, null, motion.noise);
   let outline = findOutline(layers);
   if (outline === null) return 'no_outline';
+  const axis = findAxis(layers, outline);
+  if (axis !== null) {
+    tried = turned(tried, axis.turn_rad);
+    layers = separate(placed(sample, tried), grid, null, null, motion.noise);
+    outline = findOutline(layers) ?? outline;
+  }
   let background = emptyPicture(1, 1);
-  let points = choosePoints(layers, MOST_POINTS);
+  let points = choosePoints(layers, MOST_POINTS, outline);
   for (let round = 0; round < 3; round++) {
     background = uncover(placed(sample, tried), outline, squash, 3);
     layers = separate(placed(sample, tried), grid, background, seeThrough(outline, grid), layers.noise);
-    points = choosePoints(layers, MOST_POINTS);
+    points = choosePoints(layers, MOST_POINTS, outline);
     tried = again(sample, background, points, tried, [4, 3, 3]);
     if (soundIndices(tried).length < 3) return 'no_likeness';
     outline = findOutline(layers) ?? outline;
   }
   layers = separate(placed(sample, tried), grid, background, seeThrough(outline, grid), layers.noise);
-  points = choosePoints(layers, MOST_POINTS);
+  points = choosePoints(layers, MOST_POINTS, outline);
+  for (let round = 0; round < 2; round++) {
+    points = withSlides(points, placed(sample, tried), background, layers, outline);
+    tried = again(sample, background, points, tried, [3, 3]);
+  }
   return describe(layers, outline, background, points, tried, squash);
 }
 
@@ -153,6 +166,11 @@ function again(
     const agreement = register(pictures[t]!, background, points, place, tolerances);
     return agreement === null ? { place: before, agreement } : { place, agreement };
   });
+}
+
+/** Turns the bar's frame towards +v; the bar stays where it is. */
+function turned(tried: readonly TriedPlace[], by_rad: number): TriedPlace[] {
+  return tried.map(({ place, agreement }) => ({ place: { ...place, turn: place.turn + by_rad }, agreement }));
 }
 
 /** Moves the origin of the bar's frame to its pivot. */

@@ -48,6 +48,56 @@ export function findOutline(layers: BarLayers): Outline | null {
   return { left: left - halfU, right: right - halfU, top: top - halfV, bottom: bottom - halfV };
 }
 
+/**
+ * By how much the bar's frame has to be turned (radians, towards +v) so that its u direction runs along the bar: the turn
+ * at which the sharp lines, projected along u, pile up most steeply.
+ */
+export function straightenBy(layers: BarLayers): number {
+  const { columns, rows, halfU, halfV, mean, variance, noise, weight } = layers;
+  const us: number[] = [];
+  const vs: number[] = [];
+  const qs: number[] = [];
+  for (let row = 1; row < rows - 1; row++) {
+    for (let column = 1; column < columns - 1; column++) {
+      const at = row * columns + column;
+      if (weight[at] === 0) continue;
+      const gv = (mean[at + columns]! - mean[at - columns]!) / 2;
+      const gu = (mean[at + 1]! - mean[at - 1]!) / 2;
+      const q = (gv * gv) / (noise + variance[at]!);
+      if (q < 2 || Math.abs(gu) > Math.abs(gv)) continue;
+      us.push(column - halfU);
+      vs.push(row - halfV);
+      qs.push((q / (1 + q / 400)) * Math.min(1, ((column - halfU) / halfU) ** 2));
+    }
+  }
+  const pileUp = (turn: number): number => {
+    const bins = new Float64Array(4 * (halfU + halfV) + 4);
+    const c = Math.cos(turn);
+    const s = Math.sin(turn);
+    for (let i = 0; i < us.length; i++) {
+      const place = c * vs[i]! - s * us[i]! + 2 * (halfU + halfV);
+      const bin = Math.floor(place);
+      bins[bin] = bins[bin]! + qs[i]! * (1 - place + bin);
+      bins[bin + 1] = bins[bin + 1]! + qs[i]! * (place - bin);
+    }
+    return bins.reduce((sum, b) => sum + b * b, 0);
+  };
+  let best = 0;
+  let most = 0;
+  const step = 0.5 / halfU;
+  for (let i = -Math.ceil(WIDEST_LEAN / step); i * step <= WIDEST_LEAN; i++) {
+    const found = pileUp(i * step);
+    if (found > most) {
+      most = found;
+      best = i * step;
+    }
+  }
+  return best;
+}
+
+/** Farthest that the first guess of the bar's direction is taken to be off, radians. */
+const WIDEST_LEAN = 0.5;
+
 /** First and last peak of a profile that reach a fifth of its highest; null where they are one and the same. */
 function outermost(profile: Float64Array): readonly [number, number] | null {
   const highest = Math.max(...profile);

@@ -1,4 +1,4 @@
-import type { BarLayers } from './layers.ts';
+import type { BarLayers, Outline } from './layers.ts';
 
 /** Points of the bar's own frame at which a picture is compared with the model, as aligned columns. */
 export interface BarPoints {
@@ -18,14 +18,33 @@ export interface BarPoints {
   readonly weight: Float32Array;
   /** What the point tells of the angle: its share of one over the angle's variance; adds up to 1. */
   readonly knowledge: Float32Array;
+  /** How fast the point slides across the bar (towards +v) as the bar turns, pixels per radian from `slideTurn`. */
+  readonly slide: Float32Array;
+  readonly slideTurn: number;
   /** How much the view squeezes the bar's plane downwards: sin(elevation), 1 for a plan view. */
   readonly squash: number;
   /** Distance of the farthest points from the origin, pixels. */
   readonly reach_px: number;
 }
 
-/** Every pixel of the layers as a point, or those of them that tell most of angle and place. */
-export function choosePoints(layers: BarLayers, most: number): BarPoints {
+/** Half width of the band about the outline whose edges are trusted, pixels. */
+const BAND_PX = 3;
+
+/**
+ * Whether a slope of grey at a place belongs to the bar as a body: its outline, or paint that runs across it. Streaks
+ * along a round bar are reflections, which slide over it as it turns; what lies outside is shadow.
+ */
+function trusted(outline: Outline, u: number, v: number, gu: number, gv: number): boolean {
+  const inside = Math.min(u - outline.left, outline.right - u, v - outline.top, outline.bottom - v);
+  if (inside < -BAND_PX) return false;
+  return inside <= BAND_PX || Math.abs(gu) > 2 * Math.abs(gv);
+}
+
+/**
+ * Every pixel of the layers as a point, or those of them that tell most of angle and place; once the outline is known,
+ * slopes that don't belong to the bar as a body are left out.
+ */
+export function choosePoints(layers: BarLayers, most: number, outline: Outline | null = null): BarPoints {
   const { columns, rows, halfU, halfV, bar, see, weight } = layers;
   const size = columns * rows;
   const grad = (from: Float32Array, at: number, stride: number): number =>
@@ -44,6 +63,7 @@ export function choosePoints(layers: BarLayers, most: number): BarPoints {
       const ground = layers.ground[at]!;
       const gu = grad(bar, at, 1) + grad(see, at, 1) * ground;
       const gv = grad(bar, at, columns) + grad(see, at, columns) * ground;
+      if (outline !== null && !trusted(outline, column - halfU, row - halfV, gu, gv)) continue;
       const t = (column - halfU) * gv - (row - halfV) * gu;
       turning[at] = w * t * t;
       along[at] = w * gu * gu;
@@ -86,6 +106,8 @@ export function choosePoints(layers: BarLayers, most: number): BarPoints {
     seeV: column(),
     weight: column(),
     knowledge: column(),
+    slide: column(),
+    slideTurn: 0,
     squash: layers.squash,
     reach_px: Math.max(1, layers.reach_px),
   };
@@ -125,6 +147,8 @@ export function thinPoints(points: BarPoints, most: number): BarPoints {
     seeV: pick(points.seeV),
     weight: pick(points.weight),
     knowledge: pick(points.knowledge),
+    slide: pick(points.slide),
+    slideTurn: points.slideTurn,
     squash: points.squash,
     reach_px: points.reach_px,
   };

@@ -1,5 +1,6 @@
 import type { Picture } from './picture.ts';
 import type { BarPoints } from './points.ts';
+import { firstOfInverse, solveSymmetric } from './symmetric.ts';
 
 /**
  * Where the bar lies in a picture and how bright the picture is. A point (u, v) of the bar's own frame is seen at
@@ -30,35 +31,6 @@ export interface Agreement {
 
 const PARAMETERS = 5;
 
-/** Solves the symmetric positive system A x = b of five unknowns in place by Cholesky; false where A is singular. */
-function solveSymmetric(a: Float64Array, b: Float64Array): boolean {
-  const n = PARAMETERS;
-  for (let j = 0; j < n; j++) {
-    let d = a[j * n + j]!;
-    const before = d;
-    for (let k = 0; k < j; k++) d -= a[j * n + k]! ** 2;
-    if (!(d > 1e-12 * before)) return false;
-    d = Math.sqrt(d);
-    a[j * n + j] = d;
-    for (let i = j + 1; i < n; i++) {
-      let s = a[i * n + j]!;
-      for (let k = 0; k < j; k++) s -= a[i * n + k]! * a[j * n + k]!;
-      a[i * n + j] = s / d;
-    }
-  }
-  for (let i = 0; i < n; i++) {
-    let s = b[i]!;
-    for (let k = 0; k < i; k++) s -= a[i * n + k]! * b[k]!;
-    b[i] = s / a[i * n + i]!;
-  }
-  for (let i = n - 1; i >= 0; i--) {
-    let s = b[i]!;
-    for (let k = i + 1; k < n; k++) s -= a[k * n + i]! * b[k]!;
-    b[i] = s / a[i * n + i]!;
-  }
-  return true;
-}
-
 /**
  * Gauss-Newton registration of the two-layer model (bar over background) against a picture, with redescending weights
  * (Geman and McClure 1987). Changes `place`; null where the points don't determine it.
@@ -74,7 +46,7 @@ export function register(
 ): Agreement | null {
   const { width, height, data } = picture;
   const ground = background.data;
-  const { count, u, v, bar, see, barU, barV, seeU, seeV, weight, knowledge, squash } = points;
+  const { count, u, v, bar, see, barU, barV, seeU, seeV, weight, knowledge, slide, squash } = points;
   const normal = new Float64Array(PARAMETERS * PARAMETERS);
   const step = new Float64Array(PARAMETERS);
   const right = width - 1;
@@ -88,6 +60,7 @@ export function register(
     const s = Math.sin(place.turn);
     const { gain, offset } = place;
     const limit = 1 / (tolerance * tolerance);
+    const turned = place.turn - points.slideTurn;
     let h00 = 0;
     let h10 = 0;
     let h11 = 0;
@@ -114,7 +87,7 @@ export function register(
     outside = 0;
     for (let i = 0; i < count; i++) {
       const pu = u[i]!;
-      const pv = v[i]!;
+      const pv = v[i]! + slide[i]! * turned;
       const x = place.x_px + c * pu - s * pv;
       const y = place.y_px + squash * (s * pu + c * pv);
       const w0 = weight[i]!;
@@ -143,7 +116,7 @@ export function register(
       const r = seen - gain * model - offset;
       const gu = gain * (barU[i]! + seeU[i]! * under);
       const gv = gain * (barV[i]! + seeV[i]! * under);
-      const jt = pv * gu - pu * gv;
+      const jt = pv * gu - (pu + slide[i]!) * gv;
       const e = r * r * w0;
       const keep = 1 / (1 + e * limit);
       const w = w0 * keep * keep;
@@ -203,7 +176,7 @@ export function register(
       h44,
     ]);
     step.set([b0, b1, b2, b3, b4]);
-    if (!solveSymmetric(normal, step)) return null;
+    if (!solveSymmetric(normal, step, PARAMETERS)) return null;
     const turn = place.turn + step[0]!;
     const cn = Math.cos(turn);
     const sn = Math.sin(turn);
@@ -216,22 +189,6 @@ export function register(
     misfit = weights > 0 ? squares / weights : Number.POSITIVE_INFINITY;
     if (!Number.isFinite(turn) || !(place.gain > 0)) return null;
   }
-  // The angle's variance is the first element of the inverse: solve for the first unit vector with the factor at hand.
-  step.set([1, 0, 0, 0, 0]);
-  const sd_rad = Math.sqrt(firstOfInverse(normal));
+  const sd_rad = Math.sqrt(firstOfInverse(normal, PARAMETERS));
   return { misfit, share, outside, sd_rad, lastStep_px };
-}
-
-/** First diagonal element of the inverse of L Lt, L the lower triangle left by `solveSymmetric`. */
-function firstOfInverse(l: Float64Array): number {
-  const n = PARAMETERS;
-  const z = new Float64Array(n);
-  let sum = 0;
-  for (let i = 0; i < n; i++) {
-    let s = i === 0 ? 1 : 0;
-    for (let k = 0; k < i; k++) s -= l[i * n + k]! * z[k]!;
-    z[i] = s / l[i * n + i]!;
-    sum += z[i]! ** 2;
-  }
-  return sum;
 }

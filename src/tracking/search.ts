@@ -13,15 +13,17 @@ export function disagreement(
 ): number {
   const { width, height, data } = picture;
   const ground = background.data;
-  const { count, u, v, bar, see, weight, squash } = points;
+  const { count, u, v, bar, see, weight, slide, squash } = points;
   const c = Math.cos(turn);
   const s = Math.sin(turn);
+  const turned = turn - points.slideTurn;
   const limit = 1 / (tolerance * tolerance);
   let sum = 0;
   let n = 0;
   for (let i = 0; i < count; i++) {
-    const x = place.x_px + c * u[i]! - s * v[i]!;
-    const y = place.y_px + squash * (s * u[i]! + c * v[i]!);
+    const pv = v[i]! + slide[i]! * turned;
+    const x = place.x_px + c * u[i]! - s * pv;
+    const y = place.y_px + squash * (s * u[i]! + c * pv);
     if (!(x >= 0 && y >= 0 && x < width - 1 && y < height - 1)) {
       // Outside the picture nothing can be said: half a disagreement, so that hiding there doesn't pay.
       sum += 0.5;
