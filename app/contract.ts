@@ -41,7 +41,10 @@ export interface HostApi {
   recentSessions(a: Empty): v.RecentSession[];
   openRecent(a: { id: string }): { opened: 'session' };
   closeDocument(a: Empty): Empty;
-  /** Gives a missing recording its file. `same`: its content is that of the file seen before; `unknown`: never seen before, so only its name and facts speak for it. Refused where it is a different recording, unless `evenIfDifferent`. */
+  /**
+   * Gives a missing recording its file. `same`: its content is what it was when the session was last seen; `unknown`: the session was never
+   * seen with its recording; `different`: another content, and nothing was done unless `evenIfDifferent`.
+   */
   locateRecording(a: { recording: string; token: string; evenIfDifferent?: boolean | undefined }): {
     recognised: 'same' | 'unknown' | 'different';
   };

@@ -107,6 +107,8 @@ export const resultsState = z.object({
   results: resultsObject.nullable(),
   pending: z.array(id),
   stale: z.array(id),
+  /** Segments that can't be measured as the session stands (recording missing, region outside the picture), and why. */
+  problems: z.array(z.object({ segment: id, message: z.string() })),
   /** The segment being measured, and how far: 0 to 1. */
   measuring: z.object({ segment: id, share: z.number() }).nullable(),
 });

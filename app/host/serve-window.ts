@@ -9,6 +9,7 @@ import {
   type Result,
   type Transport,
 } from '../contract.ts';
+import { bareSentence } from './bare-sentence.ts';
 
 /** What a handler knows of the call besides its arguments. */
 export interface CallContext {
@@ -94,7 +95,7 @@ const cancelled: HostError = { reason: 'cancelled', message: 'Stopped.' };
 /** What the window may know of a failure. */
 export function hostError(error: unknown): HostError {
   if (error instanceof Refusal) return { reason: error.reason, message: error.message };
-  if (error instanceof InputError) return { reason: 'bad_input', message: error.message };
+  if (error instanceof InputError) return { reason: 'bad_input', message: bareSentence(error.message) };
   if (error instanceof Error && error.name === 'AbortError') return cancelled;
   return { reason: 'internal', message: 'Something went wrong inside the program; the session is safe.' };
 }

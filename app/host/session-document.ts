@@ -33,6 +33,7 @@ export class SessionDocument {
   readonly #paths: Map<string, string>;
   #place: SessionPlace | null;
   #savedText: string;
+  #moved = false;
   readonly restored: boolean;
 
   constructor(start: DocumentStart) {
@@ -60,7 +61,7 @@ export class SessionDocument {
     return this.#history.redoLabel;
   }
   get dirty(): boolean {
-    return sessionText(this.session) !== this.#savedText;
+    return this.#moved || sessionText(this.session) !== this.#savedText;
   }
   /** What the session's file holds, as the window sees it. */
   get saved(): Session {
@@ -100,8 +101,9 @@ export class SessionDocument {
     return this.#history.redo();
   }
 
-  /** Says where a recording is. */
+  /** Says where a recording is now: the session file that says something else is out of date. */
   locate(id: string, path: string): void {
+    this.#moved ||= this.#place !== null && this.#paths.get(id) !== path;
     this.#paths.set(id, path);
   }
 
@@ -131,7 +133,13 @@ export class SessionDocument {
   savedAt(path: string, written: Session, hash: string): void {
     const asWritten = new Map(written.recordings.map((r) => [r.id, r.file]));
     this.#place = { path, sha256: hash, asWritten };
+    this.savedElsewhere(written);
+  }
+
+  /** The session was handed out as a file whose place isn't known. */
+  savedElsewhere(written: Session): void {
     this.#savedText = sessionText(withoutPaths(written));
+    this.#moved = false;
   }
 }
 
