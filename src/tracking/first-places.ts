@@ -7,7 +7,7 @@ import { pivotOf } from './pivot.ts';
 import { choosePoints, thinPoints } from './points.ts';
 import type { Agreement, Placement } from './register.ts';
 import { register } from './register.ts';
-import { searchTurn } from './search.ts';
+import { searchShift, searchTurn } from './search.ts';
 
 /** A placement with what is known of its worth; null where the picture didn't agree with the bar at all. */
 export interface TriedPlace {
@@ -61,10 +61,20 @@ export function firstPlaces(pictures: readonly Picture<Uint8Array>[], motion: Mo
     const range = { from: motion.axis_rad - WIDEST_TURN, to: motion.axis_rad + WIDEST_TURN, step, tolerance: 3 };
     tried = pictures.map((picture, t) => {
       const place = { ...reference.place, gain: motion.gain[t]!, offset: motion.offset[t]! };
-      if (t !== middle) place.turn = searchTurn(picture, nothing, few, place, range).turn;
+      if (t !== middle) {
+        place.turn = searchTurn(picture, nothing, few, place, range).turn;
+        searchShift(picture, nothing, few, place, { reach: 0.15 * points.reach_px, step: 1.5, tolerance: 3 });
+        const near = { ...range, from: place.turn - 3 * step, to: place.turn + 3 * step };
+        place.turn = searchTurn(picture, nothing, few, place, near).turn;
+      }
       return { place, agreement: register(picture, nothing, points, place, [6, 6, 4, 4, 3, 3]) };
     });
-    const pivot = pivotOf(soundOf(tried), squash, points.reach_px);
+    const pivot = pivotOf(soundOf(tried), squash, {
+      u_px: 0,
+      v_px: 0,
+      sdU_px: 0.5 * motion.along_px,
+      sdV_px: 0.02 * motion.along_px,
+    });
     const moved = Math.hypot(pivot.u_px, pivot.v_px);
     const from = tried[middle]!.place;
     centre = {

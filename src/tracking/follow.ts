@@ -4,7 +4,7 @@ import type { BarPoints } from './points.ts';
 import { thinPoints } from './points.ts';
 import type { Placement } from './register.ts';
 import { register } from './register.ts';
-import { searchTurn } from './search.ts';
+import { searchShift, searchTurn } from './search.ts';
 import type { Refusal } from './trace.ts';
 
 /** What one frame gave. Angle in radians, anticlockwise as seen; middle in pixels of the region. */
@@ -28,6 +28,8 @@ export class Follower {
   #last: Placement;
   #time_s: number | null = null;
   #rate = 0;
+  #rateX = 0;
+  #rateY = 0;
   #misses = 0;
 
   constructor(model: BarModel) {
@@ -41,6 +43,16 @@ export class Follower {
     const { background, points, usualShare, usualMisfit } = this.#model;
     const place = this.#look(picture, time_s);
     const agreement = register(picture, background, points, place, [4, 3, 3]);
+    (this as unknown as { debug: string }).debug =
+      agreement === null
+        ? ''
+        : agreement.share.toFixed(3) +
+          ' ' +
+          agreement.misfit.toFixed(2) +
+          ' ' +
+          agreement.outside.toFixed(2) +
+          ' ' +
+          agreement.lastStep_px.toFixed(3);
     let reason: Refusal | null = null;
     if (agreement === null) reason = 'no_fit';
     else if (agreement.outside > 0.3) reason = 'left_region';
@@ -52,8 +64,15 @@ export class Follower {
       return { ok: false, reason: reason ?? 'no_fit' };
     }
     if (this.#time_s !== null && this.#misses === 0 && time_s > this.#time_s) {
-      this.#rate = (place.turn - this.#last.turn) / (time_s - this.#time_s);
-    } else this.#rate = 0;
+      const passed_s = time_s - this.#time_s;
+      this.#rate = (place.turn - this.#last.turn) / passed_s;
+      this.#rateX = (place.x_px - this.#last.x_px) / passed_s;
+      this.#rateY = (place.y_px - this.#last.y_px) / passed_s;
+    } else {
+      this.#rate = 0;
+      this.#rateX = 0;
+      this.#rateY = 0;
+    }
     this.#misses = 0;
     this.#time_s = time_s;
     this.#last = place;
@@ -69,25 +88,36 @@ export class Follower {
     };
   }
 
-  /** A placement near the bar's: looked for about the expected turn, or everywhere after a gap. */
+  /** A placement near the bar's: looked for about the expected place, or everywhere after a gap. */
   #look(picture: Picture<Uint8Array>, time_s: number): Placement {
     const { background, leastTurn, mostTurn } = this.#model;
-    const step = 2 / this.#scouts.reach_px;
+    const scouts = this.#scouts;
+    const step = 2 / scouts.reach_px;
     const swing = mostTurn - leastTurn;
     const place = { ...this.#last };
-    let from: number;
-    let to: number;
     if (this.#time_s === null || this.#misses > 0) {
-      from = leastTurn - Math.max(0.1, swing);
-      to = mostTurn + Math.max(0.1, swing);
-    } else {
-      const ahead = this.#rate * (time_s - this.#time_s);
-      place.turn += Math.abs(ahead) < swing ? ahead : 0;
-      const spread = Math.max(3 * step, Math.abs(ahead));
-      from = place.turn - spread;
-      to = place.turn + spread;
+      const wide = Math.max(0.1, swing);
+      const range = { from: leastTurn - wide, to: mostTurn + wide, step, tolerance: 6 };
+      const shift = { reach: 0.1 * scouts.reach_px, step: 1.5, tolerance: 6 };
+      place.turn = searchTurn(picture, background, scouts, place, range).turn;
+      searchShift(picture, background, scouts, place, shift);
+      const near = { ...range, from: place.turn - 4 * step, to: place.turn + 4 * step };
+      place.turn = searchTurn(picture, background, scouts, place, near).turn;
+      searchShift(picture, background, scouts, place, { ...shift, reach: 4 });
+      return place;
     }
-    place.turn = searchTurn(picture, background, this.#scouts, place, { from, to, step, tolerance: 6 }).turn;
+    const ahead_s = time_s - this.#time_s;
+    const turning = this.#rate * ahead_s;
+    if (Math.abs(turning) < swing) place.turn += turning;
+    place.x_px += clamp(this.#rateX * ahead_s, 0.1 * scouts.reach_px);
+    place.y_px += clamp(this.#rateY * ahead_s, 0.1 * scouts.reach_px);
+    const spread = Math.max(2 * step, Math.abs(turning));
+    const range = { from: place.turn - spread, to: place.turn + spread, step, tolerance: 6 };
+    place.turn = searchTurn(picture, background, scouts, place, range).turn;
     return place;
   }
+}
+
+function clamp(value: number, limit: number): number {
+  return Math.min(limit, Math.max(-limit, value));
 }

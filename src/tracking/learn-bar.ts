@@ -129,7 +129,13 @@ function describe(
   if (axis === null) return 'no_outline';
   const sound = soundIndices(tried).map((i) => tried[i]!);
   const places = sound.map(({ place }) => place);
-  const pivot = pivotOf(places, squash, 2);
+  const length_px = outline.right - outline.left;
+  const pivot = pivotOf(places, squash, {
+    u_px: (outline.left + outline.right) / 2,
+    v_px: axis.v_px,
+    sdU_px: 0.02 * length_px,
+    sdV_px: 0.3,
+  });
   const turns = places.map(({ turn }) => turn);
   const middle = (values: number[]): number => values.sort((a, b) => a - b)[values.length >> 1]!;
   return {
@@ -141,7 +147,7 @@ function describe(
     u_axis_rad: axis.u_turn_rad,
     middleU_px: pivot.u_px,
     middleV_px: pivot.v_px,
-    halfLength_px: (outline.right - outline.left) / 2,
+    halfLength_px: length_px / 2,
     usualShare: middle(sound.map(({ agreement }) => agreement!.share)),
     usualMisfit: middle(sound.map(({ agreement }) => agreement!.misfit)),
     leastTurn: Math.min(...turns),
@@ -176,7 +182,7 @@ function turned(tried: readonly TriedPlace[], by_rad: number): TriedPlace[] {
 /** Moves the origin of the bar's frame to its pivot. */
 function recentre(tried: readonly TriedPlace[], squash: number, reach_px: number): TriedPlace[] {
   const sound = soundIndices(tried).map((i) => tried[i]!.place);
-  const pivot = pivotOf(sound, squash, reach_px / 4);
+  const pivot = pivotOf(sound, squash, { u_px: 0, v_px: 0, sdU_px: 0.25 * reach_px, sdV_px: 0.02 * reach_px });
   return tried.map(({ place, agreement }) => {
     const c = Math.cos(place.turn);
     const s = Math.sin(place.turn);

@@ -7,13 +7,21 @@ export interface Pivot {
   readonly sd_px: number;
 }
 
+/** What is believed of the pivot beforehand: a place in the bar's frame and how far off it may be, pixels. */
+export interface PivotPrior {
+  readonly u_px: number;
+  readonly v_px: number;
+  readonly sdU_px: number;
+  readonly sdV_px: number;
+}
+
 /**
- * The point that stays in place while the bar turns: origin(t) = P - D R(t) q by least squares for P and q. Where the
- * bar hardly turns q isn't determined, and is drawn to the origin by a prior of `prior_px`.
+ * The point that stays in place while the bar turns: origin(t) = P - D R(t) q by least squares for P and q, weighed
+ * against a prior; where the bar hardly turns, or swings widely, the prior decides.
  */
-export function pivotOf(places: readonly Placement[], squash: number, prior_px: number): Pivot {
+export function pivotOf(places: readonly Placement[], squash: number, prior: PivotPrior): Pivot {
   const n = places.length;
-  if (n < 3) return { u_px: 0, v_px: 0, sd_px: prior_px };
+  if (n < 3) return { u_px: prior.u_px, v_px: prior.v_px, sd_px: Math.max(prior.sdU_px, prior.sdV_px) };
   // In the bar's plane (y unsquashed) the problem is linear: z = P - R q, with R = [[c, -s], [s, c]].
   let c = 0;
   let s = 0;
@@ -41,11 +49,13 @@ export function pivotOf(places: readonly Placement[], squash: number, prior_px: 
     squares += dx * dx + dy * dy;
   }
   const free = turning > 0 ? (squares - (mu * mu + mv * mv) / turning) / (2 * n) : 0;
-  const scatter = Math.max(0.0004, free);
-  const prior = scatter / prior_px ** 2;
+  // A swing's places are correlated from picture to picture: eight of them count as one or two.
+  const scatter = 4 * Math.max(0.0004, free);
+  const priorU = scatter / prior.sdU_px ** 2;
+  const priorV = scatter / prior.sdV_px ** 2;
   return {
-    u_px: mu / (turning + prior),
-    v_px: mv / (turning + prior),
-    sd_px: Math.sqrt(scatter / (turning + prior)),
+    u_px: (mu + priorU * prior.u_px) / (turning + priorU),
+    v_px: (mv + priorV * prior.v_px) / (turning + priorV),
+    sd_px: Math.sqrt(scatter / (turning + Math.min(priorU, priorV))),
   };
 }

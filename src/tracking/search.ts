@@ -70,3 +70,35 @@ export function searchTurn(
   }
   return { turn: best, disagreement: least };
 }
+
+/** Moves `place` across the bar, then along it, to where points and picture disagree least. */
+export function searchShift(
+  picture: Picture<Uint8Array>,
+  background: Picture,
+  points: BarPoints,
+  place: Placement,
+  range: { readonly reach: number; readonly step: number; readonly tolerance: number },
+): void {
+  const c = Math.cos(place.turn);
+  const s = Math.sin(place.turn);
+  const { squash } = points;
+  const tried = { ...place };
+  for (const [du, dv] of [
+    [-s, c],
+    [c, s],
+  ] as const) {
+    const { x_px, y_px } = place;
+    let least = Number.POSITIVE_INFINITY;
+    const steps = Math.ceil(range.reach / range.step);
+    for (let i = -steps; i <= steps; i++) {
+      tried.x_px = x_px + i * range.step * du;
+      tried.y_px = y_px + i * range.step * dv * squash;
+      const found = disagreement(picture, background, points, tried, place.turn, range.tolerance);
+      if (found < least) {
+        least = found;
+        place.x_px = tried.x_px;
+        place.y_px = tried.y_px;
+      }
+    }
+  }
+}
