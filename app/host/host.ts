@@ -130,11 +130,6 @@ export async function startHost(options: HostOptions, file: string | null = null
     ...fitCalls(parts),
   };
 
-  if (file !== null) await keeper.openPath(file, false);
-  else await restoreNewest(folder, keeper);
-  void cache.trim().catch(report);
-  void removeOldUploads(folder, keeper.document?.paths ?? new Map()).catch(report);
-
   let closing: Promise<void> | null = null;
   const close = (discard = false) => {
     closing ??= (async () => {
@@ -146,6 +141,16 @@ export async function startHost(options: HostOptions, file: string | null = null
     })();
     return closing;
   };
+  try {
+    if (file !== null) await keeper.openPath(file, false);
+    else await restoreNewest(folder, keeper);
+  } catch (error) {
+    await close();
+    throw error;
+  }
+  void cache.trim().catch(report);
+  void removeOldUploads(folder, keeper.document?.paths ?? new Map()).catch(report);
+
   return {
     connect(transport) {
       const window = serveWindow(transport, handlers, report);

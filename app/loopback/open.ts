@@ -10,7 +10,7 @@ import { electronRuntime, hasDisplay, packageRoot } from './electron-runtime.ts'
 import { type LoopbackServer, serveLoopback } from './server.ts';
 
 /** The session that the empty window offers, below the package's folder. */
-export const DEMO = 'samples/boathouse/session.needlebeat.json';
+export const DEMO = 'samples/boathouse/boathouse.needlebeat.json';
 
 /** An Electron that ends with an error so soon never had a window. */
 const FAILED_START_MS = 10_000;
