@@ -1,6 +1,6 @@
 import { passthroughOption } from './ffmpeg-version.ts';
 import type { FfmpegTools } from './find-ffmpeg.ts';
-import { inputName, untrustedInputOptions } from './input-options.ts';
+import { ffmpegInputOptions, inputName } from './input-options.ts';
 import { lumaOf } from './luma.ts';
 import type { Recording, Region } from './recording.ts';
 import { storedRegion, turningFilters } from './stored-region.ts';
@@ -41,17 +41,28 @@ export function decodeArguments(
 export function inputOptions(recording: Recording, range: FrameRange, seek: boolean): readonly string[] {
   const keyframe = seek && recording.seekable ? keyframeBefore(recording, range.first) : 0;
   return [
-    ...['-v', 'error', '-nostdin', ...untrustedInputOptions, '-noautorotate', '-copyts'],
+    ...['-v', 'error', '-nostdin', ...ffmpegInputOptions, '-noautorotate', '-copyts'],
     // The trim filter cuts exactly; ffmpeg's own cutting would count from where it takes the file to begin.
-    ...(keyframe > 0 ? ['-noaccurate_seek', '-seek_timestamp', '1', '-ss', seconds(after(recording, keyframe))] : []),
+    ...(keyframe > 0
+      ? ['-noaccurate_seek', '-seek_timestamp', '1', '-ss', seconds(shortlyAfter(recording, keyframe))]
+      : []),
   ];
 }
 
-/** Filter that passes exactly the frames of a range. It cuts half-way between two ticks, so the timebase of the filter graph doesn't matter. */
+/**
+ * How long ffmpeg may be silent before it is taken to be stuck, in seconds: frames between the keyframe and the range are decoded without a
+ * sign of it. A tenth of a second each is more than the largest picture takes.
+ */
+export function patience_s(recording: Recording, range: FrameRange, seek: boolean): number {
+  const from = seek && recording.seekable ? keyframeBefore(recording, range.first) : 0;
+  return 60 + 0.1 * (range.end - from);
+}
+
+/** Filter that passes the frames of a range and no others. */
 export function trimFilter(recording: Recording, range: FrameRange): string {
   const limits = [
-    ...(range.first > 0 ? [`start=${seconds(after(recording, range.first - 1))}`] : []),
-    ...(range.end < recording.ticks.length ? [`end=${seconds(after(recording, range.end - 1))}`] : []),
+    ...(range.first > 0 ? [`start=${seconds(shortlyBefore(recording, range.first))}`] : []),
+    ...(range.end < recording.ticks.length ? [`end=${seconds(shortlyBefore(recording, range.end))}`] : []),
   ];
   return limits.length === 0 ? 'null' : `trim=${limits.join(':')}`;
 }
@@ -76,11 +87,21 @@ function regionFilters(recording: Recording, region: Region): readonly string[] 
   ];
 }
 
-/** A time between a frame and the next, in seconds of the container's clock. */
-function after(recording: Recording, index: number): number {
+/**
+ * A time in seconds of the container's clock that lies before a frame by a quarter of the gap before it: ffmpeg rounds it to microseconds and
+ * then to the nearest tick, and neither takes it past this frame or back to the one before, even where they are a single tick apart.
+ */
+function shortlyBefore(recording: Recording, index: number): number {
   const tick = recording.ticks[index] ?? 0;
-  const next = recording.ticks[index + 1] ?? tick + 1;
-  return (((tick + next) / 2) * recording.timebase.numerator) / recording.timebase.denominator;
+  const gap = tick - (recording.ticks[index - 1] ?? tick - 1);
+  return ((tick - gap / 4) * recording.timebase.numerator) / recording.timebase.denominator;
+}
+
+/** A time in seconds of the container's clock that lies after a frame, but before the next one. */
+function shortlyAfter(recording: Recording, index: number): number {
+  const tick = recording.ticks[index] ?? 0;
+  const gap = (recording.ticks[index + 1] ?? tick + 1) - tick;
+  return ((tick + gap / 4) * recording.timebase.numerator) / recording.timebase.denominator;
 }
 
 function seconds(time_s: number): string {

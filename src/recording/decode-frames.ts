@@ -1,4 +1,4 @@
-import { decodeArguments, type FrameRange, keyframeBefore } from './decode-command.ts';
+import { decodeArguments, type FrameRange, keyframeBefore, patience_s } from './decode-command.ts';
 import { decodeProblem } from './decode-problem.ts';
 import type { ChildEnd } from './ffmpeg-child.ts';
 import type { FfmpegTools } from './find-ffmpeg.ts';
@@ -62,7 +62,12 @@ async function* decodeRange(
       signal?.throwIfAborted();
       const args = decodeArguments(recording, range, region, tools, seek);
       const cutter = new RawPictures(region.width * region.height, lumaOf(recording.pixelFormat).bits);
-      const pictures = new TimedBlocks(tools.ffmpeg, args, recording.timebase, cutter, signal);
+      const pictures = new TimedBlocks(tools.ffmpeg, args, {
+        timebase: recording.timebase,
+        cutter,
+        patience_s: patience_s(recording, range, seek),
+        signal,
+      });
       try {
         for (let picture = await pictures.next(); picture !== null; picture = await pictures.next()) {
           const index = indexOfTick(recording.ticks, picture.tick, next, range.end);

@@ -2,7 +2,7 @@ import { startChild } from './ffmpeg-child.ts';
 import { passthroughOption } from './ffmpeg-version.ts';
 import type { FfmpegTools } from './find-ffmpeg.ts';
 import { FrameTicks } from './frame-ticks.ts';
-import { inputName, untrustedInputOptions } from './input-options.ts';
+import { ffmpegInputOptions, inputName } from './input-options.ts';
 import type { Recording } from './recording.ts';
 
 /**
@@ -18,7 +18,7 @@ export async function decodedTicks(
   const child = startChild(
     tools.ffmpeg,
     [
-      ...['-v', 'error', '-nostdin', ...untrustedInputOptions, '-noautorotate', '-copyts', '-i', inputName(path)],
+      ...['-v', 'error', '-nostdin', ...ffmpegInputOptions, '-noautorotate', '-copyts', '-i', inputName(path)],
       // One corner is enough: the checksum of whole pictures would cost more than decoding them.
       ...['-map', '0:V:0', '-vf', 'crop=2:2:0:0', ...passthroughOption(tools.version), '-enc_time_base', '-1'],
       ...(options.frames === undefined ? [] : ['-frames:v', String(options.frames)]),

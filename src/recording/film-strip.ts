@@ -1,3 +1,4 @@
+import { patience_s } from './decode-command.ts';
 import type { FfmpegTools } from './find-ffmpeg.ts';
 import { JpegParts } from './jpeg-parts.ts';
 import { movingArguments } from './picture-command.ts';
@@ -49,7 +50,12 @@ async function picturesInOnePass(
     keyframesOnly: how.keyframesOnly,
     select: selectFilter(recording, wanted),
   });
-  const blocks = new TimedBlocks(tools.ffmpeg, args, recording.timebase, new JpegParts(), signal);
+  const blocks = new TimedBlocks(tools.ffmpeg, args, {
+    timebase: recording.timebase,
+    cutter: new JpegParts(),
+    patience_s: patience_s(recording, range, true),
+    signal,
+  });
   try {
     for (let block = await blocks.next(); block !== null; block = await blocks.next()) {
       const index = byTick.get(block.tick);

@@ -2,6 +2,7 @@ import type { BlockCutter } from './timed-blocks.ts';
 
 /** Largest JPEG accepted, so that a broken header can't ask for any amount of memory. */
 const largest_bytes = 64 << 20;
+const longestHeader_chars = 512;
 
 /** Cuts ffmpeg's mpjpeg output (parts with a header that states their length) into JPEG files. */
 export class JpegParts implements BlockCutter {
@@ -30,7 +31,7 @@ export class JpegParts implements BlockCutter {
   /** Reads header bytes up to the empty line that ends them; gives where to go on. */
   private readHeader(chunk: Uint8Array, from: number): number {
     for (let at = from; at < chunk.length; at++) {
-      this.header += String.fromCharCode(chunk[at] ?? 0);
+      this.header = (this.header + String.fromCharCode(chunk[at] ?? 0)).slice(-longestHeader_chars);
       if (!this.header.endsWith('\r\n\r\n')) continue;
       const length = Number(/content-length:\s*(\d+)/i.exec(this.header)?.[1] ?? 0);
       this.header = '';

@@ -1,6 +1,6 @@
 import { startChild } from './ffmpeg-child.ts';
 import type { FfmpegTools } from './find-ffmpeg.ts';
-import { inputName, untrustedInputOptions } from './input-options.ts';
+import { ffprobeInputOptions, inputName } from './input-options.ts';
 
 /** The picture packets of a file as aligned columns, in the order they are stored. */
 export interface PacketList {
@@ -23,7 +23,7 @@ export async function listPackets(path: string, tools: FfmpegTools, signal?: Abo
   const child = startChild(
     tools.ffprobe,
     [
-      ...['-v', 'error', ...untrustedInputOptions, '-select_streams', 'V:0'],
+      ...['-v', 'error', ...ffprobeInputOptions, '-select_streams', 'V:0'],
       ...['-show_entries', 'packet=pts,size,flags', '-of', 'compact=p=0', inputName(path)],
     ],
     { deadlines: { whole_s: null, silence_s: 60 }, signal },

@@ -1,4 +1,4 @@
-import type { FrameRange } from './decode-command.ts';
+import { type FrameRange, patience_s } from './decode-command.ts';
 import type { FfmpegTools } from './find-ffmpeg.ts';
 import { frameTime_s } from './frame-clock.ts';
 import { JpegParts } from './jpeg-parts.ts';
@@ -34,7 +34,12 @@ export async function* playStretch(
   if (range.first >= range.end) return;
   signal?.throwIfAborted();
   const args = movingArguments(recording, range, options, tools, { seek: true });
-  const pictures = new TimedBlocks(tools.ffmpeg, args, recording.timebase, new JpegParts(), signal);
+  const pictures = new TimedBlocks(tools.ffmpeg, args, {
+    timebase: recording.timebase,
+    cutter: new JpegParts(),
+    patience_s: patience_s(recording, range, true),
+    signal,
+  });
   try {
     let index = range.first;
     for (let picture = await pictures.next(); picture !== null; picture = await pictures.next()) {

@@ -1,3 +1,4 @@
+import { patience_s } from './decode-command.ts';
 import { childOutput } from './ffmpeg-child.ts';
 import type { FfmpegTools } from './find-ffmpeg.ts';
 import { InputError } from './input-error.ts';
@@ -21,13 +22,14 @@ export async function stillPicture(
     );
   }
   // A seek that comes out after the frame leaves nothing: then from the start of the file.
+  const range = { first: frameIndex, end: frameIndex + 1 };
   for (const seek of [true, false]) {
     const run = await childOutput(tools.ffmpeg, stillArguments(recording, frameIndex, options, tools, seek), {
-      deadlines: { whole_s: null, silence_s: 120 },
+      deadlines: { whole_s: null, silence_s: patience_s(recording, range, seek) },
       limit_bytes: 256 << 20,
       signal,
     });
-    if (run.stdout.length > 0) return run.stdout;
+    if (run.stdout.length > 0) return new Uint8Array(run.stdout);
   }
   throw new InputError(
     `"${recording.path}": frame ${frameIndex} can't be decoded: the recording is damaged or cut short there.`,

@@ -18,9 +18,6 @@ export interface BlockCutter {
 /** Complete pictures kept ready for the reader: enough to keep the decoder busy, whatever the recording's length. */
 const blocksAhead = 4;
 
-/** Longest time without any output before ffmpeg is taken to be stuck. */
-const silence_s = 60;
-
 /**
  * Runs ffmpeg and pairs the pictures on its stdout with the ticks on its descriptor 3. When the reader falls behind, the pipe fills and
  * ffmpeg waits. `close` kills the child and waits for its exit.
@@ -35,12 +32,18 @@ export class TimedBlocks {
   constructor(
     ffmpeg: string,
     args: readonly string[],
-    timebase: Recording['timebase'],
-    cutter: BlockCutter,
-    signal?: AbortSignal,
+    options: {
+      readonly timebase: Recording['timebase'];
+      readonly cutter: BlockCutter;
+      /** Longest time without any output before ffmpeg is taken to be stuck. */
+      readonly patience_s: number;
+      readonly signal?: AbortSignal | undefined;
+    },
   ) {
-    this.ticks = new FrameTicks(timebase);
-    this.child = startChild(ffmpeg, args, { deadlines: { whole_s: null, silence_s }, extraPipe: true, signal });
+    const { cutter, signal } = options;
+    this.ticks = new FrameTicks(options.timebase);
+    const deadlines = { whole_s: null, silence_s: options.patience_s };
+    this.child = startChild(ffmpeg, args, { deadlines, extraPipe: true, signal });
     const emit = (block: Uint8Array) => {
       this.ready.push(block);
       this.wake();
