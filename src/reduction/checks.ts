@@ -43,7 +43,7 @@ export function checksOf(findings: Findings): Check[] {
 
 /** Rows that stand for something a user types, and would know the uncertainty of. */
 function typed(row: string): boolean {
-  return /radius|spacing|mass|length|diameter|width|inertia|coil constant|stiffness/.test(row);
+  return /radius|spacing|mass|length|diameter|width|inertia|coil constant|stiffness|meter’s scale/.test(row);
 }
 
 function missing({ selection, choice, context, data }: Findings): Check[] {

@@ -21,6 +21,8 @@ export interface ModelChoice {
 
 /** Rest directions further than this from every model are not those of the bar in the field (the camera was moved, say). */
 const wildDirection_rad = (2 * Math.PI) / 180;
+/** How a fibre can follow a bar that turns round, the usual way first. */
+const twoSidedTurns: readonly Turn[] = ['with the field', 'set back', 'against the field'];
 /** By how much Akaike's criterion must fall before an across component is believed from frequencies alone. */
 const clearGain = 6;
 
@@ -31,25 +33,30 @@ const clearGain = 6;
  */
 export function chooseModel(data: Observations, known: KnownFibre | null): ModelChoice | null {
   const splits = branchSplits(data);
-  const best = splits[0];
-  if (best === undefined) return null;
-  const plain = plainCandidates(data, splits, known);
-  if (plain.length === 0) return null;
-  const starts = splits.slice(0, 3);
+  if (splits.length === 0) return null;
+  const likely = splits.slice(0, 3);
   const hasDirections = data.frame.some((frame) => frame >= 0);
-  const turning = hasDirections
-    ? fitAll(
-        data,
-        starts.flatMap((split) => turningProposals(data, split)),
-        known,
-      )
-    : [];
+  const turning = hasDirections ? fitTurning(data, likely, known) : [];
   const turned = lowest(turning);
-  if (turned !== null && directionMiss(turned) < wildDirection_rad) {
-    return { chosen: turned, candidates: [...plain, ...turning], directionsIgnored: false };
-  }
-  const hyperbolas = fitAll(data, starts.flatMap(hyperbolaProposals), known);
-  const straight = lowest(plain)!;
+  const usable = turned !== null && directionMiss(turned) < wildDirection_rad;
+  const lines = fitAll(
+    data,
+    likely.map((split) => lineProposal(data, split)),
+    known,
+  );
+  if (usable) return { chosen: turned, candidates: [...turning, ...lines], directionsIgnored: false };
+  const twisted = likely.filter((split) => split.reversal_A !== null).slice(0, 1);
+  const plain = [
+    ...lines,
+    ...fitAll(
+      data,
+      twisted.map((split) => twistedProposal(data, split)),
+      known,
+    ),
+  ];
+  const straight = lowest(plain);
+  if (straight === null) return null;
+  const hyperbolas = fitAll(data, likely.slice(0, 2).flatMap(hyperbolaProposals), known);
   const curved = lowest(hyperbolas);
   const isCurved = curved !== null && curved.aicc < straight.aicc - clearGain && isAcrossSeen(curved);
   return {
@@ -59,28 +66,53 @@ export function chooseModel(data: Observations, known: KnownFibre | null): Model
   };
 }
 
+/**
+ * Rest directions with every way the fibre can follow the bar. One side of the reversal is tried first and is enough where it
+ * does; else the starts on both sides are tried until one ends well, and from there the other ways once, so that a rival as
+ * good would show.
+ */
+function fitTurning(data: Observations, splits: readonly BranchSplit[], known: KnownFibre | null): ScaledCandidate[] {
+  const proposals = (split: BranchSplit) => turningProposals(data, split);
+  const oneSide = splits.filter(({ reversal_A }) => reversal_A === null).flatMap(proposals);
+  const simple = fitAll(data, oneSide, known);
+  if (simple.some(isAdequate)) return simple;
+  const tried: Proposal[] = [];
+  for (const proposal of splits.filter(({ reversal_A }) => reversal_A !== null).flatMap(proposals)) {
+    tried.push(proposal);
+    const found = fitProposal(data, proposal, known);
+    if (found === null || found.reversal_A === null || !isAdequate(found) || !hasPlausibleSides(data, found)) continue;
+    const others = twoSidedTurns.filter((turn) => turn !== proposal.turn);
+    const start = found.fit.parameters;
+    return [...simple, ...fitAll(data, [proposal, ...others.map((turn) => ({ ...proposal, turn, start }))], known)];
+  }
+  return [...simple, ...fitAll(data, tried, known)];
+}
+
+/** A chi-square, with the uncertainties as stated, that chance gives now and then. */
+function isAdequate(candidate: Candidate | ScaledCandidate): boolean {
+  const { dof, chiSquare } = candidate.fit;
+  const raised = 'scaleFrequencies' in candidate && candidate.scaleFrequencies * candidate.scaleDirections > 1;
+  return dof > 0 && !raised && chiSquare < dof + 3 * Math.sqrt(2 * dof);
+}
+
 /** The candidate with the lowest criterion; null for none. */
 function lowest(candidates: readonly ScaledCandidate[]): ScaledCandidate | null {
   return candidates.reduce<ScaledCandidate | null>((best, c) => (best === null || c.aicc < best.aicc ? c : best), null);
 }
 
-function plainCandidates(
-  data: Observations,
-  splits: readonly BranchSplit[],
-  known: KnownFibre | null,
-): ScaledCandidate[] {
-  const proposals = splits.slice(0, 4).flatMap((split): Proposal[] => {
-    const start = startVector(data, split);
-    const line: Proposal = {
-      kind: split.reversal_A === null ? 'line' : 'two branches',
-      turn: split.reversal_A === null ? 'free' : 'set back',
-      signs: split.signs,
-      start,
-    };
-    if (split.reversal_A === null) return [line];
-    return [line, { ...line, turn: 'with the field', signs: null }];
-  });
-  return fitAll(data, proposals, known);
+function lineProposal(data: Observations, split: BranchSplit): Proposal {
+  const both = split.reversal_A !== null;
+  return {
+    kind: both ? 'two branches' : 'line',
+    turn: both ? 'set back' : 'free',
+    signs: split.signs,
+    start: startVector(data, split),
+  };
+}
+
+/** Two branches with a fibre that is twisted where the bar has turned round. */
+function twistedProposal(data: Observations, split: BranchSplit): Proposal {
+  return { kind: 'two branches', turn: 'with the field', signs: null, start: startVector(data, split) };
 }
 
 function hyperbolaProposals(split: BranchSplit): Proposal[] {
@@ -96,11 +128,8 @@ function hyperbolaProposals(split: BranchSplit): Proposal[] {
 
 function turningProposals(data: Observations, split: BranchSplit): Proposal[] {
   const overtaken = split.along_A * split.signs[0]! < 0;
-  const turns: Turn[] =
-    split.reversal_A !== null
-      ? ['with the field', 'against the field', 'set back']
-      : [overtaken ? 'set back' : 'with the field'];
   const oneSide = split.reversal_A === null;
+  const turns: readonly Turn[] = oneSide ? [overtaken ? 'set back' : 'with the field'] : twoSidedTurns;
   const shares = oneSide ? [0.1] : [-0.4, -0.1, 0.1, 0.4];
   // Not from an untwisted fibre: there the twist has no effect and the fit could leave to the side of a negative stiffness.
   const starts = shares.flatMap((share) => (oneSide ? [-0.2, 0.2] : [0]).map((twist) => ({ share, twist })));

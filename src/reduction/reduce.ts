@@ -145,7 +145,13 @@ function fitSummary(candidate: ScaledCandidate, choice: ModelChoice | null): Fit
     p_value: fit.dof > 0 ? 1 - chiSquareProbability(candidate.statedChiSquare, fit.dof) : null,
     scale_frequencies: candidate.scaleFrequencies,
     scale_directions: candidate.scaleDirections,
-    parameters: named.map(([k, name, unit]) => ({ name, unit, value: p[k]!, u: Math.sqrt(covariance(k, k)) })),
+    parameters: named.map(([k, name, unit]) => ({
+      place: k,
+      name,
+      unit,
+      value: p[k]!,
+      u: Math.sqrt(covariance(k, k)),
+    })),
     correlation: named.map(([a]) =>
       named.map(([b]) => (a === b ? 1 : covariance(a, b) / Math.sqrt(covariance(a, a) * covariance(b, b)))),
     ),

@@ -149,6 +149,8 @@ export interface FitSummary {
 }
 
 export interface FittedParameter {
+  /** Its place in the fit's parameter vector: 0 slope, 1 along, 2 across, 3 fibre, 4 twist, then zeros of direction. */
+  readonly place: number;
   readonly name: string;
   readonly unit: string;
   readonly value: number;

@@ -14,7 +14,7 @@ function microtesla(value_T: number, u_T: number | null = null): string {
 }
 
 function short(value: number, digits = 2): string {
-  return Number(value.toPrecision(digits)).toString();
+  return Number(value.toPrecision(digits)).toString().replace('-', '−');
 }
 
 function list(ids: readonly string[]): string {
