@@ -25,22 +25,33 @@ export function schemaText(schema: object): string {
 }
 
 function published(schema: z.ZodType, id: string, title: string): object {
-  const { $schema, ...rest } = z.toJSONSchema(schema, {
+  const generated = z.toJSONSchema(schema, {
     target: 'draft-2020-12',
     io: 'output',
     override: ({ zodSchema, jsonSchema }) => {
-      const { properties } = jsonSchema;
-      if (!properties) return;
-      for (const [key, property] of Object.entries(properties)) {
-        const description = descriptions.get(key);
-        if (description !== undefined && typeof property === 'object') property.description = description;
-      }
       // Only an object that refuses unknown keys when it is read says so.
       const { catchall } = zodSchema._zod.def as { catchall?: z.core.$ZodType };
-      if (catchall?._zod.def.type !== 'never') delete jsonSchema.additionalProperties;
+      if (jsonSchema.properties && catchall?._zod.def.type !== 'never') delete jsonSchema.additionalProperties;
     },
   });
-  return { $schema, $id: id, title, ...rest };
+  // The generator hands out one object for a scheme that is used twice: as text each place gets its own.
+  const { $schema, ...rest } = JSON.parse(JSON.stringify(generated)) as Node;
+  return { $schema, $id: id, title, ...(described(rest) as Node) };
+}
+
+type Node = { [key: string]: unknown };
+
+/** The same schema with a description at every property that has none and whose name has one. */
+function described(value: unknown): unknown {
+  if (Array.isArray(value)) return value.map(described);
+  if (typeof value !== 'object' || value === null) return value;
+  const node = Object.fromEntries(Object.entries(value).map(([key, part]) => [key, described(part)]));
+  if (typeof node.properties !== 'object' || node.properties === null) return node;
+  const properties = Object.entries(node.properties).map(([name, property]: [string, Node]) => {
+    const description = property.description ?? descriptions.get(name);
+    return [name, description === undefined ? property : { ...property, description }];
+  });
+  return { ...node, properties: Object.fromEntries(properties) };
 }
 
 /** One description per key: a name means the same wherever it stands. */

@@ -11,9 +11,3 @@ export function printable(text: string): string {
       .replace(/[\ud800-\udbff](?![\udc00-\udfff])|(?<![\ud800-\udbff])[\udc00-\udfff]/g, '\ufffd')
   );
 }
-
-/** At most `longest` characters; a text that is cut ends in an ellipsis. */
-export function shortened(text: string, longest: number): string {
-  const characters = [...text];
-  return characters.length <= longest ? text : `${characters.slice(0, Math.max(0, longest - 1)).join('')}…`;
-}

@@ -71,13 +71,15 @@ const model = z.object({
     .max(1000),
 });
 
+const parameterPlace = z.number().int().default(0).describe('Place of the parameter in the fit’s vector.');
+
 const fit = z.object({
   chi_square: value,
   dof: value,
   p_value: maybe,
   scale_frequencies: value,
   scale_directions: value,
-  parameters: z.array(z.object({ name, unit: name, value, u: value })).max(100),
+  parameters: z.array(z.object({ place: parameterPlace, name, unit: name, value, u: value })).max(100),
   correlation: z.array(z.array(value).max(100)).max(100),
 });
 

@@ -1,10 +1,10 @@
 import { roundedText } from '../numerics/rounding.ts';
 import type { Check, Severity } from '../oscillation/ring-down.ts';
 import { estimateText, NOTHING, percentText } from './number-text.ts';
-import { printable, shortened } from './printable.ts';
+import { printable } from './printable.ts';
 import { quantities } from './quantities.ts';
 import type { Results, SegmentResult } from './results.ts';
-import { alignedRows, width, wrapped } from './text-table.ts';
+import { alignedRows, shortened, width, wrapped } from './text-table.ts';
 
 const LONGEST_LINE = 118;
 const HEADINGS: Record<Severity, string> = { fault: 'Faults', doubt: 'Doubts', note: 'Notes' };

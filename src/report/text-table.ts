@@ -28,6 +28,17 @@ export function width(text: string): number {
   return columns;
 }
 
+/** A text of at most so many columns; one that is cut ends in an ellipsis. */
+export function shortened(text: string, columns: number): string {
+  if (width(text) <= columns) return text;
+  let cut = '';
+  for (const character of text) {
+    if (width(cut + character) > columns - 1) break;
+    cut += character;
+  }
+  return `${cut}…`;
+}
+
 /** A sentence broken at spaces to lines of at most `columns`, the later ones indented. */
 export function wrapped(text: string, columns: number, indent: string): string[] {
   const lines: string[] = [];

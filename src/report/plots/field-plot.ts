@@ -24,7 +24,7 @@ export function restDirectionPlot(results: PlottedResults, options: PlotOptions 
 /** What `fieldPlot` draws: every segment with a current and a frequency, in Hz². */
 export function fieldCurves({ segments, reduction }: PlottedResults): CurrentCurves {
   const fitted = new Map(reduction.points.map((p) => [p.id, p]));
-  const used = new Set(reduction.points_used);
+  const used = usedIds(segments, reduction);
   const points = segments.flatMap((segment): CurrentPoint[] => {
     const { current_A, f0_Hz, u_f0_Hz } = segment;
     if (current_A === null || f0_Hz === null) return [];
@@ -43,7 +43,7 @@ export function fieldCurves({ segments, reduction }: PlottedResults): CurrentCur
   const square: Label = [{ symbol: 'f' }, { sub: '0' }, '² / Hz²'];
   return {
     id: 'field',
-    title: 'Square of the undamped frequency against current, with the fitted curve and residuals',
+    title: `Square of the undamped frequency against current${curve ? ', with the fitted curve and residuals' : ''}`,
     quantity: square,
     residualQuantity: ['resid. / Hz²'],
     points,
@@ -79,6 +79,12 @@ export function restDirectionCurves({ segments, reduction }: PlottedResults): Cu
     curve: joined(turned),
     curveName: 'fitted turning',
   };
+}
+
+/** Where nothing was fitted every segment that was not left out counts: none is marked as refused by a fit that isn't there. */
+function usedIds(segments: readonly SegmentResult[], reduction: Reduction): ReadonlySet<string> {
+  if (reduction.points_used.length > 0) return new Set(reduction.points_used);
+  return new Set(segments.filter((s) => s.left_out === null).map((s) => s.id));
 }
 
 function joined(points: readonly FittedPoint[]): CurrentCurves['curve'] {

@@ -90,26 +90,40 @@ function entries(curves: RingDownCurves, theme: PlotTheme): LegendEntry[] {
   return list;
 }
 
+/** Rows used as dots, the others as crosses. Each kind is one path: that keeps the page small. */
 function dots(panel: Panel, curves: RingDownCurves, y: ArrayLike<number>, theme: PlotTheme): string {
-  const columns = Math.round(panel.right - panel.left);
+  // A line of no length with round ends is a dot.
+  const used = spots(panel, curves, y, curves.used, 'h0');
+  const out =
+    curves.used &&
+    spots(
+      panel,
+      curves,
+      y,
+      Array.from(curves.used, (u) => (u ? 0 : 1)),
+      'm-2.7-2.7l5.4 5.4m0-5.4l-5.4 5.4',
+    );
+  return (
+    (used &&
+      element('path', { d: used, stroke: theme.data, 'stroke-width': 2.2, 'stroke-linecap': 'round', fill: 'none' })) +
+    (out ? element('path', { d: out, stroke: theme.warning, 'stroke-width': 1.6, fill: 'none' }) : '')
+  );
+}
+
+function spots(
+  panel: Panel,
+  curves: RingDownCurves,
+  y: ArrayLike<number>,
+  keep: ArrayLike<number> | null,
+  sign: string,
+): string {
   let d = '';
-  for (const i of decimated(curves.time_s, y, columns, curves.used ?? undefined)) {
+  for (const i of decimated(curves.time_s, y, Math.round(panel.right - panel.left), keep ?? undefined)) {
     const px = panel.x.place(curves.time_s[i]!);
     const py = panel.y.place(y[i]!);
-    // A dot is a line of no length with round ends: one path for all of them keeps the page small.
-    if (px !== null && py !== null) d += `M${coordinate(px)} ${coordinate(py)}h0`;
+    if (px !== null && py !== null) d += `M${coordinate(px)} ${coordinate(py)}${sign}`;
   }
-  let markup =
-    d && element('path', { d, stroke: theme.data, 'stroke-width': 2.2, 'stroke-linecap': 'round', fill: 'none' });
-  if (curves.used) {
-    const out = Array.from(curves.used, (u) => (u ? 0 : 1));
-    for (const i of decimated(curves.time_s, y, columns, out)) {
-      const px = panel.x.place(curves.time_s[i]!);
-      const py = panel.y.place(y[i]!);
-      if (px !== null && py !== null) markup += openMark(px, py, theme);
-    }
-  }
-  return markup;
+  return d;
 }
 
 function fitLine(panel: Panel, curves: RingDownCurves, theme: PlotTheme): string {

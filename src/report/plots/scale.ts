@@ -66,11 +66,11 @@ export function logScale(domain: readonly [number, number], range: readonly [num
 export function niceTicks(low: number, high: number, count: number): readonly Tick[] {
   if (!(high > low) || !Number.isFinite(high - low)) return [];
   const step = niceStep((high - low) / Math.max(1, count));
-  const decimals = Math.max(0, -Math.floor(Math.log10(step) + 1e-9));
+  const largest = Math.max(Math.abs(low), Math.abs(high));
   const ticks: Tick[] = [];
   for (let i = Math.ceil(low / step - 1e-9); i <= high / step + 1e-9; i++) {
     const value = i * step;
-    ticks.push({ value, text: tickText(value, decimals) });
+    ticks.push({ value, text: tickText(value, step, largest) });
   }
   return ticks;
 }
@@ -83,12 +83,14 @@ export function niceStep(rough: number): number {
   return nice * power;
 }
 
-function tickText(value: number, decimals: number): string {
-  const size = Math.abs(value);
-  if (size !== 0 && (size >= 1e6 || decimals > 6)) {
-    return minus(value.toExponential().replace(/^(-?\d(?:\.\d{1,5})?)\d*e\+?/, '$1e'));
+/** With as many decimals as the step needs; with a power of ten where steps are very large or all values very small. */
+function tickText(value: number, step: number, largest: number): string {
+  if (value !== 0 && (step >= 1e5 || largest < 1e-5)) {
+    const digits = Math.max(0, Math.floor(Math.log10(Math.abs(value)) + 1e-9) - Math.floor(Math.log10(step) + 1e-9));
+    const [lead = '', power = ''] = value.toExponential(digits).split('e');
+    return minus(`${lead.includes('.') ? lead.replace(/\.?0+$/, '') : lead}e${power.replace('+', '')}`);
   }
-  return minus(value.toFixed(decimals));
+  return minus(value.toFixed(Math.max(0, -Math.floor(Math.log10(step) + 1e-9))));
 }
 
 function powerText(power: number): string {

@@ -1,9 +1,12 @@
-/** Text that is safe inside an XML or HTML element or a quoted attribute; what XML can't hold becomes U+FFFD. */
+/**
+ * Text that is safe inside an XML or HTML element or a quoted attribute; what XML can't hold and what turns the direction of
+ * writing becomes U+FFFD.
+ */
 export function escapeText(text: string): string {
   return (
     text
       // biome-ignore lint/suspicious/noControlCharactersInRegex: these are what XML 1.0 can't hold (production 2, Char).
-      .replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f\ufffe\uffff]/g, '\ufffd')
+      .replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f\ufffe\uffff\u202a-\u202e\u2066-\u2069]/g, '\ufffd')
       .replace(/[\ud800-\udbff](?![\udc00-\udfff])|(?<![\ud800-\udbff])[\udc00-\udfff]/g, '\ufffd')
       .replace(/&/g, '&amp;')
       .replace(/</g, '&lt;')

@@ -230,8 +230,8 @@ function exampleReduction(rows: readonly SegmentResult[]): Reduction {
       scale_frequencies: 1,
       scale_directions: 1,
       parameters: [
-        { name: 'slope', unit: 'Hz²/A', value: SLOPE, u: 0.0042 },
-        { name: 'B_along / k', unit: 'A', value: AMBIENT / COIL, u: 0.0004 },
+        { place: 0, name: 'slope', unit: 'Hz²/A', value: SLOPE, u: 0.0042 },
+        { place: 1, name: 'B_along / k', unit: 'A', value: AMBIENT / COIL, u: 0.0004 },
       ],
       correlation: [
         [1, -0.71],
