@@ -37,20 +37,14 @@ export function sharePrior(
   return { value: 1 - fibre.value, u: options.view === 'plan' ? fibre.u : Math.hypot(fibre.u, SCALE_u) };
 }
 
-/** The model without side lines and where its fit starts. `freeDrag` leaves the quadratic drag to the data alone. */
-export function setUp(
-  start: StartValues,
-  duration_s: number,
-  options: RingDownOptions,
-  unit: 'rad' | 'px',
-  freeDrag: boolean,
-): Setup {
+/** The model without side lines and where its fit starts. */
+export function setUp(start: StartValues, duration_s: number, options: RingDownOptions, unit: 'rad' | 'px'): Setup {
   const share = sharePrior(options, start.frequency_Hz, unit);
   const priors: Prior[] = [
     { parameter: SHARE, value: share.value, u: Math.max(share.u, 1e-6) },
     { parameter: SKEW, value: 0, u: SKEW_u },
+    { parameter: DRAG, value: 0, u: DRAG_u_per_rad },
   ];
-  if (!freeDrag) priors.push({ parameter: DRAG, value: 0, u: DRAG_u_per_rad });
   const swept = Math.PI * start.frequency_Hz * (options.exposure_s ?? 0);
   const blur = swept > 1e-6 && swept < 3 ? Math.sin(swept) / swept : 1;
   const omega = 2 * Math.PI * start.frequency_Hz;

@@ -1,8 +1,7 @@
-/** Orthonormal columns that span given ones, each with the number of the column it was made from and what was left of its length. */
+/** Orthonormal columns that span given ones, each with the number of the column it was made from. */
 export interface Basis {
   readonly q: readonly Float64Array[];
   readonly from: readonly number[];
-  readonly norm: readonly number[];
 }
 
 /**
@@ -12,7 +11,6 @@ export interface Basis {
 export function orthonormalBasis(columns: readonly Float64Array[], order: readonly number[]): Basis {
   const q: Float64Array[] = [];
   const from: number[] = [];
-  const norms: number[] = [];
   for (const k of order) {
     const column = columns[k]!.slice();
     const before = Math.sqrt(dot(column, column));
@@ -22,9 +20,8 @@ export function orthonormalBasis(columns: readonly Float64Array[], order: readon
     for (let i = 0; i < column.length; i++) column[i] = column[i]! / norm;
     q.push(column);
     from.push(k);
-    norms.push(norm);
   }
-  return { q, from, norm: norms };
+  return { q, from };
 }
 
 /** Sum of products. */

@@ -17,11 +17,15 @@ export interface Facts {
   readonly drift: Estimate;
   /** Standard uncertainty of f0 without the clock. */
   readonly noiseOnlyU_Hz: number;
+  /** Variance per sample of the noise near the twist's frequency. */
+  readonly level: number;
   /** Noise near the twist's frequency over the mean square of the residuals: 1 for white noise. */
   readonly levelRatio: number;
   readonly crossings: CrossingResult | null;
   readonly jump: Jump | null;
   readonly swings: readonly SwingLine[];
+  /** Motion of the bar's middle at the twist's own frequency over the twist's motion of the end, in step with it and a quarter cycle off. */
+  readonly coherent: { readonly inPhase: number; readonly quadrature: number } | null;
   readonly angleLine: { readonly frequency_Hz: number; readonly amplitude: number } | null;
   /** Another frequency that fits nearly as well, null where there is none. */
   readonly rival_Hz: number | null;
@@ -113,7 +117,10 @@ function disturbed(facts: Facts): Check[] {
   const closest = facts.swings
     .map((line) => line.frequency_Hz)
     .sort((a, b) => Math.abs(a - twist_Hz) - Math.abs(b - twist_Hz))[0];
-  if (
+  const coherent = facts.coherent;
+  if (coherent !== null && (coherent.quadrature > 0.1 || coherent.inPhase > 0.35)) {
+    out.push(check('swing_with_twist', 'doubt', { twist_Hz }));
+  } else if (
     closest !== undefined &&
     swing !== null &&
     swing.share > 0.05 &&
@@ -133,7 +140,9 @@ function disturbed(facts: Facts): Check[] {
 function isJump(facts: Facts, jump: Jump): boolean {
   if (!(jump.evidence > 30)) return false;
   const shift_Hz = Math.abs(jump.omegaShift) / (2 * Math.PI);
-  return jump.size > 0.05 || (jump.size > 0.005 && shift_Hz > 1.5 * facts.noiseOnlyU_Hz);
+  // The uncertainty there would be without the jump's own part in the residuals.
+  const u_Hz = facts.noiseOnlyU_Hz * Math.sqrt(Math.min(1, jump.level / facts.level));
+  return jump.size > 0.05 || (jump.size > 0.005 && shift_Hz > 1.5 * u_Hz);
 }
 
 /** How the bar moved. */

@@ -1,17 +1,18 @@
-import type { Estimate } from '../numerics/estimate.ts';
-import { rootMeanSquare } from '../numerics/statistics.ts';
+import { mean, rootMeanSquare } from '../numerics/statistics.ts';
 import type { Trace } from '../tracking/trace.ts';
 import { amplitudeAt, frequencyRatio, meanSquareAmplitude, startAmplitude } from './amplitude.ts';
 import { setUp } from './assumptions.ts';
 import { type Facts, faults, findings } from './checks.ts';
 import { chooseStart } from './choose-start.ts';
+import { derived, withClock } from './derived.ts';
 import { findJump } from './jumps.ts';
-import { DRAG, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA } from './model.ts';
+import { DRAG, DRIFT, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA, SHARE, SKEW } from './model.ts';
+import { withoutPrior } from './parameter-covariance.ts';
 import type { RingDown, RingDownOptions, RingDownOutcome } from './ring-down.ts';
 import { foldedFrom, gapRival } from './rivals.ts';
 import { angleSeries, type Series, sampling } from './series.ts';
 import { addLines, type FitWithLines, motionAt } from './side-lines.ts';
-import { dragEvidence, fitTwist, type TwistFit, uncertaintyOf } from './twist-fit.ts';
+import { fitTwist, type TwistFit } from './twist-fit.ts';
 import { compareCrossings, crossings } from './zero-crossings.ts';
 
 /** Fewer poses than this give no ring-down. */
@@ -20,6 +21,8 @@ const FEWEST_POSES = 24;
 const NOMINAL_AMPLITUDE_rad = 0.14;
 /** Fall of chi-square by one more parameter that Akaike's criterion asks for, beside the correction for few samples. */
 const AIC_PENALTY = 2;
+/** A prior further than this many standard uncertainties from what the data say is doubted rather than the data. */
+const TENSION = 2.5;
 
 /**
  * Fits the decaying twist of one segment: frequency in the limit of small amplitude, damping, rest direction, each with a standard uncertainty
@@ -31,77 +34,58 @@ export function fitRingDown(trace: Trace, options: RingDownOptions): RingDownOut
   const poses = raw.time_s.length;
   const refused = trace.refused.length;
   if (poses < FEWEST_POSES) return { ok: false, checks: faults.tooFewPoses(poses, refused) };
-  const series: Series =
-    trace.unit === 'rad' ? raw : { time_s: raw.time_s, value: raw.value.map(nominalAngle(raw.value)) };
-  const unitScale = trace.unit === 'rad' ? 1 : 1 / nominalAngle(raw.value)(1, 0, raw.value);
+  // Pixels are fitted as nominal radians and given back as pixels.
+  const scale = trace.unit === 'rad' ? 1 : nominalScale(raw.value);
+  const series: Series = { time_s: raw.time_s, value: raw.value.map((v) => scale * v) };
   const { duration_s } = sampling(series);
   const start = chooseStart(series, trace, options.view === 'side');
   if (start === null) return { ok: false, checks: faults.noOscillation() };
 
-  const first = setUp(start, duration_s, options, trace.unit, false);
+  const first = setUp(start, duration_s, options, trace.unit);
   const plain = fitTwist(series, first.model, first.start);
   if (plain === null) return { ok: false, checks: faults.noOscillation() };
   const lined = addLines(series, trace, plain, options.view === 'side');
-  const fit = withDrag(series, lined.fit);
-  const facts = factsOf(fit, { ...lined, fit }, trace, options, unitScale);
+  const fit = withWiderPriors(series, lined.fit);
+  const facts = factsOf(fit, { ...lined, fit }, trace, options, 1 / scale);
   const fault = faults.ofFacts(facts);
   if (fault.length > 0) return { ok: false, checks: fault };
   return { ok: true, ringDown: facts.ringDown, checks: findings(facts) };
 }
 
-function nominalAngle(value: Float64Array): (v: number, i: number, all: Float64Array) => number {
-  const middle = value.reduce((a, b) => a + b, 0) / value.length;
-  const swing = Math.SQRT2 * rootMeanSquare(value.map((v) => v - middle));
-  const factor = swing > 0 ? NOMINAL_AMPLITUDE_rad / swing : 1;
-  return (v) => factor * v;
+/** What turns pixels into nominal radians: their rms about the mean is that of an oscillation of the nominal amplitude. */
+function nominalScale(value: Float64Array): number {
+  const middle = mean(value);
+  const amplitude = Math.SQRT2 * rootMeanSquare(value.map((v) => v - middle));
+  return amplitude > 0 ? NOMINAL_AMPLITUDE_rad / amplitude : 1;
 }
 
-/** Frees the quadratic drag of its prior where Akaike's criterion asks for it. */
-function withDrag(series: Series, fit: TwistFit): TwistFit {
+/** Whether Akaike's criterion (AICc) prefers a quadratic drag, left to the data alone, to none. Negative drag would drive the bar: no physics. */
+function asksForDrag(fit: TwistFit): boolean {
+  const prior = fit.model.priors.find((p) => p.parameter === DRAG);
+  const free = prior === undefined ? null : withoutPrior(fit, prior);
   const n = fit.residual.length;
-  const k = fit.parameters.length;
+  const k = fit.model.fixed.filter((held) => !held).length;
   const correction = (2 * (2 * k + 1)) / Math.max(1, n - k - 2);
-  if (dragEvidence(fit) < AIC_PENALTY + correction) return fit;
-  const model = { ...fit.model, priors: fit.model.priors.filter((prior) => prior.parameter !== DRAG) };
-  const freed = fitTwist(series, model, fit.parameters, fit);
-  // Negative drag would drive the bar: no physics, so the prior stays.
-  return freed !== null && freed.parameters[DRAG]! > 0 ? freed : fit;
+  return free !== null && free.value > 0 && (free.value / free.u) ** 2 > AIC_PENALTY + correction;
 }
 
-/** Value and standard uncertainty of a function of the parameters: derivatives over half a standard uncertainty to either side. */
-function derived(fit: TwistFit, dof: number, f: (p: Float64Array) => number): Estimate {
-  const { parameters, covariance } = fit;
-  const n = parameters.length;
-  const gradient = parameters.map((value, k) => {
-    const u = uncertaintyOf(fit, k);
-    if (u === 0) return 0;
-    const moved = parameters.slice();
-    moved[k] = value + u / 2;
-    const high = f(moved);
-    moved[k] = value - u / 2;
-    return (high - f(moved)) / u;
+/** Widens priors to what the data say where the two can't both be right. */
+function withWiderPriors(series: Series, fit: TwistFit): TwistFit {
+  let widened = false;
+  const priors = fit.model.priors.map((prior) => {
+    if (![SHARE, SKEW, DRAG].includes(prior.parameter)) return prior;
+    const free = withoutPrior(fit, prior);
+    const apart = free === null ? 0 : Math.abs(free.value - prior.value);
+    if (free === null || apart < TENSION * Math.hypot(free.u, prior.u)) return prior;
+    widened = true;
+    return { ...prior, u: apart };
   });
-  let variance = 0;
-  for (let a = 0; a < n; a++)
-    for (let b = 0; b < n; b++) variance += gradient[a]! * covariance[a * n + b]! * gradient[b]!;
-  return { value: f(parameters), u: Math.sqrt(Math.max(0, variance)), dof };
-}
-
-/** Adds the clock's relative uncertainty to a rate. */
-function withClock(estimate: Estimate, u_time_scale: number): Estimate {
-  const clock = Math.abs(estimate.value) * u_time_scale;
-  const u = Math.hypot(estimate.u, clock);
-  // Welch-Satterthwaite with a clock known exactly enough (JCGM 100:2008 G.4).
-  return {
-    value: estimate.value,
-    u,
-    dof: estimate.u > 0 ? estimate.dof * (u / estimate.u) ** 4 : Number.POSITIVE_INFINITY,
-  };
+  return widened ? (fitTwist(series, { ...fit.model, priors }, fit.parameters, fit) ?? fit) : fit;
 }
 
 function factsOf(
   fit: TwistFit,
-  { swings, angleLine }: FitWithLines,
+  { swings, coherent, angleLine }: FitWithLines,
   trace: Trace,
   options: RingDownOptions,
   unitScale: number,
@@ -130,7 +114,7 @@ function factsOf(
   const fitted = new Float64Array(raw.time_s.length);
   evaluateModel(fit.model, parameters, raw.time_s, fitted, null);
   for (let i = 0; i < fitted.length; i++) fitted[i] = fitted[i]! * unitScale;
-  const { twist, rate: twistRate } = motionAt(fit, samples.time_s);
+  const { twist, later } = motionAt(fit, samples.time_s);
   const swung = samples.value.map((_, i) => twist[i]! * fit.model.blur + fit.residual[i]!);
   const size = (t: number) => amplitudeAt(motion, a0, t);
   const counted = compareCrossings(
@@ -161,7 +145,7 @@ function factsOf(
           ? { frequency_Hz: angleLine.frequency_Hz, share: shareOf(angleLine.amplitude) }
           : null,
     amplitudeShift: 1 / seenAt(parameters) - 1,
-    quadraticDrag: fit.model.priors.some((prior) => prior.parameter === DRAG) ? 0 : parameters[DRAG]!,
+    quadraticDrag: trace.unit === 'rad' && asksForDrag(fit) ? parameters[DRAG]! : 0,
     fitted,
     residual: fitted.map((value, i) => trace.angle[i]! - value),
     usedRows: fit.used,
@@ -173,13 +157,15 @@ function factsOf(
     duration_s: end,
     medianInterval_s: rate.medianInterval_s,
     longestInterval_s: rate.longestInterval_s,
-    drift: { ...derived(fit, dof, (p) => p[OFFSET + 1]! * unitScale) },
+    drift: derived(fit, dof, (p) => p[DRIFT]! * unitScale),
     noiseOnlyU_Hz: derived(fit, dof, (p) => p[OMEGA]! / (2 * Math.PI)).u,
+    level: fit.level,
     levelRatio: fit.level / Math.max(rootMeanSquare(fit.residual) ** 2, 1e-300),
     crossings: counted,
-    jump: findJump(fit, twist, twistRate, Math.max(period_s, 0.05 * end)),
+    jump: findJump(fit, twist, later, Math.max(period_s, 0.05 * end)),
     swings,
-    angleLine,
+    coherent,
+    angleLine: angleLine === null ? null : { ...angleLine, amplitude: angleLine.amplitude * unitScale },
     rival_Hz: gapRival(fit),
     folded_Hz: foldedFrom(fit),
     signal: (fit.residual.length * rootMeanSquare(twist) ** 2) / fit.level,

@@ -13,19 +13,21 @@ export interface Jump {
   readonly size: number;
   /** By how much omega would change if the jump were allowed for. */
   readonly omegaShift: number;
+  /** Variance per sample of the noise left near the twist's frequency once the jump is allowed for. */
+  readonly level: number;
 }
 
 /**
- * Looks for a sudden change of amplitude and phase at any time: from there on, any multiple of the twist and of its rate is added to the
- * model, the fitted parameters free to follow. All times are tried at once by running sums. `twist` and `rate` are the
+ * Looks for a sudden change of amplitude and phase at any time: from there on, any multiple of the twist and of `later`, the twist a quarter cycle on, is added to the
+ * model, the fitted parameters free to follow. All times are tried at once by running sums. Both are the
  * fitted motion at the used samples, `margin_s` is kept from both ends. Null where there is no room.
  */
-export function findJump(fit: TwistFit, twist: Float64Array, rate: Float64Array, margin_s: number): Jump | null {
+export function findJump(fit: TwistFit, twist: Float64Array, later: Float64Array, margin_s: number): Jump | null {
   const { samples, residual, parameters } = fit;
   const n = residual.length;
   const omega = parameters[OMEGA]!;
   const c0 = twist;
-  const c1 = rate.map((v) => v / omega);
+  const c1 = later;
   const { basis } = fit;
   const clean = residual.slice();
   for (const q of basis.q) subtract(clean, q, dot(clean, q));
@@ -70,11 +72,18 @@ export function findJump(fit: TwistFit, twist: Float64Array, rate: Float64Array,
   const spanned = orthonormalBasis([...basis.q, from(c0), from(c1)], [...basis.q.keys(), p, p + 1]).q;
   const noise = fitResidualNoise(samples.time_s, after, spanned, fit.noise.step_s);
   const level = Math.max(noiseLevel(noise, omega / (2 * Math.PI)), 1e-300);
-  const projected = best.q0.map((q, k) => b0 * q + b1 * best.q1[k]!);
+  // What the jump would do to a fit that does not know of it.
+  let omegaShift = 0;
+  fit.jacobian.forEach((column, k) => {
+    let product = 0;
+    for (let i = at; i < n; i++) product += column[i]! * (b0 * c0[i]! + b1 * c1[i]!);
+    omegaShift -= (fit.inverse[OMEGA * parameters.length + k]! * product) / fit.level;
+  });
   return {
     time_s: samples.time_s[at]!,
     evidence: gain / level,
     size: Math.hypot(b0, b1),
-    omegaShift: -projected[p - 1]! / basis.norm[p - 1]!,
+    level,
+    omegaShift,
   };
 }

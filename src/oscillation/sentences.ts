@@ -47,6 +47,8 @@ export const SENTENCES = {
     `The bar swings sideways as well, at ${figure(f.frequency_Hz, 3)} Hz by ${relative(f.share)} of the twist; it is fitted beside it.`,
   swing_close: (f: { frequency_Hz: number; twist_Hz: number; share: number }) =>
     `The bar swings sideways at ${figure(f.frequency_Hz, 3)} Hz, too close to the twist at ${figure(f.twist_Hz, 3)} Hz to be told apart in this length; let the swing die down first or film longer.`,
+  swing_with_twist: (f: { twist_Hz: number }) =>
+    `The bar's middle moves at the twist's own ${figure(f.twist_Hz, 3)} Hz, so that a swing can't be told from the twist; let the swing die down first, or hang the bar by its middle.`,
   jump: (f: { time_s: number; size: number }) =>
     `Amplitude and phase jump by ${relative(f.size)} about ${figure(f.time_s, 3)} s into the segment, as after a nudge or a touch; mark only the stretch before or after it.`,
   crossings_disagree: (f: { counted_Hz: number; fitted_Hz: number }) =>

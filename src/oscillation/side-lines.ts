@@ -5,7 +5,7 @@ import { motionOf, OMEGA } from './model.ts';
 import { integrate } from './motion.ts';
 import type { Series } from './series.ts';
 import { spectralLines, spectrum } from './spectrum.ts';
-import { type SwingLine, swingLines } from './swing.ts';
+import { type PositionMotion, positionMotion, type SwingLine } from './swing.ts';
 import { fitTwist, type TwistFit } from './twist-fit.ts';
 
 /** The twist with whatever swings beside it. */
@@ -13,6 +13,8 @@ export interface FitWithLines {
   readonly fit: TwistFit;
   /** Lines seen in the position of the bar's middle. */
   readonly swings: readonly SwingLine[];
+  /** How far the bar's middle moves at the twist's frequency, over how far the twist moves its end; null where that can't be seen. */
+  readonly coherent: { readonly inPhase: number; readonly quadrature: number } | null;
   /** A line found in the angle alone: frequency, and amplitude at time zero in the unit of the angle. */
   readonly angleLine: { readonly frequency_Hz: number; readonly amplitude: number } | null;
 }
@@ -25,10 +27,11 @@ const EVIDENCE = 30;
 
 /** Adds to a fit the lines that the bar's position shows, then those that the residuals still show (at most two), where they help. */
 export function addLines(series: Series, trace: Trace, fit: TwistFit, side: boolean): FitWithLines {
-  const swings = side ? [] : positionSwings(trace, fit);
+  const motion = side ? null : positionOf(trace, fit);
+  const swings = motion?.lines ?? [];
+  const half = trace.halfLength_px;
   let best = fit;
   for (const swing of swings) {
-    const half = trace.halfLength_px;
     const u = half !== null && half > 0 ? Math.max(LEAK_u * (swing.amplitude_px / half), 1e-5) : null;
     const line = { frequency_Hz: swing.frequency_Hz, decay_per_s: swing.decay_per_s, held: true, u, u_decay_per_s: 1 };
     best = refit(series, best, line) ?? best;
@@ -50,7 +53,11 @@ export function addLines(series: Series, trace: Trace, fit: TwistFit, side: bool
     best = next;
     if (angleLine === null || amplitude > angleLine.amplitude) angleLine = { frequency_Hz: seen, amplitude };
   }
-  return { fit: best, swings, angleLine };
+  const coherent =
+    motion === null || half === null || !(half > 0)
+      ? null
+      : { inPhase: motion.inPhase_px / half, quadrature: motion.quadrature_px / half };
+  return { fit: best, swings, coherent, angleLine };
 }
 
 function refit(series: Series, fit: TwistFit, line: SideLine): TwistFit | null {
@@ -58,29 +65,27 @@ function refit(series: Series, fit: TwistFit, line: SideLine): TwistFit | null {
   return fitTwist(series, model, start, fit);
 }
 
-function positionSwings(trace: Trace, fit: TwistFit): SwingLine[] {
+function positionOf(trace: Trace, fit: TwistFit): PositionMotion | null {
   const { samples, used } = fit;
-  const { twist, rate } = motionAt(fit, samples.time_s);
+  const { twist, later } = motionAt(fit, samples.time_s);
   const keep = (_: number, i: number) => used[i] === 1;
-  return swingLines(samples.time_s, trace.x_px.filter(keep), trace.y_px.filter(keep), twist, rate, 2);
+  return positionMotion(samples.time_s, trace.x_px.filter(keep), trace.y_px.filter(keep), twist, later, 2);
 }
 
-/** Twist from rest and its rate at given times. */
-export function motionAt(fit: TwistFit, time_s: Float64Array): { twist: Float64Array; rate: Float64Array } {
+/** Twist from rest at given times, and a quarter of a cycle later (which is its rate over omega, but for the damping). */
+export function motionAt(fit: TwistFit, time_s: Float64Array): { twist: Float64Array; later: Float64Array } {
+  const motion = motionOf(fit.parameters);
+  const quarter = Math.PI / (2 * motion.omega);
   const twist = new Float64Array(time_s.length);
-  integrate(motionOf(fit.parameters), time_s, twist, null);
-  const rate = new Float64Array(time_s.length);
-  const omega = fit.parameters[OMEGA]!;
-  // The rate at t is what the angle will be a quarter period later, to the order a regression needs.
   const later = new Float64Array(time_s.length);
+  integrate(motion, time_s, twist, null);
   integrate(
-    motionOf(fit.parameters),
-    time_s.map((t) => t + Math.PI / (2 * omega)),
+    motion,
+    time_s.map((t) => t + quarter),
     later,
     null,
   );
-  for (let i = 0; i < rate.length; i++) rate[i] = omega * later[i]!;
-  return { twist, rate };
+  return { twist, later };
 }
 
 /** Frequency of the strongest line of the residuals that stands out and is neither near the twist, nor a harmonic of it, nor slow wander. */

@@ -17,44 +17,63 @@ export interface SwingLine {
 /** A line of noise reaches about four times the median of its spectrum in a thousand lines. */
 const PROMINENT = 6;
 
+/** Motion of the bar's middle: lines of its own, and what follows the twist. */
+export interface PositionMotion {
+  /** At most as many as asked for, strongest first. */
+  readonly lines: readonly SwingLine[];
+  /** Pixels the middle moves per radian of twist, in step with it: a fibre off the middle does that. */
+  readonly inPhase_px: number;
+  /** The same a quarter cycle off: no fibre does that, a swing at the twist's frequency may. */
+  readonly quadrature_px: number;
+}
+
 /**
- * Lines in the motion of the bar's middle that do not follow the twist: x and y less what offset, drift, `twist` and
- * `twistRate` (aligned with them) explain, so that a fibre off the bar's middle makes no swing. At most `count`, strongest first.
+ * Splits the motion of the bar's middle into what offset, drift, twist, its square and `later` (the twist a quarter cycle on)
+ * explain, and damped sines in the rest: a fibre off the bar's middle makes no swing. All columns are aligned. Null for fewer than
+ * 32 rows, positions that are not finite, or columns that can't be told apart.
  */
-export function swingLines(
+export function positionMotion(
   time_s: Float64Array,
   x_px: Float64Array,
   y_px: Float64Array,
   twist: Float64Array,
-  twistRate: Float64Array,
+  later: Float64Array,
   count: number,
-): SwingLine[] {
+): PositionMotion | null {
   const n = time_s.length;
-  if (n < 32) return [];
+  if (n < 32 || !x_px.every(Number.isFinite) || !y_px.every(Number.isFinite)) return null;
   const duration = time_s[n - 1]! - time_s[0]!;
-  const basis = [time_s.map(() => 1), time_s.map((t) => t - duration / 2), twist, twistRate];
+  const basis = [twist, later, twist.map((v) => v * v), time_s.map(() => 1), time_s.map((t) => t - duration / 2)];
   // What the lines found so far leave of the position; the twist's part is taken out anew each time, since a line disturbs it.
   let left = [x_px, y_px];
-  const found: SwingLine[] = [];
-  while (found.length < count) {
-    const [x, y] = left.map((column) => linearLeastSquares(basis, column)?.residual ?? null);
-    if (x === null || x === undefined || y === null || y === undefined) break;
-    const start = [x, y]
-      .map((column) => {
-        const s = spectrum(time_s, column);
-        const line = s === null ? undefined : spectralLines(s, 3).find((l) => l.frequency_Hz * duration > 1.5);
-        return s === null || line === undefined ? null : { ...line, prominence: line.amplitude / median(s.amplitude) };
-      })
-      .filter((line) => line !== null)
-      .sort((a, b) => b.amplitude - a.amplitude)
-      .find((line) => line.prominence > PROMINENT);
-    if (start === undefined) break;
-    const fit = fitLine(time_s, x, y, start.frequency_Hz, duration);
-    if (fit === null) break;
-    found.push({ ...fit.line, prominence: start.prominence });
-    left = left.map((column, axis) => column.map((v, i) => v - fit.curve[axis]![i]!));
+  const lines: SwingLine[] = [];
+  for (;;) {
+    const [x, y] = left.map((column) => linearLeastSquares(basis, column));
+    if (x === null || x === undefined || y === null || y === undefined) return null;
+    const line = lines.length < count ? nextLine(time_s, x.residual, y.residual, duration) : null;
+    if (line === null) {
+      const inPhase_px = Math.hypot(x.parameters[0]!, y.parameters[0]!);
+      return { lines, inPhase_px, quadrature_px: Math.hypot(x.parameters[1]!, y.parameters[1]!) };
+    }
+    lines.push(line.line);
+    left = left.map((column, axis) => column.map((v, i) => v - line.curve[axis]![i]!));
   }
-  return found;
+}
+
+/** The strongest line that stands out of x or y, fitted to both; null where none does. */
+function nextLine(time_s: Float64Array, x: Float64Array, y: Float64Array, duration: number) {
+  const start = [x, y]
+    .map((column) => {
+      const s = spectrum(time_s, column);
+      const line = s === null ? undefined : spectralLines(s, 3).find((l) => l.frequency_Hz * duration > 1.5);
+      return s === null || line === undefined ? null : { ...line, prominence: line.amplitude / median(s.amplitude) };
+    })
+    .filter((line) => line !== null)
+    .sort((a, b) => b.amplitude - a.amplitude)
+    .find((line) => line.prominence > PROMINENT);
+  if (start === undefined) return null;
+  const fit = fitLine(time_s, x, y, start.frequency_Hz, duration);
+  return fit === null ? null : { line: { ...fit.line, prominence: start.prominence }, curve: fit.curve };
 }
 
 function fitLine(time_s: Float64Array, x: Float64Array, y: Float64Array, frequency_Hz: number, duration: number) {

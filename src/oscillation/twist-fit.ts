@@ -1,8 +1,9 @@
 import { type LeastSquaresFit, leastSquares, type Prior } from '../numerics/least-squares.ts';
 import { robustDeviation, rootMeanSquare } from '../numerics/statistics.ts';
-import { type Basis, orthonormalBasis } from './basis.ts';
-import { DRAG, evaluateModel, type Model, OMEGA, problemOf } from './model.ts';
-import { combinationCovariance, fitResidualNoise, noiseLevel, type ResidualNoise } from './residual-noise.ts';
+import { type Basis, dot, orthonormalBasis, subtract } from './basis.ts';
+import { evaluateModel, type Model, OMEGA, problemOf } from './model.ts';
+import { parameterCovariance } from './parameter-covariance.ts';
+import { fitResidualNoise, noiseLevel, type ResidualNoise } from './residual-noise.ts';
 import { pick, type Series, sampling } from './series.ts';
 
 /** A model fitted to a series, with what the residuals say about its uncertainty. */
@@ -11,6 +12,8 @@ export interface TwistFit {
   readonly parameters: Float64Array;
   /** Covariance of the parameters (zero for held ones), row by row: noise with its correlation, and priors. */
   readonly covariance: Float64Array;
+  /** The fit's inverse of J'J and priors for noise of variance `level`, row by row: turns J'y / level into a change of parameters. */
+  readonly inverse: Float64Array;
   /** 1 for every row of the series that was used, 0 for outliers. */
   readonly used: Uint8Array;
   /** The used samples, their residuals (observed less model) and the model's derivatives at them. */
@@ -41,7 +44,8 @@ export function fitTwist(series: Series, model: Model, start: Float64Array, prev
   let used = previous?.used ?? new Uint8Array(count).fill(1);
   let parameters = start;
   let level = previous?.level ?? startLevel(series, model, start);
-  for (let round = 0; ; round++) {
+  const floor = 1e-24 * rootMeanSquare(series.value) ** 2 + 1e-300;
+  for (let round = previous === undefined ? 0 : 1; ; round++) {
     const samples = pick(series, used);
     const scale = Math.sqrt(level);
     const fit = leastSquares(problemOf(model, samples, scale), parameters, {
@@ -53,13 +57,49 @@ export function fitTwist(series: Series, model: Model, start: Float64Array, prev
     });
     if (fit.status === 'undefined_start' || fit.covariance === null) return null;
     parameters = fit.parameters;
-    const result = judge(series, samples, model, fit, used, scale);
-    const next = withoutOutliers(series, result);
-    const settled = next.every((value, i) => value === used[i]) && Math.abs(Math.log(result.level / level)) < 0.05;
-    if (settled || round >= 5) return result;
+    const residual = fit.residual.map((value) => value * scale);
+    const next = withoutOutliers(series, model, parameters, residual);
+    const unchanged = next.every((value, i) => value === used[i]);
     used = next;
-    level = result.level;
+    if (round === 0) {
+      // A first look only: what is noise is asked once the curve fits.
+      level = Math.max(robustDeviation(residual) ** 2, floor);
+      continue;
+    }
+    const { basis, noise } = noiseOf(series, samples, model, fit, residual, scale);
+    const found = Math.max(noiseLevel(noise, parameters[OMEGA]! / (2 * Math.PI)), floor);
+    const settled = unchanged && Math.abs(Math.log(found / level)) < 0.05;
+    level = found;
+    if (!settled && round < 6) continue;
+    return {
+      model,
+      parameters,
+      covariance: parameterCovariance(fit, noise, model.priors, scale),
+      inverse: fit.covariance.map((value) => (value * found) / (scale * scale)),
+      used: usedRows(series, samples),
+      samples,
+      residual,
+      jacobian: fit.jacobian.map((column) => column.map((value) => -value * scale)),
+      basis,
+      noise,
+      level,
+      sumOfSquares: dot(residual, residual),
+      converged: fit.status === 'converged' || fit.status === 'stalled',
+    };
   }
+}
+
+/** The rows of the series whose samples took part. */
+function usedRows(series: Series, samples: Series): Uint8Array {
+  const rows = new Uint8Array(series.time_s.length);
+  let k = 0;
+  for (let i = 0; i < rows.length; i++) {
+    if (series.time_s[i] === samples.time_s[k]) {
+      rows[i] = 1;
+      k++;
+    }
+  }
+  return rows;
 }
 
 function startLevel(series: Series, model: Model, start: Float64Array): number {
@@ -69,41 +109,23 @@ function startLevel(series: Series, model: Model, start: Float64Array): number {
   return Math.max(rms * rms, Number.MIN_VALUE * 1e20);
 }
 
-function judge(
+function noiseOf(
   series: Series,
   samples: Series,
   model: Model,
   fit: LeastSquaresFit,
-  used: Uint8Array,
+  residual: Float64Array,
   scale: number,
-): TwistFit {
-  const parameters = fit.parameters;
-  const residual = fit.residual.map((value) => value * scale);
-  const jacobian = fit.jacobian.map((column) => column.map((value) => -value * scale));
-  const basis = basisOf(model, jacobian);
-  const noise = fitResidualNoise(
-    samples.time_s,
-    residual,
-    basis.q.filter((_, k) => !boundByPrior(fit, model.priors, basis.from[k]!)),
-    sampling(series).medianInterval_s,
-  );
-  const frequency = parameters[OMEGA]! / (2 * Math.PI);
-  // A perfect record has no noise: a floor far below any camera's keeps the sums finite.
-  const level = Math.max(noiseLevel(noise, frequency), 1e-24 * rootMeanSquare(series.value) ** 2, 1e-300);
-  return {
+): { basis: Basis; noise: ResidualNoise } {
+  const basis = basisOf(
     model,
-    parameters,
-    covariance: sandwich(fit, jacobian, noise, model.priors, scale),
-    used,
-    samples,
-    residual,
-    jacobian,
-    basis,
-    noise,
-    level,
-    sumOfSquares: residual.reduce((sum, value) => sum + value * value, 0),
-    converged: fit.status === 'converged' || fit.status === 'stalled',
-  };
+    fit.jacobian.map((column) => column.map((value) => -value * scale)),
+  );
+  // What the priors keep the curve from following is no noise: it is taken out to first order.
+  const rest = residual.slice();
+  for (const q of basis.q) subtract(rest, q, dot(rest, q));
+  const absorbed = basis.q.filter((_, k) => !boundByPrior(fit, model.priors, basis.from[k]!));
+  return { basis, noise: fitResidualNoise(samples.time_s, rest, absorbed, sampling(series).medianInterval_s) };
 }
 
 /** Orthonormal directions of the free parameters: those held by priors after the rest, omega last. */
@@ -120,41 +142,10 @@ function boundByPrior(fit: LeastSquaresFit, priors: readonly Prior[], parameter:
   return prior !== undefined && variance > 0.5 * prior.u ** 2;
 }
 
-/** C (J' R J / scale⁴ + P) C, C the fit's inverse of J'J / scale² + P, R the covariance of the residuals, P that of the priors' weights. */
-function sandwich(
-  fit: LeastSquaresFit,
-  jacobian: readonly Float64Array[],
-  noise: ResidualNoise,
-  priors: readonly Prior[],
-  scale: number,
-): Float64Array {
-  const size = fit.parameters.length;
-  const inverse = fit.covariance!;
-  const rows = noise.slot.length;
-  const weights = Array.from({ length: size }, (_, k) => {
-    const column = new Float64Array(rows);
-    for (let j = 0; j < size; j++) {
-      const c = inverse[k * size + j]! / (scale * scale);
-      if (c !== 0) for (let i = 0; i < rows; i++) column[i] = column[i]! + c * jacobian[j]![i]!;
-    }
-    return column;
-  });
-  const covariance = combinationCovariance(noise, weights);
-  for (const { parameter, u } of priors) {
-    for (let a = 0; a < size; a++) {
-      for (let b = 0; b < size; b++) {
-        const at = a * size + b;
-        covariance[at] = covariance[at]! + (inverse[a * size + parameter]! * inverse[b * size + parameter]!) / (u * u);
-      }
-    }
-  }
-  return covariance;
-}
-
-function withoutOutliers(series: Series, fit: TwistFit): Uint8Array {
+function withoutOutliers(series: Series, model: Model, p: Float64Array, residual: Float64Array): Uint8Array {
   const value = new Float64Array(series.time_s.length);
-  if (!evaluateModel(fit.model, fit.parameters, series.time_s, value, null)) return fit.used;
-  const limit = OUTLIER * robustDeviation(fit.residual);
+  if (!evaluateModel(model, p, series.time_s, value, null)) return new Uint8Array(value.length).fill(1);
+  const limit = OUTLIER * robustDeviation(residual);
   const next = new Uint8Array(value.length);
   let left = 0;
   for (let i = 0; i < value.length; i++) {
@@ -162,20 +153,4 @@ function withoutOutliers(series: Series, fit: TwistFit): Uint8Array {
     if (next[i] === 0) left++;
   }
   return left > MOST_OUTLIERS * value.length ? new Uint8Array(value.length).fill(1) : next;
-}
-
-/** Standard uncertainty of parameter `k` of a fit. */
-export function uncertaintyOf(fit: TwistFit, k: number): number {
-  return Math.sqrt(Math.max(0, fit.covariance[k * fit.parameters.length + k]!));
-}
-
-/** By how much chi-square falls when the drag is freed of its prior: the prior's pull is taken out of its estimate. */
-export function dragEvidence(fit: TwistFit): number {
-  const prior = fit.model.priors.find((p) => p.parameter === DRAG);
-  const u = uncertaintyOf(fit, DRAG);
-  if (prior === undefined || !(u > 0)) return 0;
-  const information = 1 / (u * u) - 1 / (prior.u * prior.u);
-  if (!(information > 0)) return 0;
-  const unpulled = fit.parameters[DRAG]! / (u * u) - prior.value / (prior.u * prior.u);
-  return (unpulled * unpulled) / information;
 }

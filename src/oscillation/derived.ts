@@ -1,0 +1,33 @@
+import type { Estimate } from '../numerics/estimate.ts';
+import { type Fitted, uncertaintyOf } from './parameter-covariance.ts';
+
+/** Value and standard uncertainty of a function of the parameters: derivatives over half a standard uncertainty to either side. */
+export function derived(fit: Fitted, dof: number, f: (p: Float64Array) => number): Estimate {
+  const { parameters, covariance } = fit;
+  const n = parameters.length;
+  const gradient = parameters.map((value, k) => {
+    const u = uncertaintyOf(fit, k);
+    if (u === 0) return 0;
+    const moved = parameters.slice();
+    moved[k] = value + u / 2;
+    const high = f(moved);
+    moved[k] = value - u / 2;
+    return (high - f(moved)) / u;
+  });
+  let variance = 0;
+  for (let a = 0; a < n; a++)
+    for (let b = 0; b < n; b++) variance += gradient[a]! * covariance[a * n + b]! * gradient[b]!;
+  return { value: f(parameters), u: Math.sqrt(Math.max(0, variance)), dof };
+}
+
+/** Adds the clock's relative uncertainty to a rate. */
+export function withClock(estimate: Estimate, u_time_scale: number): Estimate {
+  const clock = Math.abs(estimate.value) * u_time_scale;
+  const u = Math.hypot(estimate.u, clock);
+  // Welch-Satterthwaite with a clock known exactly enough (JCGM 100:2008 G.4).
+  return {
+    value: estimate.value,
+    u,
+    dof: estimate.u > 0 ? estimate.dof * (u / estimate.u) ** 4 : Number.POSITIVE_INFINITY,
+  };
+}
