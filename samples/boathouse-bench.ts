@@ -23,6 +23,9 @@ const SWEEP: readonly (readonly [
   ['s11', -0.24, 0.0001, 9, -9, 'falling', 'leads swapped'],
 ];
 
+// In two steps the strip leaves the bar swinging a little as well: metres along and across the coil axis.
+const SWINGS: Readonly<Record<string, readonly [number, number]>> = { s04: [0.0005, 0.0002], s06: [0.0003, -0.0004] };
+
 const steps: Step[] = SWEEP.map(([id, current_A, off_A, hold_s, amplitude_deg, sweep, note]) => ({
   id,
   current_A,
@@ -31,6 +34,7 @@ const steps: Step[] = SWEEP.map(([id, current_A, off_A, hold_s, amplitude_deg, s
   sweep,
   note,
   hold_s,
+  ...(id in SWINGS ? { swing_m: SWINGS[id]! } : {}),
   amplitude_deg,
   expected: 'measured',
 }));
@@ -119,8 +123,8 @@ export const boathouse: BenchPlan = {
     clock_Hz: 90000,
     start_s: 0,
     rotation_deg: 0,
-    quality: 25,
-    preset: 'slow',
+    quality: 23,
+    preset: 'medium',
     timeScale: 1,
     keyframeEvery: 300,
   },

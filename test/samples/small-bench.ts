@@ -22,6 +22,8 @@ export function smallBench(changes: Partial<BenchPlan> = {}): BenchPlan {
         gloss: 0,
         band_m: 0,
       },
+      // Straight above, so that the bar's sides are lit alike.
+      lamp: { ...boathouse.look.lamp, place_m: [0, 0, 0.6] },
       winding: null,
       cardRadius_m: 0,
       meter: null,
