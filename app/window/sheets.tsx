@@ -35,7 +35,7 @@ export function Sheets() {
           </button>
         ))}
       </div>
-      <div class="sheet" id="sheet" role="tabpanel" aria-labelledby={`tab-${open}`}>
+      <div key={open} class="sheet" id="sheet" role="tabpanel" aria-labelledby={`tab-${open}`}>
         <OpenSheet name={open} />
       </div>
     </section>

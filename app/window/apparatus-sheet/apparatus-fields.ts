@@ -35,8 +35,8 @@ export const COIL_FIELDS: Readonly<Record<CoilKind, readonly RigField[]>> = {
     { key: 'turns_per_coil', label: 'Turns of each coil', unit: '', factor: 1 },
     mm('radius_m', 'Radius'),
     mm('spacing_m', 'Spacing of the coils'),
-    { key: 'turns_second_coil', label: 'Turns of the second coil, if others', unit: '', factor: 1, optional: true },
-    mm('radius_second_coil_m', 'Radius of the second coil, if another', true),
+    { key: 'turns_second_coil', label: 'Second coil’s turns, if others', unit: '', factor: 1, optional: true },
+    mm('radius_second_coil_m', 'Second coil’s radius, if another', true),
   ],
   constant: [{ key: 'constant_T_per_A', label: 'Coil constant', unit: 'µT/A', factor: 1e6 }],
 };

@@ -35,7 +35,7 @@ export function PlacePart({ place }: { place: Place | undefined }) {
   return (
     <div class="rig-part place">
       <NumberField
-        caption="Latitude, north"
+        caption="Latitude N"
         label="Latitude"
         unit="°"
         value={draft.latitude_deg}
@@ -45,7 +45,7 @@ export function PlacePart({ place }: { place: Place | undefined }) {
         onValue={(latitude_deg) => set({ latitude_deg })}
       />
       <NumberField
-        caption="Longitude, east"
+        caption="Longitude E"
         label="Longitude"
         unit="°"
         value={draft.longitude_deg}

@@ -62,7 +62,7 @@ export function BudgetPart({ reduction }: { reduction: Results['reduction'] }) {
                 <td class="share" aria-hidden="true">
                   <i style={{ width: `${(Math.abs(row.contribution) / most) * 100}%` }} />
                 </td>
-                <td class="value">{dofText(row.dof)}</td>
+                <td class="value">{manyText(row.dof)}</td>
               </tr>
             ))}
           </tbody>
@@ -78,4 +78,9 @@ export function BudgetPart({ reduction }: { reduction: Results['reduction'] }) {
       </p>
     </details>
   );
+}
+
+/** Degrees of freedom; above ten thousand the number says nothing more. */
+function manyText(dof: number | null): string {
+  return dof !== null && dof > 1e4 ? '> 10⁴' : dofText(dof);
 }

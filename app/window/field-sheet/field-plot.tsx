@@ -7,11 +7,11 @@ import { entryText, quantityText } from '../numbers/quantity-text.ts';
 import { PlotAxes } from '../plots/plot-axes.tsx';
 import { segment, selectSegment } from '../state/selection.ts';
 
-const HEIGHT = 300;
+const HEIGHT = 264;
 const LEFT = 58;
-const SPLIT = 196;
+const SPLIT = 164;
 const BOTTOM = HEIGHT - 36;
-const LOWER_TOP = 212;
+const LOWER_TOP = 178;
 
 /** f0² against current with the fitted curve, and the residuals below. A point is a button that selects its segment. */
 export function FieldPlot({ results }: { results: Results }) {

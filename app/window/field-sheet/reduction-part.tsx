@@ -1,6 +1,7 @@
 import { quantities } from '../../../src/report/quantities.ts';
 import type { Results } from '../../contract.ts';
 import { prefixed, quantityText } from '../numbers/quantity-text.ts';
+import { LoweredSymbol } from '../parts/lowered-symbol.tsx';
 
 type Reduction = Results['reduction'];
 
@@ -24,7 +25,7 @@ export function ReductionPart({ reduction }: { reduction: Reduction }) {
                 <tr key={q.name} title={q.description}>
                   <th scope="row">
                     <span class="symbol">
-                      <Symbol of={q.symbol} />
+                      <LoweredSymbol of={q.symbol} />
                     </span>{' '}
                     <span class="quantity-name">{q.title}</span>
                   </th>
@@ -65,10 +66,4 @@ export function shownUnit(
     return { unit: shown, factor };
   }
   return { unit, factor: 1 };
-}
-
-/** A symbol in which `_` stands before what is lowered. */
-export function Symbol({ of: symbol }: { of: string }) {
-  const pieces = symbol.split(/(_.)/);
-  return <>{pieces.map((piece, i) => (piece.startsWith('_') ? <sub key={i}>{piece.slice(1)}</sub> : piece))}</>;
 }

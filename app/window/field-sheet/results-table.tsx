@@ -1,5 +1,5 @@
 import type { SegmentResult, SessionSegment } from '../../contract.ts';
-import { entryText, fixedText, quantityText } from '../numbers/quantity-text.ts';
+import { commonDecimals, fixedText, quantityText } from '../numbers/quantity-text.ts';
 import { STANDING_WORDS, StandingMark } from '../parts/standing-mark.tsx';
 import { showAround } from '../state/board.ts';
 import { session } from '../state/document.ts';
@@ -11,6 +11,8 @@ const SWEEP_SIGNS = { rising: '▲', falling: '▼' } as const;
 /** One row per segment; a row selects its segment, Enter opens its sheet. */
 export function ResultsTable() {
   const rows = session.value?.segments ?? [];
+  const decimals = commonDecimals(rows.map((s) => s.current_A));
+  const uDecimals = commonDecimals(rows.map((s) => s.u_current_A ?? null));
   if (rows.length === 0) return <p class="quiet">No segment has been marked yet.</p>;
   return (
     <div class="table-scroll">
@@ -32,7 +34,7 @@ export function ResultsTable() {
             <th scope="col" colSpan={2} class="number">
               γ / s⁻¹
             </th>
-            <th scope="col" class="number">
+            <th scope="col" class="number less">
               Q
             </th>
             <th scope="col" colSpan={2} class="number">
@@ -45,7 +47,7 @@ export function ResultsTable() {
         </thead>
         <tbody onKeyDown={walk}>
           {rows.map((s) => (
-            <Row key={s.id} of={s} result={resultOf.value.get(s.id)} />
+            <Row key={s.id} of={s} result={resultOf.value.get(s.id)} decimals={[decimals, uDecimals]} />
           ))}
         </tbody>
       </table>
@@ -53,9 +55,16 @@ export function ResultsTable() {
   );
 }
 
-function Row({ of: s, result }: { of: SessionSegment; result: SegmentResult | undefined }) {
+interface RowProps {
+  readonly of: SessionSegment;
+  readonly result: SegmentResult | undefined;
+  /** Decimals of the currents and of their uncertainties. */
+  readonly decimals: readonly [number, number];
+}
+
+function Row({ of: s, result, decimals }: RowProps) {
   const waiting = waitingFor.value.has(s.id);
-  const standing = standingOf(result, s.left_out !== undefined, waiting);
+  const standing = standingOf(s);
   const chosen = segment.value?.id === s.id;
   const f0 = quantityText(result?.f0_Hz, result?.u_f0_Hz, 'Hz');
   const gamma = quantityText(result?.gamma_per_s, result?.u_gamma_per_s, '1/s');
@@ -83,14 +92,14 @@ function Row({ of: s, result }: { of: SessionSegment; result: SegmentResult | un
         <StandingMark standing={standing} />
       </td>
       <th scope="row">{s.id}</th>
-      <td class="value">{s.current_A === null ? '?' : entryText(s.current_A)}</td>
-      <td class="u">{s.u_current_A ? `± ${entryText(s.u_current_A)}` : ''}</td>
+      <td class="value">{s.current_A === null ? '?' : fixedText(s.current_A, decimals[0])}</td>
+      <td class="u">{s.u_current_A ? `± ${fixedText(s.u_current_A, decimals[1])}` : ''}</td>
       <td class="sweep">{s.sweep ? <span title={`${s.sweep} step`}>{SWEEP_SIGNS[s.sweep]}</span> : null}</td>
       <td class="value">{f0.value}</td>
       <td class="u">{f0.u}</td>
       <td class="value">{gamma.value}</td>
       <td class="u">{gamma.u}</td>
-      <td class="value">
+      <td class="value less">
         {result?.q_factor == null ? '–' : quantityText(result.q_factor, result.u_q_factor, '').value}
       </td>
       <td class="value">{rest.value}</td>

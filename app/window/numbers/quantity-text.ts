@@ -76,3 +76,17 @@ export function durationText(seconds: number): string {
   if (whole < 60) return `${whole} s`;
   return whole % 60 === 0 ? `${whole / 60} min` : `${Math.floor(whole / 60)} min ${whole % 60} s`;
 }
+
+/** The decimals that show every one of the numbers as it was typed, so that they align in a column; six at most. */
+export function commonDecimals(values: readonly (number | null)[]): number {
+  return values.reduce<number>((most, value) => {
+    const [, exponent] = value === null ? [] : String(Number(value.toPrecision(12))).split('e');
+    const decimals =
+      value === null
+        ? 0
+        : (String(Number(value.toPrecision(12)))
+            .split('e')[0]
+            ?.split('.')[1]?.length ?? 0);
+    return Math.min(6, Math.max(most, decimals - Number(exponent ?? 0)));
+  }, 0);
+}

@@ -1,7 +1,8 @@
 import { quantityText } from '../numbers/quantity-text.ts';
+import { LoweredSymbol } from './lowered-symbol.tsx';
 
 interface QuantityRowProps {
-  /** Symbol or short name, e.g. f₀. */
+  /** Symbol or short name, e.g. f_0; `_` stands before what is lowered. */
   readonly symbol: string;
   /** What it is, in words. */
   readonly name: string;
@@ -17,7 +18,10 @@ export function QuantityRow({ symbol, name, value, u, unit, factor = 1 }: Quanti
   return (
     <tr>
       <th scope="row">
-        <span class="symbol">{symbol}</span> <span class="quantity-name">{name}</span>
+        <span class="symbol">
+          <LoweredSymbol of={symbol} />
+        </span>{' '}
+        <span class="quantity-name">{name}</span>
       </th>
       <td class="value">{text.value}</td>
       <td class="u">{text.u}</td>

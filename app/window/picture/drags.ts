@@ -191,8 +191,7 @@ function viewDrag(start: SessionView, grip: ViewGrip, from: Point): Drag {
     },
     end(at) {
       viewDraft.value = null;
-      if (at.x !== from.x || at.y !== from.y)
-        edit(LABELS[grip.kind], (s) => replaceView(s, shape(at)));
+      if (at.x !== from.x || at.y !== from.y) edit(LABELS[grip.kind], (s) => replaceView(s, shape(at)));
     },
     giveUp() {
       viewDraft.value = null;

@@ -1,8 +1,8 @@
 import { useEffect, useRef } from 'preact/hooks';
 import { viewDraft } from '../state/bar.ts';
 import { drawing, panel, pictureSize, zoom, zoomNow } from '../state/picture-tools.ts';
-import { shown, wantedWidth_px } from '../state/pictures.ts';
-import { recording, view } from '../state/selection.ts';
+import { playing, shown, wantedWidth_px } from '../state/pictures.ts';
+import { frame, recording, view } from '../state/selection.ts';
 import { BarOutline } from './bar-outline.tsx';
 import { type Drag, dragFrom, type Grip, gripAt } from './drags.ts';
 import { LensFrame } from './lens-frame.tsx';
@@ -102,6 +102,9 @@ export function PictureStage() {
         role="img"
         aria-label={picked ? `Frame ${picked.index} at ${picked.time_s.toFixed(3)} s` : 'No frame yet'}
       />
+      {!playing.value && frame.value !== null && picked?.index !== frame.value ? (
+        <p class="reading">reading frame {frame.value} …</p>
+      ) : null}
       <svg class="overlay" width={size.width} height={size.height}>
         <RegionFrame view={viewDraft.value ?? view.value} />
         <SideGuides view={viewDraft.value ?? view.value} />

@@ -33,7 +33,7 @@ export function FitChart({ curves, id }: { curves: FitCurves; id: string }) {
     <>
       <Chart
         label={`Segment ${id}: angle of the bar against time with the fit`}
-        height={148}
+        height={132}
         data={upper}
         of={`${id} ${unit}`}
         options={() => {
@@ -53,7 +53,7 @@ export function FitChart({ curves, id }: { curves: FitCurves; id: string }) {
       />
       <Chart
         label={`Segment ${id}: residuals against time`}
-        height={88}
+        height={84}
         data={lower}
         of={`${id} ${unit} residual`}
         options={() => {
@@ -85,7 +85,7 @@ export function SpectrumChart({ curves, id }: { curves: FitCurves; id: string })
   return (
     <Chart
       label={`Segment ${id}: amplitude spectrum of the angle and of the residuals`}
-      height={112}
+      height={108}
       data={data}
       of={`${id} ${unit} spectrum`}
       options={() => {

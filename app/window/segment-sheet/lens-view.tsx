@@ -49,7 +49,13 @@ export function LensView({ of: s }: { of: SessionSegment }) {
   return (
     <figure class="lens-view">
       <canvas ref={canvas} role="img" aria-label={`Lens on the picture at the start of ${s.id}`} />
-      <figcaption>{problem ?? `lens at ${s.start_s.toFixed(2)} s; drag its frame on the picture`}</figcaption>
+      <figcaption>
+        {problem ?? (
+          <>
+            <b>Lens</b> on the picture at {s.start_s.toFixed(2)} s. Drag its frame to the meter to read the current.
+          </>
+        )}
+      </figcaption>
     </figure>
   );
 }

@@ -51,11 +51,11 @@ export function NumbersTable({ of: n, caption }: { of: SegmentNumbers; caption: 
     <table class="numbers">
       <caption class="unseen">{caption}</caption>
       <tbody>
-        <QuantityRow symbol="f₀" name="undamped, small swing" value={n.f0[0]} u={n.f0[1]} unit="Hz" />
+        <QuantityRow symbol="f_0" name="undamped, small swing" value={n.f0[0]} u={n.f0[1]} unit="Hz" />
         <QuantityRow symbol="f_d" name="as observed" value={n.fd[0]} u={n.fd[1]} unit="Hz" />
         <QuantityRow symbol="γ" name="damping" value={n.gamma[0]} u={n.gamma[1]} unit="1/s" />
         <QuantityRow symbol="Q" name="quality factor" value={n.q[0]} u={n.q[1]} unit="" />
-        <QuantityRow symbol="θₑ" name="rest direction" value={n.rest[0]} u={n.rest[1]} unit={n.unit} />
+        <QuantityRow symbol="θ_e" name="rest direction" value={n.rest[0]} u={n.rest[1]} unit={n.unit} />
         <tr>
           <th scope="row">
             <span class="symbol">a</span> <span class="quantity-name">amplitude, start to end</span>

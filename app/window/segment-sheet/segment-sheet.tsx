@@ -5,7 +5,7 @@ import { Icon } from '../parts/icons.tsx';
 import { StandingMark } from '../parts/standing-mark.tsx';
 import { run } from '../state/command-table.ts';
 import { lensOpen } from '../state/picture-tools.ts';
-import { curves, preview, resultOf, resultsState, standingOf, waitingFor } from '../state/results.ts';
+import { curves, preview, problemOf, resultOf, resultsState, standingOf, waitingFor } from '../state/results.ts';
 import { segment, segments, view } from '../state/selection.ts';
 import { FitChart, SpectrumChart } from './fit-charts.tsx';
 import { LensView } from './lens-view.tsx';
@@ -46,7 +46,7 @@ function NoSegment() {
 
 function Heading({ of: s }: { of: SessionSegment }) {
   const place = segments.value.findIndex((one) => one.id === s.id);
-  const standing = standingOf(resultOf.value.get(s.id), s.left_out !== undefined, waitingFor.value.has(s.id));
+  const standing = standingOf(s);
   return (
     <header class="sheet-head">
       <h2>Segment {s.id}</h2>
@@ -128,6 +128,9 @@ function Measured({ of: s }: { of: SessionSegment }) {
 }
 
 function Waiting({ id }: { id: string }) {
+  const problem = problemOf.value.get(id);
+  if (problem !== undefined)
+    return <CheckList checks={[{ code: 'problem', severity: 'fault', message: problem }]} none="" />;
   const measuring = resultsState.value?.measuring;
   const share = measuring?.segment === id ? measuring.share : null;
   return (

@@ -1,9 +1,9 @@
-import { effect } from '@preact/signals';
+import { batch, effect } from '@preact/signals';
 import type { HostClient } from '../../contract/client.ts';
-import { CONTRACT_VERSION } from '../../contract.ts';
+import { CONTRACT_VERSION, type DocumentState } from '../../contract.ts';
 import { keepBar } from './bar.ts';
 import { keepMenuState, run } from './command-table.ts';
-import { documentState, readDocument, takeDocument } from './document.ts';
+import { documentState, takeDocument } from './document.ts';
 import { openRequested } from './files.ts';
 import { forgetFilm, takeFilmPicture } from './film-strip.ts';
 import { resumeFollowing, takeJobEnd, takeProgress } from './following.ts';
@@ -19,7 +19,7 @@ import { forgetTraces, readOverview, takePoses, traces } from './traces.ts';
 /** Ties the window's state to a host: what it pushes goes to where it is kept. */
 export async function startWith(client: HostClient): Promise<void> {
   useHost(client);
-  client.on('document', takeDocument);
+  client.on('document', receive);
   client.on('results', takeResults);
   client.on('progress', takeProgress);
   client.on('poses', ({ view, from_s, to_s, trace }) => takePoses(view, from_s, to_s, trace));
@@ -35,34 +35,44 @@ export async function startWith(client: HostClient): Promise<void> {
   keepPicture();
   keepMenuState();
   keepBar();
-  watchDocument();
+  keepOverviews();
   hello.value = await ask('hello', { contract: CONTRACT_VERSION });
-  await readDocument();
+  const state = await ask('getDocument', {});
+  if (state) receive(state);
   const results = await ask('results', {});
   if (results) takeResults(results);
   await resumeFollowing();
   if (documentState.value?.restored) tell('The session was brought back as it was before the program ended.');
 }
 
-/** Forgets what belongs to one document when another is opened. */
-function watchDocument(): void {
-  let known: string | null = null;
-  effect(() => {
-    const state = documentState.value;
-    if (state === null || state.key === known) return;
+let known: string | null = null;
+
+/** Takes the document; where it is another one, first forgets what belonged to the one before. */
+function receive(state: DocumentState): void {
+  batch(() => {
+    const another = state.key !== known;
     known = state.key;
-    const now = state.session;
-    forgetSelection();
-    forgetTraces();
-    forgetPicture();
-    forgetFrameTimes();
-    forgetFilm();
-    dropPreview();
-    curves.value = new Map();
-    sheet.value = now && now.segments.length > 0 ? 'segment' : 'view';
-    const first = now?.segments[0];
+    if (another) forget();
+    takeDocument(state);
+    if (!another) return;
+    const first = state.session?.segments[0];
+    sheet.value = first ? 'segment' : 'view';
     if (first) selectSegment(first.id);
   });
+}
+
+function forget(): void {
+  forgetSelection();
+  forgetTraces();
+  forgetPicture();
+  forgetFrameTimes();
+  forgetFilm();
+  dropPreview();
+  curves.value = new Map();
+}
+
+/** Reads what has been followed of each view that comes to sight. */
+function keepOverviews(): void {
   effect(() => {
     for (const { id } of views.value) if (!traces.peek().has(id)) void readOverview(id);
   });

@@ -1,19 +1,20 @@
 import { effect, signal } from '@preact/signals';
-import { recordings, session } from './document.ts';
+import { documentState, recordings, session } from './document.ts';
 import { host } from './host.ts';
 
 /** Presentation times of the frames of each recording, as far as they have been read. */
 export const timesOf = signal<ReadonlyMap<string, Float64Array>>(new Map());
 
-/** What each recording's times were read for: its file and its time scale. */
+/** What each recording's times were read for: document, file and time scale. */
 const readFor = new Map<string, string>();
 
 /** Reads frame times of recordings as they become ready, and again where the time scale was edited. */
 export function keepFrameTimes(): () => void {
   return effect(() => {
-    const scales = new Map(session.value?.recordings.map((r) => [r.id, `${r.file} ${r.time_scale ?? 1}`]));
+    const key = documentState.value?.key ?? '';
+    const marks = new Map(session.value?.recordings.map((r) => [r.id, `${key} ${r.file} ${r.time_scale ?? 1}`]));
     for (const { id, state } of recordings.value) {
-      const mark = scales.get(id);
+      const mark = marks.get(id);
       if (state !== 'ready' || mark === undefined || readFor.get(id) === mark) continue;
       readFor.set(id, mark);
       void read(id, mark);
@@ -30,8 +31,7 @@ async function read(id: string, mark: string): Promise<void> {
   }
 }
 
-/** Forgets all frame times: another document is open. */
+/** Forgets the frame times read so far: another document is open. */
 export function forgetFrameTimes(): void {
-  readFor.clear();
   timesOf.value = new Map();
 }

@@ -2,7 +2,7 @@ import { computed, signal } from '@preact/signals';
 import { type Sheet, sheet } from './selection.ts';
 
 /** Share of the width that each sheet takes until the user drags its edge: the field sheet's table needs most. */
-const chosen = signal<Readonly<Record<Sheet, number>>>({ view: 0.34, segment: 0.34, field: 0.5, apparatus: 0.34 });
+const chosen = signal<Readonly<Record<Sheet, number>>>({ view: 0.34, segment: 0.34, field: 0.52, apparatus: 0.34 });
 
 /** Share of the width that the open sheet takes, 0 to 1. */
 export const sheetShare = computed(() => chosen.value[sheet.value]);

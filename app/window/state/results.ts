@@ -1,5 +1,5 @@
 import { computed, signal } from '@preact/signals';
-import type { FitCurves, PreviewFit, Results, ResultsState, SegmentResult } from '../../contract.ts';
+import type { FitCurves, PreviewFit, Results, ResultsState, SegmentResult, SessionSegment } from '../../contract.ts';
 import { host } from './host.ts';
 import { segment } from './selection.ts';
 
@@ -18,15 +18,29 @@ export const reduction = computed<Results['reduction'] | null>(() => resultsStat
 export type Standing = 'measured' | 'doubtful' | 'unmeasured' | 'left-out' | 'waiting';
 
 /** How a segment stands, from its result and the user's own decision. */
-export function standingOf(result: SegmentResult | undefined, leftOut: boolean, waiting: boolean): Standing {
-  if (leftOut) return 'left-out';
-  if (waiting || !result) return 'waiting';
-  return result.status;
+function standingFrom(
+  s: SessionSegment,
+  result: SegmentResult | undefined,
+  waiting: boolean,
+  problem: boolean,
+): Standing {
+  if (s.left_out !== undefined) return 'left-out';
+  if (problem) return 'unmeasured';
+  return waiting || !result ? 'waiting' : result.status;
 }
+
+/** How a segment of the session stands now. */
+export const standingOf = (s: SessionSegment): Standing =>
+  standingFrom(s, resultOf.value.get(s.id), waitingFor.value.has(s.id), problemOf.value.has(s.id));
 
 /** Names of the segments whose numbers are still on their way. */
 export const waitingFor = computed<ReadonlySet<string>>(
   () => new Set([...(resultsState.value?.pending ?? []), ...(resultsState.value?.stale ?? [])]),
+);
+
+/** Why a segment can't be measured as the session stands, by its name. */
+export const problemOf = computed<ReadonlyMap<string, string>>(
+  () => new Map((resultsState.value?.problems ?? []).map(({ segment: id, message }) => [id, message])),
 );
 
 /** Curves of measured segments, as far as they have been fetched. */

@@ -4,7 +4,7 @@ import { STANDING_WORDS, StandingMark } from '../parts/standing-mark.tsx';
 import { nearestIndex } from '../plots/extremes.ts';
 import { changeSegment, edgeWithin } from '../session-edits/segment-edits.ts';
 import { edit, session } from '../state/document.ts';
-import { askPreview, resultOf, standingOf, waitingFor } from '../state/results.ts';
+import { askPreview, standingOf } from '../state/results.ts';
 import { frameTimes, segment, segments, selectSegment, sheet, whole_s } from '../state/selection.ts';
 import type { EdgeDraft } from './board-drag.ts';
 import { type TimeSpan, toPixel } from './time-span.ts';
@@ -33,7 +33,7 @@ export function SegmentLane({ width, span, draft }: SegmentLaneProps) {
 
 function Bracket({ of: s, x0, x1 }: { of: SessionSegment; x0: number; x1: number }) {
   const chosen = segment.value?.id === s.id;
-  const standing = standingOf(resultOf.value.get(s.id), s.left_out !== undefined, waitingFor.value.has(s.id));
+  const standing = standingOf(s);
   const current = s.current_A === null ? 'no current yet' : `${entryText(s.current_A)} A`;
   const room = x1 - x0;
   const name = `Segment ${s.id}, ${fixedText(s.start_s, 2)} to ${fixedText(s.end_s, 2)} s, ${current}, ${STANDING_WORDS[standing]}`;

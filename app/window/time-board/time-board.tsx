@@ -15,9 +15,22 @@ import { SegmentLane } from './segment-lane.tsx';
 import { panSpan, toPixel, toTime, zoomSpan } from './time-span.ts';
 import { laneCurves, TraceLane } from './trace-lane.tsx';
 
-const FILM_PX = 44;
-const CURRENT_PX = 46;
-const FIXED_PX = 22 + FILM_PX + CURRENT_PX + 26;
+const RULER_PX = 22;
+const SEGMENTS_PX = 26;
+
+/** Heights of the lanes in CSS pixels. */
+interface LaneHeights {
+  readonly film: number;
+  readonly trace: number;
+  readonly current: number;
+}
+
+/** The angle gets most of the room; film and current give way first where the board is low. */
+function laneHeights(height: number): LaneHeights {
+  const film = Math.round(Math.min(44, Math.max(24, height * 0.18)));
+  const current = Math.round(Math.min(48, Math.max(32, height * 0.19)));
+  return { film, current, trace: Math.max(40, height - RULER_PX - SEGMENTS_PX - film - current) };
+}
 
 /** All lanes on one time axis: ruler, film strip, angle, current, segments. */
 export function TimeBoard() {
@@ -38,7 +51,7 @@ export function TimeBoard() {
 
   const { width, height } = size.value;
   const now = span.value;
-  const trace_px = Math.max(40, height - FIXED_PX);
+  const heights = laneHeights(height);
   const x_of = (event: PointerEvent | WheelEvent) => event.clientX - (lanes.current?.getBoundingClientRect().left ?? 0);
 
   function press(event: PointerEvent): void {
@@ -53,7 +66,7 @@ export function TimeBoard() {
 
   return (
     <section class="board" aria-label="Time board">
-      <Gutter trace_px={trace_px} />
+      <Gutter heights={heights} />
       {/* biome-ignore lint/a11y/useAriaPropsSupportedByRole: the lanes are one surface for pointer and keyboard. */}
       <div
         ref={lanes}
@@ -84,15 +97,15 @@ export function TimeBoard() {
       >
         <div data-lane="upper">
           <Ruler width={width} />
-          <FilmLane width={width} height={FILM_PX} span={now} />
+          <FilmLane width={width} height={heights.film} span={now} />
         </div>
-        <TraceLane width={width} height={trace_px} span={now} />
-        <CurrentLane width={width} height={CURRENT_PX} span={now} />
+        <TraceLane width={width} height={heights.trace} span={now} />
+        <CurrentLane width={width} height={heights.current} span={now} />
         <SegmentLane width={width} span={now} draft={draft.value.edge} />
-        <Bands width={width} draft={draft.value} />
-        <Marks width={width} />
+        <Bands width={width} film={heights.film} draft={draft.value} />
+        <Marks width={width} film={heights.film} />
         {laneCurves().curves.length === 0 && recording.value ? (
-          <p class="lane-word" style={{ top: `${22 + FILM_PX + trace_px / 2 - 10}px` }}>
+          <p class="lane-word" style={{ top: `${RULER_PX + heights.film + heights.trace / 2 - 10}px` }}>
             {view.value
               ? 'Not followed yet: press F to follow the bar'
               : 'The angle of the bar appears here once a region is drawn'}
@@ -105,7 +118,9 @@ export function TimeBoard() {
 }
 
 /** Names and scales of the lanes. */
-function Gutter({ trace_px }: { trace_px: number }) {
+function Gutter({ heights }: { heights: LaneHeights }) {
+  const trace_px = heights.trace;
+  const current_px = heights.current;
   const lane = laneCurves();
   const range = curveRange(lane.curves, span.value);
   const ticks = niceTicks(range[0], range[1], Math.max(2, trace_px / 28));
@@ -115,7 +130,7 @@ function Gutter({ trace_px }: { trace_px: number }) {
       <div class="gutter-lane" style={{ height: '22px' }}>
         <span>time</span>
       </div>
-      <div class="gutter-lane" style={{ height: `${FILM_PX}px` }}>
+      <div class="gutter-lane" style={{ height: `${heights.film}px` }}>
         <span>film</span>
       </div>
       <div class="gutter-lane" style={{ height: `${trace_px}px` }}>
@@ -128,11 +143,11 @@ function Gutter({ trace_px }: { trace_px: number }) {
             ))
           : null}
       </div>
-      <div class="gutter-lane" style={{ height: `${CURRENT_PX}px` }}>
+      <div class="gutter-lane" style={{ height: `${current_px}px` }}>
         <span>current / A</span>
         {segments.value.length > 0
-          ? currentTicks(CURRENT_PX).map(({ value, text }) => (
-              <i key={value} style={{ top: `${currentPlace(value, CURRENT_PX)}px` }}>
+          ? currentTicks(current_px).map(({ value, text }) => (
+              <i key={value} style={{ top: `${currentPlace(value, current_px)}px` }}>
                 {text}
               </i>
             ))
@@ -168,17 +183,25 @@ function Ruler({ width }: { width: number }) {
 }
 
 /** Segments as bands behind all lanes, and the stretch being marked. */
-function Bands({ width, draft }: { width: number; draft: BoardDraft }) {
+function Bands({ width, film, draft }: { width: number; film: number; draft: BoardDraft }) {
   const band = (start_s: number, end_s: number) => ({
     left: `${toPixel(start_s, span.value, width)}px`,
     width: `${Math.max(1, toPixel(end_s, span.value, width) - toPixel(start_s, span.value, width))}px`,
+    top: `${film}px`,
   });
   return (
     <div class="bands" aria-hidden="true">
       {segments.value.map((s) => {
         const at = draft.edge?.segment === s.id ? draft.edge : s;
         const chosen = segment.value?.id === s.id;
-        return <div key={s.id} class="band" data-chosen={chosen || undefined} style={band(at.start_s, at.end_s)} />;
+        return (
+          <div
+            key={s.id}
+            class="band"
+            data-chosen={chosen || undefined}
+            style={chosen ? { ...band(at.start_s, at.end_s), top: '0' } : band(at.start_s, at.end_s)}
+          />
+        );
       })}
       {draft.stretch ? (
         <div class="band marking" style={band(draft.stretch.start_s, draft.stretch.end_s)}>
@@ -190,7 +213,7 @@ function Bands({ width, draft }: { width: number; draft: BoardDraft }) {
 }
 
 /** The cursor, and where a segment begun with B starts. */
-function Marks({ width }: { width: number }) {
+function Marks({ width, film }: { width: number; film: number }) {
   const x = toPixel(cursor_s.value, span.value, width);
   const start_s = markStart.value;
   return (
@@ -203,6 +226,7 @@ function Marks({ width }: { width: number }) {
             style={{
               left: `${toPixel(Math.min(start_s, cursor_s.value), span.value, width)}px`,
               width: `${Math.abs(x - toPixel(start_s, span.value, width))}px`,
+              top: `${RULER_PX + film}px`,
             }}
           />
         </>
