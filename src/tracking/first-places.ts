@@ -63,7 +63,8 @@ export function firstPlaces(pictures: readonly Picture<Uint8Array>[], motion: Mo
       const place = { ...reference.place, gain: motion.gain[t]!, offset: motion.offset[t]! };
       if (t !== middle) {
         place.turn = searchTurn(picture, nothing, few, place, range).turn;
-        searchShift(picture, nothing, few, place, { reach: 0.15 * points.reach_px, step: 1.5, tolerance: 3 });
+        const reach = 0.15 * points.reach_px;
+        searchShift(picture, nothing, few, place, { across: reach, along: reach, step: 1.5, tolerance: 3 });
         const near = { ...range, from: place.turn - 3 * step, to: place.turn + 3 * step };
         place.turn = searchTurn(picture, nothing, few, place, near).turn;
       }

@@ -7,14 +7,14 @@ import { register } from './register.ts';
 import { searchShift, searchTurn } from './search.ts';
 import type { Refusal } from './trace.ts';
 
-/** What one frame gave. Angle in radians, anticlockwise as seen; middle in pixels of the region. */
+/** What one frame gave. Angle in radians, anticlockwise as seen; middle in pixels of the region; `sd` of the angle, of an end of its place. */
 export type Fix =
   | {
       readonly ok: true;
       readonly angle: number;
       readonly x_px: number;
       readonly y_px: number;
-      readonly sd_rad: number;
+      readonly sd: number;
     }
   | { readonly ok: false; readonly reason: Refusal };
 
@@ -43,16 +43,6 @@ export class Follower {
     const { background, points, usualShare, usualMisfit } = this.#model;
     const place = this.#look(picture, time_s);
     const agreement = register(picture, background, points, place, [4, 3, 3]);
-    (this as unknown as { debug: string }).debug =
-      agreement === null
-        ? ''
-        : agreement.share.toFixed(3) +
-          ' ' +
-          agreement.misfit.toFixed(2) +
-          ' ' +
-          agreement.outside.toFixed(2) +
-          ' ' +
-          agreement.lastStep_px.toFixed(3);
     let reason: Refusal | null = null;
     if (agreement === null) reason = 'no_fit';
     else if (agreement.outside > 0.3) reason = 'left_region';
@@ -84,12 +74,13 @@ export class Follower {
       angle: -(place.turn + axis_rad),
       x_px: place.x_px + c * u - s * v,
       y_px: place.y_px + points.squash * (s * u + c * v),
-      sd_rad: agreement.sd_rad * Math.sqrt(agreement.misfit),
+      sd: agreement.sd * Math.sqrt(agreement.misfit),
     };
   }
 
   /** A placement near the bar's: looked for about the expected place, or everywhere after a gap. */
   #look(picture: Picture<Uint8Array>, time_s: number): Placement {
+    if (!this.#scouts.turns) return this.#lookSideways(picture, time_s);
     const { background, leastTurn, mostTurn } = this.#model;
     const scouts = this.#scouts;
     const step = 2 / scouts.reach_px;
@@ -98,12 +89,13 @@ export class Follower {
     if (this.#time_s === null || this.#misses > 0) {
       const wide = Math.max(0.1, swing);
       const range = { from: leastTurn - wide, to: mostTurn + wide, step, tolerance: 6 };
-      const shift = { reach: 0.1 * scouts.reach_px, step: 1.5, tolerance: 6 };
+      const reach = 0.1 * scouts.reach_px;
+      const shift = { across: reach, along: reach, step: 1.5, tolerance: 6 };
       place.turn = searchTurn(picture, background, scouts, place, range).turn;
       searchShift(picture, background, scouts, place, shift);
       const near = { ...range, from: place.turn - 4 * step, to: place.turn + 4 * step };
       place.turn = searchTurn(picture, background, scouts, place, near).turn;
-      searchShift(picture, background, scouts, place, { ...shift, reach: 4 });
+      searchShift(picture, background, scouts, place, { ...shift, across: 4, along: 4 });
       return place;
     }
     const ahead_s = time_s - this.#time_s;
@@ -114,6 +106,23 @@ export class Follower {
     const spread = Math.max(2 * step, Math.abs(turning));
     const range = { from: place.turn - spread, to: place.turn + spread, step, tolerance: 6 };
     place.turn = searchTurn(picture, background, scouts, place, range).turn;
+    return place;
+  }
+
+  /** The same for a body that only shifts. */
+  #lookSideways(picture: Picture<Uint8Array>, time_s: number): Placement {
+    const { background, shift_px } = this.#model;
+    const place = { ...this.#last };
+    if (this.#time_s === null || this.#misses > 0) {
+      const wide = { across: 3, along: 2 * shift_px + 6, step: 1.5, tolerance: 6 };
+      searchShift(picture, background, this.#scouts, place, wide);
+      return place;
+    }
+    const ahead_s = time_s - this.#time_s;
+    const ahead_px = clamp(this.#rateX * ahead_s, shift_px);
+    place.x_px += ahead_px;
+    const near = { across: 0, along: Math.max(3, Math.abs(ahead_px)), step: 1.5, tolerance: 6 };
+    searchShift(picture, background, this.#scouts, place, near);
     return place;
   }
 }

@@ -20,8 +20,6 @@ import { shrink } from './vision.ts';
 export interface BarModel {
   readonly background: Picture;
   readonly points: BarPoints;
-  readonly layers: BarLayers;
-  readonly outline: Outline;
   /** Direction of the bar's axis in its own frame, and its standard uncertainty, radians. */
   readonly axis_rad: number;
   readonly u_axis_rad: number;
@@ -35,18 +33,29 @@ export interface BarModel {
   /** Turns seen, radians, and a placement to start from. */
   readonly leastTurn: number;
   readonly mostTurn: number;
+  /** Half of the sideways range seen, pixels. */
+  readonly shift_px: number;
+  /**
+   * Of an end seen from the side: half its width times the lean of its edges' weight to the right; and where it stands on
+   * average, pixels of the region.
+   */
+  readonly edgeLean_px: number;
+  readonly restX_px: number;
   readonly start: Placement;
+  /** The bar's own picture and its outline; for looking at. */
+  readonly layers: BarLayers;
+  readonly outline: Outline;
 }
 
 /** Why no bar was found: nothing moves, or what moves is no bar that turns. */
 export type NoBar = 'still' | 'no_likeness' | 'no_outline';
 
 /** Most points compared per frame. */
-const MOST_POINTS = 2000;
+export const MOST_POINTS = 2000;
 /** Pictures the bar is learnt from. */
-const SAMPLE = 32;
+export const SAMPLE = 32;
 /** Larger sides are shrunk below this for the first look, pixels. */
-const COARSE_SIDE = 200;
+export const COARSE_SIDE = 200;
 
 /** Learns bar and background from the opening frames of a stretch (all of one size). */
 export function learnBar(frames: readonly Frame[], squash: number): BarModel | NoBar {
@@ -141,8 +150,6 @@ function describe(
   return {
     background,
     points,
-    layers,
-    outline,
     axis_rad: axis.turn_rad,
     u_axis_rad: axis.u_turn_rad,
     middleU_px: pivot.u_px,
@@ -152,15 +159,22 @@ function describe(
     usualMisfit: middle(sound.map(({ agreement }) => agreement!.misfit)),
     leastTurn: Math.min(...turns),
     mostTurn: Math.max(...turns),
+    shift_px: 0,
+    edgeLean_px: 0,
+    restX_px: 0,
     start: places[0]!,
+    layers,
+    outline,
   };
 }
 
-function placed(pictures: readonly Picture<Uint8Array>[], tried: readonly TriedPlace[]): PlacedPicture[] {
+/** The sound ones among the pictures, with their places. */
+export function placed(pictures: readonly Picture<Uint8Array>[], tried: readonly TriedPlace[]): PlacedPicture[] {
   return soundIndices(tried).map((i) => ({ picture: pictures[i]!, place: tried[i]!.place }));
 }
 
-function again(
+/** The places after registering the pictures anew. */
+export function again(
   pictures: readonly Picture<Uint8Array>[],
   background: Picture,
   points: BarPoints,
@@ -198,7 +212,7 @@ function recentre(tried: readonly TriedPlace[], squash: number, reach_px: number
 }
 
 /** At most `most` of the items, evenly spread from first to last. */
-function evenly<T>(items: readonly T[], most: number): T[] {
+export function evenly<T>(items: readonly T[], most: number): T[] {
   if (items.length <= most) return [...items];
   return Array.from({ length: most }, (_, i) => items[Math.round((i * (items.length - 1)) / (most - 1))]!);
 }

@@ -18,6 +18,8 @@ export interface Motion {
   readonly across_px: number;
   /** Index of the picture in which the bar stands nearest the middle of its motion. */
   readonly middle: number;
+  /** A number for every picture that rises or falls with the bar's motion: its likeness to the picture at one extreme. */
+  readonly phase: number[];
 }
 
 /**
@@ -91,6 +93,7 @@ export function findMotion(pictures: readonly Picture<Uint8Array>[], squash: num
     along_px = Math.max(along_px, Math.abs(c * dx + s * dy));
     across_px = Math.max(across_px, Math.abs(c * dy - s * dx));
   }
+  const phase = phases(pictures, gain, offset, common, energy);
   let middle = 0;
   let least = Number.POSITIVE_INFINITY;
   for (const [t, picture] of pictures.entries()) {
@@ -104,7 +107,27 @@ export function findMotion(pictures: readonly Picture<Uint8Array>[], squash: num
       middle = t;
     }
   }
-  return { gain, offset, energy, noise, x_px, y_px, axis_rad, along_px, across_px, middle };
+  return { gain, offset, energy, noise, x_px, y_px, axis_rad, along_px, across_px, middle, phase };
+}
+
+/** Projection of every picture's difference from the common one on that of the picture that differs most. */
+function phases(
+  pictures: readonly Picture<Uint8Array>[],
+  gain: readonly number[],
+  offset: readonly number[],
+  common: Picture,
+  energy: Picture,
+): number[] {
+  const places: number[] = [];
+  for (let at = 0; at < energy.data.length; at++) if (energy.data[at]! > 0) places.push(at);
+  const differences = pictures.map((picture, t) =>
+    Float32Array.from(places, (at) => (picture.data[at]! - offset[t]!) / gain[t]! - common.data[at]!),
+  );
+  const sizes = differences.map((d) => d.reduce((sum, x) => sum + x * x, 0));
+  // Not the very largest, which may be a hand's.
+  const order = sizes.map((_, t) => t).sort((a, b) => sizes[b]! - sizes[a]!);
+  const extreme = differences[order[Math.floor(order.length / 8)]!]!;
+  return differences.map((d) => d.reduce((sum, x, i) => sum + x * extreme[i]!, 0));
 }
 
 /** Median over time of the evened pictures, and the variance about it with the farthest tenth left out. */

@@ -16,13 +16,15 @@ export interface BarPoints {
   readonly seeV: Float32Array;
   /** One over the expected variance of the residual. */
   readonly weight: Float32Array;
-  /** What the point tells of the angle: its share of one over the angle's variance; adds up to 1. */
+  /** What the point tells of the angle (of a body that only shifts: of its sideways place): its share of one over the variance; adds up to 1. */
   readonly knowledge: Float32Array;
   /** How fast the point slides across the bar (towards +v) as the bar turns, pixels per radian from `slideTurn`. */
   readonly slide: Float32Array;
   readonly slideTurn: number;
   /** How much the view squeezes the bar's plane downwards: sin(elevation), 1 for a plan view. */
   readonly squash: number;
+  /** Whether the body the points belong to turns in the picture, or only shifts. */
+  readonly turns: boolean;
   /** Distance of the farthest points from the origin, pixels. */
   readonly reach_px: number;
 }
@@ -44,7 +46,7 @@ function trusted(outline: Outline, u: number, v: number, gu: number, gv: number)
  * Every pixel of the layers as a point, or those of them that tell most of angle and place; once the outline is known,
  * slopes that don't belong to the bar as a body are left out.
  */
-export function choosePoints(layers: BarLayers, most: number, outline: Outline | null = null): BarPoints {
+export function choosePoints(layers: BarLayers, most: number, outline: Outline | null = null, turns = true): BarPoints {
   const { columns, rows, halfU, halfV, bar, see, weight } = layers;
   const size = columns * rows;
   const grad = (from: Float32Array, at: number, stride: number): number =>
@@ -77,7 +79,8 @@ export function choosePoints(layers: BarLayers, most: number, outline: Outline |
   const candidates: number[] = [];
   for (let at = 0; at < size; at++) {
     if (weight[at] === 0) continue;
-    worth[at] = (2 * turning[at]!) / (turningSum || 1) + along[at]! / (alongSum || 1) + across[at]! / (acrossSum || 1);
+    const main = turns ? turning[at]! / (turningSum || 1) : along[at]! / (alongSum || 1);
+    worth[at] = 2 * main + along[at]! / (alongSum || 1) + across[at]! / (acrossSum || 1);
     if (worth[at]! > 0) candidates.push(at);
   }
   let chosen = candidates;
@@ -109,6 +112,7 @@ export function choosePoints(layers: BarLayers, most: number, outline: Outline |
     slide: column(),
     slideTurn: 0,
     squash: layers.squash,
+    turns,
     reach_px: Math.max(1, layers.reach_px),
   };
   let known = 0;
@@ -122,8 +126,8 @@ export function choosePoints(layers: BarLayers, most: number, outline: Outline |
     points.seeU[i] = grad(see, at, 1);
     points.seeV[i] = grad(see, at, columns);
     points.weight[i] = weight[at]!;
-    points.knowledge[i] = turning[at]!;
-    known += turning[at]!;
+    points.knowledge[i] = turns ? turning[at]! : along[at]!;
+    known += points.knowledge[i]!;
   }
   for (let i = 0; i < count; i++) points.knowledge[i] = known > 0 ? points.knowledge[i]! / known : 1 / count;
   return points;
@@ -150,6 +154,7 @@ export function thinPoints(points: BarPoints, most: number): BarPoints {
     slide: pick(points.slide),
     slideTurn: points.slideTurn,
     squash: points.squash,
+    turns: points.turns,
     reach_px: points.reach_px,
   };
 }

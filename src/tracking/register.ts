@@ -1,6 +1,6 @@
 import type { Picture } from './picture.ts';
 import type { BarPoints } from './points.ts';
-import { firstOfInverse, solveSymmetric } from './symmetric.ts';
+import { diagonalOfInverse, solveSymmetric } from './symmetric.ts';
 
 /**
  * Where the bar lies in a picture and how bright the picture is. A point (u, v) of the bar's own frame is seen at
@@ -23,8 +23,8 @@ export interface Agreement {
   share: number;
   /** The same share of knowledge that lay outside the picture. */
   outside: number;
-  /** Standard deviation of the angle if residuals are as expected, radians. */
-  sd_rad: number;
+  /** Standard deviation of the angle (of a body that only shifts: of its place along u) if residuals are as expected, radians (pixels). */
+  sd: number;
   /** Size of the last step, pixels at the bar's ends. */
   lastStep_px: number;
 }
@@ -148,6 +148,14 @@ export function register(
       b3 += wm * r;
       b4 += w * r;
     }
+    if (!points.turns) {
+      h00 = 1;
+      h10 = 0;
+      h20 = 0;
+      h30 = 0;
+      h40 = 0;
+      b0 = 0;
+    }
     normal.set([
       h00,
       0,
@@ -189,6 +197,6 @@ export function register(
     misfit = weights > 0 ? squares / weights : Number.POSITIVE_INFINITY;
     if (!Number.isFinite(turn) || !(place.gain > 0)) return null;
   }
-  const sd_rad = Math.sqrt(firstOfInverse(normal, PARAMETERS));
-  return { misfit, share, outside, sd_rad, lastStep_px };
+  const sd = Math.sqrt(diagonalOfInverse(normal, PARAMETERS, points.turns ? 0 : 1));
+  return { misfit, share, outside, sd, lastStep_px };
 }

@@ -71,25 +71,30 @@ export function searchTurn(
   return { turn: best, disagreement: least };
 }
 
-/** Moves `place` across the bar, then along it, to where points and picture disagree least. */
+/** Moves `place` across the bar, then along it, at most so many pixels, to where points and picture disagree least. */
 export function searchShift(
   picture: Picture<Uint8Array>,
   background: Picture,
   points: BarPoints,
   place: Placement,
-  range: { readonly reach: number; readonly step: number; readonly tolerance: number },
+  range: {
+    readonly across: number;
+    readonly along: number;
+    readonly step: number;
+    readonly tolerance: number;
+  },
 ): void {
   const c = Math.cos(place.turn);
   const s = Math.sin(place.turn);
   const { squash } = points;
   const tried = { ...place };
-  for (const [du, dv] of [
-    [-s, c],
-    [c, s],
+  for (const [du, dv, reach] of [
+    [-s, c, range.across],
+    [c, s, range.along],
   ] as const) {
     const { x_px, y_px } = place;
     let least = Number.POSITIVE_INFINITY;
-    const steps = Math.ceil(range.reach / range.step);
+    const steps = Math.ceil(reach / range.step);
     for (let i = -steps; i <= steps; i++) {
       tried.x_px = x_px + i * range.step * du;
       tried.y_px = y_px + i * range.step * dv * squash;

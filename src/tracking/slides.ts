@@ -62,7 +62,6 @@ function rateOf(turns: readonly number[], shifts: readonly number[], middle: num
   let rest = 0;
   for (const [i, turn] of turns.entries()) rest += (shifts[i]! - mean - rate * (turn - middle)) ** 2;
   const variance = rest / (n - 2) / tt;
-  if (process.env.DBG) console.log('rate', rate.toFixed(2), 'sd', Math.sqrt(variance).toFixed(2));
   return rate * Math.max(0, 1 - (2 * variance) / (rate * rate));
 }
 

@@ -29,13 +29,13 @@ export function solveSymmetric(a: Float64Array, b: Float64Array, n: number): boo
   return true;
 }
 
-/** First diagonal element of the inverse of L Lt, L the lower triangle left by `solveSymmetric`. */
-export function firstOfInverse(l: Float64Array, n: number): number {
+/** Diagonal element `which` of the inverse of L Lt, L the lower triangle left by `solveSymmetric`. */
+export function diagonalOfInverse(l: Float64Array, n: number, which: number): number {
   const z = new Float64Array(n);
   let sum = 0;
-  for (let i = 0; i < n; i++) {
-    let s = i === 0 ? 1 : 0;
-    for (let k = 0; k < i; k++) s -= l[i * n + k]! * z[k]!;
+  for (let i = which; i < n; i++) {
+    let s = i === which ? 1 : 0;
+    for (let k = which; k < i; k++) s -= l[i * n + k]! * z[k]!;
     z[i] = s / l[i * n + i]!;
     sum += z[i]! ** 2;
   }

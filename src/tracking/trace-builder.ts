@@ -1,5 +1,6 @@
 import type { Frame } from '../recording/recording.ts';
 import type { Fix } from './follow.ts';
+import { type EndEdges, sideAngle } from './side-angle.ts';
 import type { Refusal, Trace, View } from './trace.ts';
 
 /** Columns of poses, as in `Trace`. */
@@ -15,6 +16,7 @@ export class TraceBuilder {
   readonly #view: View;
   readonly #halfLength_px: number | null;
   readonly #u_common: number;
+  readonly #edges: EndEdges;
   #time_s = new Float64Array(1024);
   #angle = new Float64Array(1024);
   #x_px = new Float64Array(1024);
@@ -25,7 +27,8 @@ export class TraceBuilder {
   #rows = 0;
   #reported = 0;
 
-  constructor(view: View, halfLength_px: number | null, u_common: number) {
+  constructor(view: View, halfLength_px: number | null, u_common: number, edges: EndEdges) {
+    this.#edges = edges;
     this.#view = view;
     this.#halfLength_px = halfLength_px;
     this.#u_common = u_common;
@@ -41,20 +44,34 @@ export class TraceBuilder {
     return this.#rows - this.#reported;
   }
 
+  /** The angle that continues the curve: a bar is the same after half a turn, an end seen from the side is not. */
+  #continued(fix: Fix & { ok: true }, before: number | null): number {
+    if (this.#view.kind === 'side') {
+      const x_px = fix.x_px + this.#view.region.x;
+      return sideAngle(this.#view, this.#edges, x_px) ?? x_px - this.#view.axis_x_px;
+    }
+    return before === null ? fix.angle : fix.angle + Math.PI * Math.round((before - fix.angle) / Math.PI);
+  }
+
   /** Adds a frame's fix, or its refusal. */
   add(frame: Frame, fix: Fix): void {
     if (!fix.ok) {
       this.#refused.push({ frame_index: frame.index, reason: fix.reason });
       return;
     }
+    if (this.#view.kind === 'side' && this.#view.half_length_px !== null) {
+      if (sideAngle(this.#view, this.#edges, fix.x_px + this.#view.region.x) === null) {
+        this.#refused.push({ frame_index: frame.index, reason: 'no_fit' });
+        return;
+      }
+    }
     if (this.#rows === this.#time_s.length) this.#grow();
     const i = this.#rows++;
-    const before = i > 0 ? this.#angle[i - 1]! : null;
     this.#time_s[i] = frame.time_s;
-    this.#angle[i] = before === null ? fix.angle : fix.angle + Math.PI * Math.round((before - fix.angle) / Math.PI);
+    this.#angle[i] = this.#continued(fix, i > 0 ? this.#angle[i - 1]! : null);
     this.#x_px[i] = fix.x_px + this.#view.region.x;
     this.#y_px[i] = fix.y_px + this.#view.region.y;
-    this.#sd[i] = fix.sd_rad;
+    this.#sd[i] = fix.sd;
     this.#frame_index[i] = frame.index;
   }
 
@@ -79,7 +96,7 @@ export class TraceBuilder {
     return {
       time_s: this.#time_s.slice(0, n),
       angle: this.#angle.slice(0, n),
-      unit: 'rad',
+      unit: this.#view.kind === 'side' && this.#view.half_length_px === null ? 'px' : 'rad',
       x_px: this.#x_px.slice(0, n),
       y_px: this.#y_px.slice(0, n),
       quality: sd.map((value) => Math.min(1, best / value)),

@@ -1,8 +1,8 @@
 import type { Frame } from '../recording/recording.ts';
 import { Follower } from './follow.ts';
-import type { NoBar } from './learn-bar.ts';
-import { learnBar } from './learn-bar.ts';
-import type { TrackOutcome, View } from './trace.ts';
+import { type BarModel, learnBar, type NoBar } from './learn-bar.ts';
+import { type Expected, learnEnd } from './learn-end.ts';
+import type { SideView, TrackOutcome, View } from './trace.ts';
 import type { PoseColumns } from './trace-builder.ts';
 import { TraceBuilder } from './trace-builder.ts';
 
@@ -33,7 +33,6 @@ export async function trackFrames(
   view: View,
   options: TrackOptions = {},
 ): Promise<TrackOutcome> {
-  const squash = view.kind === 'oblique' ? Math.sin((view.elevation_deg * Math.PI) / 180) : 1;
   const opening: Frame[] = [];
   let bytes = 0;
   let taken = 0;
@@ -46,13 +45,16 @@ export async function trackFrames(
     builder!.add(frame, fix);
     if (builder!.waiting >= REPORT_EVERY) options.onPoses?.(builder!.takeNew());
   };
-  const learn = (): void => {
-    const model = learnBar(opening, squash);
+  const begin = (): void => {
+    const model = learn(opening, view);
     if (typeof model === 'string') {
       failure = model;
     } else {
       follower = new Follower(model);
-      builder = new TraceBuilder(view, model.halfLength_px, model.u_axis_rad);
+      builder = new TraceBuilder(view, halfLengthOf(view, model), commonUncertainty(view, model), {
+        edgeLean_px: model.edgeLean_px,
+        restX_px: model.restX_px + view.region.x,
+      });
       for (const frame of opening) follow(frame);
     }
     opening.length = 0;
@@ -66,7 +68,7 @@ export async function trackFrames(
     else if (failure === null) {
       opening.push(frame);
       bytes += frame.grey.byteLength;
-      if (bytes >= OPENING_BYTES) learn();
+      if (bytes >= OPENING_BYTES) begin();
     }
   }
   options.signal?.throwIfAborted();
@@ -78,7 +80,7 @@ export async function trackFrames(
       frames: taken,
     };
   }
-  if (follower === null && failure === null) learn();
+  if (follower === null && failure === null) begin();
   if (failure !== null || builder === null) {
     return { ok: false, reason: 'no_bar', message: SENTENCES[failure ?? 'no_likeness'], frames: taken };
   }
@@ -89,6 +91,37 @@ export async function trackFrames(
     return { ok: false, reason: 'no_bar', message: SENTENCES.no_likeness, frames: taken };
   }
   return { ok: true, trace: done.finish() };
+}
+
+function learn(opening: readonly Frame[], view: View): BarModel | NoBar {
+  switch (view.kind) {
+    case 'plan':
+      return learnBar(opening, 1);
+    case 'oblique':
+      return learnBar(opening, Math.sin((view.elevation_deg * Math.PI) / 180));
+    case 'side':
+      return learnEnd(opening, expectedEnd(view));
+    default:
+      return view satisfies never;
+  }
+}
+
+/** Where the near end is to be looked for, from how the view faces the bar. */
+function expectedEnd(view: SideView): Expected | null {
+  if (view.half_length_px === null || view.facing_deg === null) return null;
+  const rest_rad = (view.facing_deg * Math.PI) / 180;
+  const x_px = view.axis_x_px + view.half_length_px * Math.sin(rest_rad) - view.region.x;
+  return { x_px, spread_px: 6 + 0.1 * view.half_length_px };
+}
+
+function halfLengthOf(view: View, model: BarModel): number | null {
+  return view.kind === 'side' ? view.half_length_px : model.halfLength_px;
+}
+
+/** What all angles of a stretch have in common by way of error, in the unit of the angle. */
+function commonUncertainty(view: View, model: BarModel): number {
+  if (view.kind !== 'side') return model.u_axis_rad;
+  return view.half_length_px === null ? model.u_axis_rad : model.u_axis_rad / view.half_length_px;
 }
 
 const SENTENCES: Record<NoBar, string> = {

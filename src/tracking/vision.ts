@@ -14,9 +14,11 @@ interface OpenCv {
   CV_8UC1: number;
   CV_32FC1: number;
   INTER_AREA: number;
+  TM_CCOEFF_NORMED: number;
   BORDER_REPLICATE: number;
   resize(from: Mat, to: Mat, size: object, fx: number, fy: number, interpolation: number): void;
   GaussianBlur(from: Mat, to: Mat, size: object, sigmaX: number, sigmaY: number, border: number): void;
+  matchTemplate(from: Mat, template: Mat, to: Mat, method: number): void;
   connectedComponentsWithStats(from: Mat, labels: Mat, stats: Mat, centroids: Mat): number;
 }
 
@@ -93,5 +95,46 @@ export function patches(mask: Picture<Uint8Array>): { readonly label: Int32Array
     return { label: labels.data32S.slice(), area };
   } finally {
     for (const mat of [from, labels, stats, centroids]) mat.delete();
+  }
+}
+
+/** A patch of a picture: left and top pixel, width and height. */
+export interface Patch {
+  readonly left: number;
+  readonly top: number;
+  readonly width: number;
+  readonly height: number;
+}
+
+/**
+ * How well a patch of one picture is found at each place of a strip of others: for every picture the normalised
+ * correlation (-1 to 1) row by row, (strip.width - patch.width + 1) values a row.
+ */
+export function correlate(
+  from: Picture<Uint8Array>,
+  patch: Patch,
+  pictures: readonly Picture<Uint8Array>[],
+  strip: Patch,
+): Float32Array[] {
+  const cv = openCv();
+  const template = new cv.Mat(patch.height, patch.width, cv.CV_8UC1);
+  const ground = new cv.Mat(strip.height, strip.width, cv.CV_8UC1);
+  const found = new cv.Mat();
+  try {
+    cut(from, patch, template.data);
+    return pictures.map((picture) => {
+      cut(picture, strip, ground.data);
+      cv.matchTemplate(ground, template, found, cv.TM_CCOEFF_NORMED);
+      return found.data32F.slice();
+    });
+  } finally {
+    for (const mat of [template, ground, found]) mat.delete();
+  }
+}
+
+function cut(picture: Picture<Uint8Array>, patch: Patch, to: Uint8Array): void {
+  for (let row = 0; row < patch.height; row++) {
+    const at = (patch.top + row) * picture.width + patch.left;
+    to.set(picture.data.subarray(at, at + patch.width), row * patch.width);
   }
 }
