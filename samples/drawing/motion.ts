@@ -20,8 +20,9 @@ export interface Place {
   readonly across_m: number;
 }
 
-// The hand: a stiff, critically damped spring towards where it wants the bar.
+// The hand: a critically damped spring towards where it wants the bar, stiffer than what pulls the bar home.
 const HAND_rad_per_s = 40;
+const HAND_OVER_BAR = 3;
 
 const smooth = (share: number): number => share * share * (3 - 2 * share);
 
@@ -85,10 +86,11 @@ export function integrateMotion(
       const share = Math.min(1, (time - contact.start_s) / length);
       const target = taken + (contact.release_rad - taken) * smooth(share);
       const targetRate = share < 1 ? ((contact.release_rad - taken) * 6 * share * (1 - share)) / length : 0;
-      const spring = HAND_rad_per_s * HAND_rad_per_s;
-      out[1] -= spring * (angle - target) + 2 * HAND_rad_per_s * (rate - targetRate);
-      out[3] -= spring * (x - contact.swing_m[0]) + 2 * HAND_rad_per_s * vx;
-      out[5] -= spring * (z - contact.swing_m[1]) + 2 * HAND_rad_per_s * vz;
+      const hand = Math.max(HAND_rad_per_s, HAND_OVER_BAR * Math.sqrt(Math.hypot(along, across)));
+      const spring = hand * hand;
+      out[1] -= spring * (angle - target) + 2 * hand * (rate - targetRate);
+      out[3] -= spring * (x - contact.swing_m[0]) + 2 * hand * vx;
+      out[5] -= spring * (z - contact.swing_m[1]) + 2 * hand * vz;
     }
   };
 
