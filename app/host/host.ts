@@ -77,13 +77,16 @@ export async function startHost(options: HostOptions, file: string | null = null
     now,
   });
   const pool = new TrackerPool(Math.max(1, cores));
+  // What the user waits for right now must not queue behind whole segments.
+  const quickPool = new TrackerPool(1);
   const fits = new FitThread();
   const measuring = new Measuring({
     tools,
     pool,
     fits,
     store: new MeasuredStore(cache),
-    cores: Math.max(1, cores),
+    // One core is left for the pictures and fits that the user looks at meanwhile.
+    cores: Math.max(1, cores - 1),
     changed: () => broadcast('results', measuring.state()),
     report,
   });
@@ -114,6 +117,7 @@ export async function startHost(options: HostOptions, file: string | null = null
     measuring,
     fits,
     pool,
+    quickPool,
     tools,
     tokens,
     saving: new Saving(tokens, downloads),
@@ -136,7 +140,7 @@ export async function startHost(options: HostOptions, file: string | null = null
       ending.abort();
       await jobs.cancelAll();
       await measuring.close();
-      await Promise.all([fits.close(), pool.close()]);
+      await Promise.all([fits.close(), pool.close(), quickPool.close()]);
       await keeper.end(!discard);
     })();
     return closing;

@@ -87,10 +87,11 @@ export class Measuring {
     this.#tell();
   }
 
-  /** Holds measuring back while the user waits for something else, or lets it go on. What runs goes on to its end. */
+  /** Holds measuring back while the user waits for something else, or lets it go on. A segment under way is begun again later. */
   hold(held: boolean): void {
     this.#held = held;
     if (!held) this.#advance();
+    else for (const abort of this.#running.values()) abort.abort();
   }
 
   /** The results as they stand; `results` null where nothing is open. */

@@ -41,6 +41,8 @@ export interface Parts {
   readonly measuring: Measuring;
   readonly fits: FitThread;
   readonly pool: TrackerPool;
+  /** For what the user waits for right now. */
+  readonly quickPool: TrackerPool;
   readonly tools: () => Promise<FfmpegTools>;
   readonly tokens: Tokens;
   readonly saving: Saving;

@@ -12,7 +12,7 @@ import { PlayPace, pictureOf, play, showStrip } from './showing.ts';
 export function pictureCalls(
   parts: Parts,
 ): Some<'frameTimes' | 'picture' | 'filmStrip' | 'play' | 'playAck' | 'findBar' | 'jobs' | 'cancel'> {
-  const { keeper, tools, jobs, pictures, pool } = parts;
+  const { keeper, tools, jobs, pictures, quickPool } = parts;
   const paces = new Map<string, PlayPace>();
   return {
     frameTimes: async ({ recording }) => ({ time_s: frameTimes_s(await keeper.opened(recording)) }),
@@ -55,7 +55,7 @@ export function pictureCalls(
     findBar: async ({ recording, view, frame }, { signal }) => {
       const opened = await keeper.opened(recording);
       const looks = viewOf(sessionView(view, recording));
-      return findBar(opened, looks, frame, await tools(), pool, signal);
+      return findBar(opened, looks, frame, await tools(), quickPool, signal);
     },
     jobs: () => jobs.list(),
     cancel: ({ job }) => {
