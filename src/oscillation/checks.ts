@@ -34,6 +34,8 @@ export interface Facts {
   /** Energy of the twist over the noise: its mean square times the number of samples over the noise variance. */
   readonly signal: number;
   readonly converged: boolean;
+  /** The frequency follows the amplitude otherwise than was assumed, beyond doubt. */
+  readonly amplitudeLawOdd: boolean;
 }
 
 function check<C extends RingDownCode>(
@@ -156,6 +158,7 @@ function moved(facts: Facts): Check[] {
       out.push(check('amplitude_large', 'note', { amplitude: amplitudeStart, shift: ringDown.amplitudeShift }));
     }
   }
+  if (facts.amplitudeLawOdd && unit === 'rad') out.push(check('amplitude_law_odd', 'note', undefined));
   if (ringDown.quadraticDrag > 0) {
     const quadratic = ((4 / 3) * ringDown.quadraticDrag * ringDown.fd_Hz.value * 2 * amplitudeStart) / 1;
     const share = quadratic / (quadratic + Math.max(ringDown.gamma_per_s.value, 0));

@@ -22,7 +22,7 @@ const NOMINAL_AMPLITUDE_rad = 0.14;
 /** Fall of chi-square by one more parameter that Akaike's criterion asks for, beside the correction for few samples. */
 const AIC_PENALTY = 2;
 /** A prior further than this many standard uncertainties from what the data say is doubted rather than the data. */
-const TENSION = 2.5;
+const TENSION = 4;
 
 /**
  * Fits the decaying twist of one segment: frequency in the limit of small amplitude, damping, rest direction, each with a standard uncertainty
@@ -45,8 +45,8 @@ export function fitRingDown(trace: Trace, options: RingDownOptions): RingDownOut
   const plain = fitTwist(series, first.model, first.start);
   if (plain === null) return { ok: false, checks: faults.noOscillation() };
   const lined = addLines(series, trace, plain, options.view === 'side');
-  const fit = withWiderPriors(series, lined.fit);
-  const facts = factsOf(fit, { ...lined, fit }, trace, options, 1 / scale);
+  const { fit, amplitudeLawOdd } = withWiderPriors(series, lined.fit);
+  const facts = factsOf({ ...lined, fit }, amplitudeLawOdd, trace, options, 1 / scale);
   const fault = faults.ofFacts(facts);
   if (fault.length > 0) return { ok: false, checks: fault };
   return { ok: true, ringDown: facts.ringDown, checks: findings(facts) };
@@ -69,23 +69,24 @@ function asksForDrag(fit: TwistFit): boolean {
   return free !== null && free.value > 0 && (free.value / free.u) ** 2 > AIC_PENALTY + correction;
 }
 
-/** Widens priors to what the data say where the two can't both be right. */
-function withWiderPriors(series: Series, fit: TwistFit): TwistFit {
-  let widened = false;
+/** Widens priors to what the data say where the two can't both be right, and says whether that of the amplitude's effect was one. */
+function withWiderPriors(series: Series, fit: TwistFit): { fit: TwistFit; amplitudeLawOdd: boolean } {
+  const widened: number[] = [];
   const priors = fit.model.priors.map((prior) => {
     if (![SHARE, SKEW, DRAG].includes(prior.parameter)) return prior;
     const free = withoutPrior(fit, prior);
     const apart = free === null ? 0 : Math.abs(free.value - prior.value);
     if (free === null || apart < TENSION * Math.hypot(free.u, prior.u)) return prior;
-    widened = true;
+    widened.push(prior.parameter);
     return { ...prior, u: apart };
   });
-  return widened ? (fitTwist(series, { ...fit.model, priors }, fit.parameters, fit) ?? fit) : fit;
+  const again = widened.length > 0 ? fitTwist(series, { ...fit.model, priors }, fit.parameters, fit) : null;
+  return { fit: again ?? fit, amplitudeLawOdd: widened.includes(SHARE) || widened.includes(SKEW) };
 }
 
 function factsOf(
-  fit: TwistFit,
-  { swings, coherent, angleLine }: FitWithLines,
+  { fit, swings, coherent, angleLine }: FitWithLines,
+  amplitudeLawOdd: boolean,
   trace: Trace,
   options: RingDownOptions,
   unitScale: number,
@@ -170,5 +171,6 @@ function factsOf(
     folded_Hz: foldedFrom(fit),
     signal: (fit.residual.length * rootMeanSquare(twist) ** 2) / fit.level,
     converged: fit.converged,
+    amplitudeLawOdd,
   };
 }

@@ -5,6 +5,8 @@ import type { TwistFit } from './twist-fit.ts';
 
 /** A frequency that a linear fit finds nearly as good as the fitted one must leave less than this times its sum of squares. */
 const NEARLY = 1.3;
+/** A folded frequency must leave less than this times the sum of squares of the one seen. */
+const FAR_BETTER = 0.7;
 
 /**
  * Another frequency, within reach of the count of swings across the longest gap, that explains the samples nearly as well as the fitted one;
@@ -42,16 +44,17 @@ export function foldedFrom(fit: TwistFit): number | null {
   const { samples } = fit;
   const rate = 1 / sampling(samples).medianInterval_s;
   const frequency = fit.parameters[OMEGA]! / (2 * Math.PI);
-  const here = startAt(samples, frequency)?.sumOfSquares ?? 0;
-  if (frequency * 8 > rate || here > 4 * fit.sumOfSquares) {
-    for (const f of [rate - frequency, rate + frequency]) {
-      const there = search(samples, f);
-      if (there !== null && there.sum < 0.7 * here) return there.frequency;
-    }
+  const here = search(samples, frequency);
+  // A slow motion followed to within its noise needs no second thought.
+  if (here === null || (frequency * 8 < rate && here.sum < 4 * fit.sumOfSquares)) return null;
+  for (const f of [rate - frequency, rate + frequency]) {
+    const there = search(samples, f);
+    if (there !== null && there.sum < FAR_BETTER * here.sum) return there.frequency;
   }
   return null;
 }
 
+/** The best plain damped sine within three lines of the spectrum about `centre`. */
 function search(series: Series, centre: number): { frequency: number; sum: number } | null {
   const duration = series.time_s[series.time_s.length - 1]!;
   let best: { frequency: number; sum: number } | null = null;

@@ -57,6 +57,8 @@ export const SENTENCES = {
     `At ${excursion(f.amplitude, 'rad')} the amplitude lowers the frequency by ${relative(f.shift)}, which is corrected for; a smaller nudge would depend less on that correction.`,
   amplitude_extreme: (f: { amplitude: number }) =>
     `The amplitude of ${excursion(f.amplitude, 'rad')} is beyond what the correction for it is good for; let the bar calm down to below 40° before the segment begins.`,
+  amplitude_law_odd: () =>
+    'The frequency changes with the amplitude otherwise than the fibre share assumed would have it; the data are believed. Check the scale of the view (elevation, half length), or give the stiffness of the fibre.',
   unscaled_view: () =>
     'The side view has no half length, so that the motion has no scale in degrees: the frequency is given, but how much the amplitude lowered it can only be guessed (it is in the uncertainty); give half_length_px.',
   drag_quadratic: (f: { share: number }) =>
