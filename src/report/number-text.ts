@@ -31,10 +31,17 @@ export function numberText(value: number | null, digits = 4): string {
   return `${minus(lead)} × 10${raised(power)}`;
 }
 
-/** A standard or expanded uncertainty alone, with two significant digits and its unit. */
-export function uncertaintyText(u: number, unit: string): string {
+/**
+ * A standard or expanded uncertainty alone, with two significant digits and its unit; in the power of ten in which
+ * `estimateText` shows `beside`, where that is given.
+ */
+export function uncertaintyText(u: number, unit: string, beside: number | null = null): string {
+  if (!Number.isFinite(u)) return NOTHING;
   const tail = unit === '' || unit === '°' ? unit : ` ${unit}`;
-  return `${numberText(u, 2)}${tail}`;
+  const power = threes(Math.max(Math.abs(beside ?? 0), u));
+  const rounded = Number((u * 10 ** -power).toPrecision(2));
+  const text = numberText(rounded, 2);
+  return `${text}${power === 0 ? '' : ` × 10${raised(power)}`}${tail}`;
 }
 
 /** A number as it was typed: all its digits, no rounding, a true minus sign. */
@@ -46,7 +53,13 @@ export function typedText(value: number | null): string {
 
 /** A whole number of degrees of freedom, or infinity where there is no limit. */
 export function dofText(dof: number | null): string {
-  return dof === null ? '∞' : dof >= 100 ? String(Math.floor(dof)) : minus(dof.toFixed(1).replace(/\.0$/, ''));
+  return dof === null
+    ? '∞'
+    : dof >= 10_000
+      ? '> 9999'
+      : dof >= 100
+        ? String(Math.floor(dof))
+        : minus(dof.toFixed(1).replace(/\.0$/, ''));
 }
 
 /** A share as per cent with one decimal. */

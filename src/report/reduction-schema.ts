@@ -64,7 +64,7 @@ const model = z.object({
         chi_square: value,
         dof: value,
         parameters: value,
-        aicc: maybe,
+        criterion: value,
         chosen: z.boolean(),
       }),
     )

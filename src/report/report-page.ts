@@ -42,8 +42,9 @@ export function reportPage(results: Results, extras: ReportExtras = {}): string 
 ${pageHead(results, extras.madeOn ?? null)}
 ${cautions()}
 ${mainResults(results)}
-${figures(results)}
+${frequencyFigure(results)}
 ${reductionSection(results)}
+${restDirectionFigure(results)}
 ${segmentTables(results)}
 ${findings(results)}
 ${uncertaintySection(results)}
@@ -56,18 +57,17 @@ ${provenance(results)}
 `.text;
 }
 
-function figures(results: Results): Markup | null {
-  const measured = results.segments.some((s) => s.f0_Hz !== null && s.current_A !== null);
-  if (!measured) return null;
-  const turning = restDirectionPlot(results);
+function frequencyFigure(results: Results): Markup | null {
+  if (!results.segments.some((s) => s.f0_Hz !== null && s.current_A !== null)) return null;
   return html`<figure>${trusted(fieldPlot(results))}
-<figcaption>Square of the undamped frequency against current; below, the residuals. Bars are standard uncertainties, those of the residuals with the current’s; the shaded band is the standard uncertainty of the curve.</figcaption></figure>
-${
-  turning === null
-    ? null
-    : html`<figure>${trusted(turning)}
-<figcaption>Rest direction against current, with the turning that the model expects.</figcaption></figure>`
-}`;
+<figcaption>Square of the undamped frequency against current; below, the residuals. Bars are standard uncertainties, those of the residuals with the current’s; the shaded band is the standard uncertainty of the curve.</figcaption></figure>`;
+}
+
+function restDirectionFigure(results: Results): Markup | null {
+  const plot = restDirectionPlot(results);
+  if (plot === null) return null;
+  return html`<figure>${trusted(plot)}
+<figcaption>Rest direction against current, with the turning that the model expects, and the residuals.</figcaption></figure>`;
 }
 
 function ringDowns(results: Results, { traces = new Map(), strangers = [] }: ReportExtras): Markup | null {

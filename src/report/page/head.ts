@@ -29,9 +29,10 @@ export function mainResults({ reduction }: Results): Markup | null {
     const [value, u] = [reduction[name], reduction[`u_${name}`]];
     if (!quantity || value === null) return null;
     const budget = reduction.budget[name];
-    const expanded = budget
-      ? `U = ${uncertaintyText(budget.expanded_u * quantity.perUnit, quantity.unit)} (k = ${budget.coverage_factor.toFixed(2)}, 95 %)`
-      : 'standard uncertainty, k = 1';
+    const expanded =
+      budget && budget.u > 0
+        ? `U = ${uncertaintyText(budget.expanded_u * quantity.perUnit, quantity.unit, value * quantity.perUnit)} (k = ${budget.coverage_factor.toFixed(2)}, 95 %)`
+        : 'standard uncertainty, k = 1';
     const text = estimateText(value * quantity.perUnit, u === null ? null : u * quantity.perUnit, quantity.unit);
     return html`<div><span>${quantity.title} ${symbolMarkup(quantity.symbol)}</span><strong>${text}</strong><span>${expanded}</span></div>
 `;

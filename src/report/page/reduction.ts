@@ -42,8 +42,10 @@ function resultRows(reduction: Reduction, known: readonly Quantity[]): Markup {
         q.title,
         symbolMarkup(q.symbol),
         shown(q, reduction[q.name], reduction[`u_${q.name}`]),
-        budget ? uncertaintyText(budget.expanded_u * q.perUnit, q.unit) : NOTHING,
-        budget ? budget.coverage_factor.toFixed(2) : NOTHING,
+        budget && budget.u > 0
+          ? uncertaintyText(budget.expanded_u * q.perUnit, q.unit, budget.value * q.perUnit)
+          : NOTHING,
+        budget && budget.u > 0 ? budget.coverage_factor.toFixed(2) : NOTHING,
       ];
     }),
     numbers: [2, 3, 4],
@@ -87,10 +89,10 @@ export function fitDetails({ reduction }: Results): Markup | null {
           'Parameter',
           'Value ± standard uncertainty',
           'Unit',
-          ...fit.parameters.map((q) => html`<small>r with</small> ${q.name}`),
+          ...fit.parameters.map((_, i) => html`<i>r</i><sub>${i + 1}</sub>`),
         ],
         rows: fit.parameters.map((q, i) => [
-          q.name,
+          `${i + 1}. ${q.name}`,
           estimateText(q.value, q.u, ''),
           q.unit,
           ...fit.parameters.map((_, j) => coefficient(fit.correlation[i]?.[j])),
@@ -103,14 +105,14 @@ export function fitDetails({ reduction }: Results): Markup | null {
     parts.push(
       table({
         caption: 'Models tried',
-        heads: ['Model', 'Fibre', 'χ²', 'Degrees of freedom', 'Parameters', 'AICc', ''],
+        heads: ['Model', 'Fibre', 'χ²', 'Degrees of freedom', 'Parameters', 'Akaike’s criterion', ''],
         rows: model.candidates.map((c) => [
           MODELS[c.kind],
           c.fibre,
           c.chi_square.toFixed(2),
           dofText(c.dof),
           c.parameters,
-          c.aicc === null ? NOTHING : c.aicc.toFixed(2).replace('-', '−'),
+          c.criterion.toFixed(2).replace('-', '−'),
           c.chosen ? 'chosen' : '',
         ]),
         numbers: [2, 3, 4, 5],

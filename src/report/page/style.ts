@@ -12,7 +12,8 @@ body {
 header { border-bottom: 1.6pt solid #1c2126; padding-bottom: 3mm; margin-bottom: 4mm; }
 header p { margin: 0; color: #5b646d; }
 h1 { font-size: 19pt; line-height: 1.2; font-weight: 600; margin: 1mm 0 1.5mm; letter-spacing: -0.01em; }
-h2 + p { break-after: avoid; }
+h2 + p { break-after: avoid; break-inside: avoid; }
+p, li { orphans: 3; widows: 3; }
 h2 { font-size: 12pt; font-weight: 600; margin: 8mm 0 2mm; padding-bottom: 1mm; border-bottom: 0.6pt solid #9aa5ae; break-after: avoid; }
 h3 { font-size: 9.5pt; font-weight: 600; margin: 4.5mm 0 1mm; break-after: avoid; }
 p { margin: 0 0 2mm; max-width: 165mm; }
@@ -51,7 +52,7 @@ td:has(.nb), .nb { white-space: nowrap; }
 .mark.doubt { color: #a34a00; }
 .mark.note { color: #5b646d; font-weight: 400; }
 .cautions { border-left: 2pt solid #d55e00; padding: 0.3mm 0 0.3mm 3mm; margin: 0 0 4mm; font-size: 8pt; color: #414a52; break-inside: avoid; }
-figure { margin: 2mm 0 4mm; break-inside: avoid; }
+figure { margin: 4mm 0; break-inside: avoid; }
 figure svg { display: block; width: 100%; height: auto; }
 figcaption { font-size: 8.5pt; color: #414a52; margin-top: 1mm; }
 section.whole { break-inside: avoid; }

@@ -1,5 +1,5 @@
 import type { Budget, ResultName } from '../../reduction/reduction.ts';
-import { dofText, estimateText, NOTHING, numberText, percentText, shortText, uncertaintyText } from '../number-text.ts';
+import { dofText, estimateText, numberText, percentText, shortText, uncertaintyText } from '../number-text.ts';
 import { type Quantity, quantities } from '../quantities.ts';
 import type { Results } from '../results.ts';
 import { html, type Markup, symbolMarkup, table } from './html.ts';
@@ -7,43 +7,49 @@ import { coefficient, shown } from './reduction.ts';
 
 /** Budgets by JCGM 100, correlations of the results, and the cross-check by JCGM 101; null where there is none of them. */
 export function uncertaintySection({ reduction }: Results): Markup | null {
-  const budgets = quantities.flatMap((q) => {
+  const known = quantities.flatMap((q) => {
     const budget = reduction.budget[q.name];
-    return budget ? [budgetTable(q, budget)] : [];
+    return budget ? [{ q, budget }] : [];
   });
+  const budgets = known.filter(({ budget }) => budget.u > 0);
+  const exact = known.filter(({ budget }) => !(budget.u > 0));
   if (budgets.length === 0 && reduction.monte_carlo === null) return null;
   return html`<section>
 <h2>Uncertainty</h2>
 ${budgets.length === 0 ? null : html`<p>Budgets by JCGM 100:2008 (GUM). Sensitivity: change of the result per change of the input. Share: contribution squared over <i>u</i> squared; correlated inputs can make the shares add up to another sum than 100 %.</p>`}
-${budgets}
+${exact.length === 0 ? null : html`<p>Without a budget, since no uncertainty is given for any of its inputs: ${exact.map(({ q }) => q.title.toLowerCase()).join(', ')}.</p>`}
+${budgets.map(({ q, budget }) => budgetTable(q, budget))}
 ${correlations(reduction.correlation)}
 ${monteCarlo(reduction.monte_carlo)}
 </section>`;
 }
 
 function budgetTable(q: Quantity, budget: Budget): Markup {
-  const rows = budget.rows.map((row) => [
+  const counted = budget.rows.filter((row) => row.contribution !== 0);
+  const exact = budget.rows.filter((row) => row.contribution === 0);
+  const rows = counted.map((row) => [
     row.input,
     html`<span class="nb">${shortText(row.value)}</span>`,
     numberText(row.u, 2),
-    row.unit === '1' ? '' : row.unit,
+    unitText(row.unit),
     numberText(row.sensitivity, 3),
     numberText(row.contribution, 2),
     dofText(row.dof),
-    budget.u > 0 ? percentText((row.contribution / budget.u) ** 2) : NOTHING,
+    percentText((row.contribution / budget.u) ** 2),
   ]);
   const total = [
     html`Result ${symbolMarkup(q.symbol)}`,
     numberText(budget.value, 6),
     '',
-    budget.unit === '1' ? '' : budget.unit,
+    unitText(budget.unit),
     '',
     html`<i>u</i> = ${numberText(budget.u, 2)}`,
     dofText(budget.effective_dof),
     '',
   ];
+  const [value, u, expanded] = [budget.value, budget.u, budget.expanded_u].map((x) => x * q.perUnit);
   return html`<section class="whole">
-<h3>${q.title} ${symbolMarkup(q.symbol)} = ${estimateText(budget.value * q.perUnit, budget.u * q.perUnit, q.unit)}; expanded <i>U</i> = ${uncertaintyText(budget.expanded_u * q.perUnit, q.unit)} (<i>k</i> = ${budget.coverage_factor.toFixed(2)}, 95 %)</h3>
+<h3>${q.title} ${symbolMarkup(q.symbol)} = ${estimateText(value ?? null, u ?? null, q.unit)}; expanded <i>U</i> = ${uncertaintyText(expanded ?? 0, q.unit, value ?? null)} (<i>k</i> = ${budget.coverage_factor.toFixed(2)}, 95 %)</h3>
 ${table({
   heads: [
     'Quantity',
@@ -51,7 +57,7 @@ ${table({
     'Standard uncertainty',
     'Unit',
     'Sensitivity',
-    html`Contribution <small>${budget.unit}</small>`,
+    html`Contribution <small>${unitText(budget.unit)}</small>`,
     'Degrees of freedom',
     'Share',
   ],
@@ -59,7 +65,12 @@ ${table({
   numbers: [1, 2, 4, 5, 6, 7],
   classes: [...rows.map(() => null), 'total'],
 })}
+${exact.length === 0 ? null : html`<p class="small">Taken as exact, or without influence: ${exact.map((row) => row.input).join('; ')}.</p>`}
 </section>`;
+}
+
+function unitText(unit: string): string {
+  return unit === '1' ? '' : unit;
 }
 
 function correlations(correlation: Results['reduction']['correlation']): Markup | null {

@@ -1,6 +1,6 @@
 import { type LegendEntry, legend, lineSample } from './legend.ts';
 import { type Marker, marker } from './markers.ts';
-import { clip, levelLine, type Panel, panelAxes, path } from './panel.ts';
+import { clip, curve, levelLine, type Panel, panelAxes, path } from './panel.ts';
 import { clipId, type PlotOptions } from './ring-down-plot.ts';
 import { domainOf, linearScale } from './scale.ts';
 import { element, escapeText, type Label, svgDocument } from './svg.ts';
@@ -104,12 +104,12 @@ function residualDomain(curves: CurrentCurves): readonly [number, number] {
 }
 
 function band(panel: Panel, curves: CurrentCurves, theme: PlotTheme): string {
-  const { curve } = curves;
-  if (!curve?.u) return '';
+  const { curve: line } = curves;
+  if (!line?.u) return '';
   const edge = (sign: 1 | -1) =>
-    curve.current_A.flatMap((current, i): [number, number][] => {
+    line.current_A.flatMap((current, i): [number, number][] => {
       const at = panel.x.place(current);
-      const y = panel.y.place((curve.value[i] ?? Number.NaN) + sign * (curve.u?.[i] ?? Number.NaN));
+      const y = panel.y.place((line.value[i] ?? Number.NaN) + sign * (line.u?.[i] ?? Number.NaN));
       return at === null || y === null ? [] : [[at, y]];
     });
   const outline = [...edge(1), ...edge(-1).reverse()];
@@ -119,14 +119,10 @@ function band(panel: Panel, curves: CurrentCurves, theme: PlotTheme): string {
 }
 
 function fitted(panel: Panel, curves: CurrentCurves, theme: PlotTheme): string {
-  const line = (curves.curve?.current_A ?? []).flatMap((current, i): [number, number][] => {
-    const at = panel.x.place(current);
-    const y = panel.y.place(curves.curve?.value[i] ?? Number.NaN);
-    return at === null || y === null ? [] : [[at, y]];
-  });
-  return line.length < 2
-    ? ''
-    : element('path', { d: path(...line), fill: 'none', stroke: theme.fit, 'stroke-width': 1.6 });
+  if (!curves.curve) return '';
+  const { current_A, value } = curves.curve;
+  const d = curve(panel, current_A, value, [...current_A.keys()]);
+  return d && element('path', { d, fill: 'none', stroke: theme.fit, 'stroke-width': 1.6 });
 }
 
 /** A point with its error bars; the name of a segment stands beside it where it is not to be trusted. */

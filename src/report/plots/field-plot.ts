@@ -52,7 +52,7 @@ export function fieldCurves({ segments, reduction }: PlottedResults): CurrentCur
   };
 }
 
-/** What `restDirectionPlot` draws, in degrees; fitted values are joined in the order of the current. */
+/** What `restDirectionPlot` draws, in degrees. */
 export function restDirectionCurves({ segments, reduction }: PlottedResults): CurrentCurves {
   const used = new Set(reduction.points_used);
   const rows = new Map(segments.map((s) => [s.id, s]));
@@ -76,7 +76,7 @@ export function restDirectionCurves({ segments, reduction }: PlottedResults): Cu
     quantity: ['rest direction / °'],
     residualQuantity: ['resid. / °'],
     points,
-    curve: joined(turned),
+    curve: turning(turned, reduction.curve),
     curveName: 'fitted turning',
   };
 }
@@ -87,13 +87,45 @@ function usedIds(segments: readonly SegmentResult[], reduction: Reduction): Read
   return new Set(segments.filter((s) => s.left_out === null).map((s) => s.id));
 }
 
-function joined(points: readonly FittedPoint[]): CurrentCurves['curve'] {
-  const ordered = [...points].sort((a, b) => a.current_A - b.current_A);
-  return {
-    current_A: ordered.map((p) => p.current_A),
-    value: ordered.map((p) => p.fitted_equilibrium_deg ?? Number.NaN),
-    u: null,
-  };
+/**
+ * The model's turning on the grid of currents, set upon the zero that the fitted rest directions share. Null where they don't
+ * share one (several recordings or views): there is no one curve then.
+ */
+function turning(points: readonly FittedPoint[], curve: Reduction['curve']): CurrentCurves['curve'] {
+  const rest = curve?.rest_from_axis_deg;
+  if (!curve || !rest || points.length === 0) return null;
+  const offsets = points.map((p) => halfTurn((p.fitted_equilibrium_deg ?? 0) - at(curve.current_A, rest, p.current_A)));
+  const first = offsets[0] ?? 0;
+  const spread = offsets.map((offset) => halfTurn(offset - first)).sort((a, b) => a - b);
+  const zero = first + (spread[spread.length >> 1] ?? 0);
+  // Where the curve is steep the grid is too coarse to tell an offset: a quarter of the points may differ.
+  if (offsets.filter((offset) => Math.abs(halfTurn(offset - zero)) > 2).length > points.length / 4) return null;
+  const current_A: number[] = [];
+  const value: number[] = [];
+  for (const [i, current] of curve.current_A.entries()) {
+    const angle = halfTurn((rest[i] ?? 0) + zero);
+    // The curve is broken where it is folded by half a turn.
+    if (value.length > 0 && Math.abs(angle - (value.at(-1) ?? 0)) > 90) {
+      current_A.push(current);
+      value.push(Number.NaN);
+    }
+    current_A.push(current);
+    value.push(angle);
+  }
+  return { current_A, value, u: null };
+}
+
+/** An angle in degrees brought into (-90, 90]: a bar looks the same after half a turn. */
+function halfTurn(angle_deg: number): number {
+  return angle_deg - 180 * Math.ceil(angle_deg / 180 - 0.5);
+}
+
+/** Value at `x` on a grid, linear between its points. */
+function at(grid: readonly number[], values: readonly number[], x: number): number {
+  const above = grid.findIndex((g) => g >= x);
+  const i = above < 0 ? grid.length - 1 : Math.max(1, above);
+  const [x0, x1, y0, y1] = [grid[i - 1] ?? 0, grid[i] ?? 1, values[i - 1] ?? 0, values[i] ?? 0];
+  return x1 === x0 ? y1 : y0 + halfTurn(y1 - y0) * ((x - x0) / (x1 - x0));
 }
 
 function place(segment: SegmentResult, current_A: number, used: ReadonlySet<string>) {

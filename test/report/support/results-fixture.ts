@@ -207,7 +207,7 @@ function exampleReduction(rows: readonly SegmentResult[]): Reduction {
           chi_square: 8.1,
           dof: 8,
           parameters: 2,
-          aicc: 13.8,
+          criterion: 13.8,
           chosen: true,
         },
         {
@@ -218,7 +218,7 @@ function exampleReduction(rows: readonly SegmentResult[]): Reduction {
           chi_square: 7.6,
           dof: 7,
           parameters: 3,
-          aicc: 17.6,
+          criterion: 17.6,
           chosen: false,
         },
       ],
