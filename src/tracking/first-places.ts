@@ -15,7 +15,7 @@ export interface TriedPlace {
   readonly agreement: Agreement | null;
 }
 
-/** Farthest turn from the sample's middle that is looked for, radians. */
+/** Farthest turn from the sample's middle that is ever looked for, radians. */
 const WIDEST_TURN = 1.2;
 
 /**
@@ -55,10 +55,11 @@ export function firstPlaces(pictures: readonly Picture<Uint8Array>[], motion: Mo
       const energy = valueAt(motion.energy, centre.x + c * u - s * v, centre.y + squash * (s * u + c * v));
       layers.weight[at] = layers.weight[at] !== 0 && energy > 0 ? 1 / (4 * motion.noise + 0.1 * energy) : 0;
     }
-    const points = choosePoints(layers, 1500);
-    const few = thinPoints(points, 350);
-    const step = Math.max(0.01, 1.5 / points.reach_px);
-    const range = { from: motion.axis_rad - WIDEST_TURN, to: motion.axis_rad + WIDEST_TURN, step, tolerance: 3 };
+    const points = choosePoints(layers, 1000);
+    const few = thinPoints(points, 250);
+    const step = Math.max(0.01, 2 / points.reach_px);
+    const widest = Math.min(WIDEST_TURN, 0.1 + 1.5 * Math.atan2(motion.across_px, motion.along_px));
+    const range = { from: motion.axis_rad - widest, to: motion.axis_rad + widest, step, tolerance: 3 };
     tried = pictures.map((picture, t) => {
       const place = { ...reference.place, gain: motion.gain[t]!, offset: motion.offset[t]! };
       if (t !== middle) {

@@ -42,7 +42,11 @@ export class Follower {
   next(picture: Picture<Uint8Array>, time_s: number): Fix {
     const { background, points, usualShare, usualMisfit } = this.#model;
     const place = this.#look(picture, time_s);
-    const agreement = register(picture, background, points, place, [4, 3, 3]);
+    let agreement = register(picture, background, points, place, [4, 3]);
+    // Two steps are enough from a good prediction; more only where the last one was still long.
+    for (let more = 0; more < 3 && agreement !== null && agreement.lastStep_px > 0.03; more++) {
+      agreement = register(picture, background, points, place, [3]);
+    }
     let reason: Refusal | null = null;
     if (agreement === null) reason = 'no_fit';
     else if (agreement.outside > 0.3) reason = 'left_region';

@@ -229,16 +229,16 @@ export function uncover(
       known[at] = 1;
     }
   }
-  fillIn(result, known);
+  fillIn(result, known, 8);
   return result;
 }
 
-/** Fills unknown pixels from known neighbours, ring by ring. */
-function fillIn(picture: Picture, known: Uint8Array): void {
+/** Fills unknown pixels from known neighbours, ring by ring, so many rings deep: farther in the bar always covers them. */
+function fillIn(picture: Picture, known: Uint8Array, rings: number): void {
   const { width, height, data } = picture;
   let unknown: number[] = [];
   for (let at = 0; at < known.length; at++) if (known[at] === 0) unknown.push(at);
-  while (unknown.length > 0) {
+  for (let ring = 0; ring < rings && unknown.length > 0; ring++) {
     const left: number[] = [];
     const done: number[] = [];
     for (const at of unknown) {

@@ -53,9 +53,9 @@ export type NoBar = 'still' | 'no_likeness' | 'no_outline';
 /** Most points compared per frame. */
 export const MOST_POINTS = 2000;
 /** Pictures the bar is learnt from. */
-export const SAMPLE = 32;
+export const SAMPLE = 28;
 /** Larger sides are shrunk below this for the first look, pixels. */
-export const COARSE_SIDE = 200;
+export const COARSE_SIDE = 140;
 
 /** Learns bar and background from the opening frames of a stretch (all of one size). */
 export function learnBar(frames: readonly Frame[], squash: number): BarModel | NoBar {
@@ -109,7 +109,7 @@ export function learnBar(frames: readonly Frame[], squash: number): BarModel | N
   }
   let background = emptyPicture(1, 1);
   let points = choosePoints(layers, MOST_POINTS, outline);
-  for (let round = 0; round < 3; round++) {
+  for (let round = 0; round < 2; round++) {
     background = uncover(placed(sample, tried), outline, squash, 3);
     layers = separate(placed(sample, tried), grid, background, seeThrough(outline, grid), layers.noise);
     points = choosePoints(layers, MOST_POINTS, outline);

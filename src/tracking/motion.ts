@@ -33,17 +33,18 @@ export function findMotion(pictures: readonly Picture<Uint8Array>[], squash: num
   const offset = pictures.map(() => 0);
   const common = emptyPicture(width, height);
   const spread = emptyPicture(width, height);
-  const column = new Float32Array(pictures.length);
+  // The first look, for the brightness alone, takes every third picture.
+  const every = (_: unknown, t: number): boolean => t % 3 === 0;
+  middleOf(pictures.filter(every), gain.filter(every), offset.filter(every), common.data, spread.data);
   for (let round = 0; round < 2; round++) {
-    middleOf(pictures, gain, offset, common.data, spread.data, column);
     const typical = quantile(spread.data, 0.2) + 0.3;
     for (const [t, picture] of pictures.entries()) {
       const fit = brightness(picture.data, common.data, spread.data, typical);
       gain[t] = fit.gain;
       offset[t] = fit.offset;
     }
+    if (round === 0) middleOf(pictures, gain, offset, common.data, spread.data);
   }
-  middleOf(pictures, gain, offset, common.data, spread.data, column);
   const soft = blur(spread, 1).data;
   const noise = Math.max(0.05, quantile(soft, 0.2));
   const mask = { width, height, data: new Uint8Array(size) };
@@ -137,9 +138,9 @@ function middleOf(
   offset: readonly number[],
   common: Float32Array,
   spread: Float32Array,
-  column: Float32Array,
 ): void {
   const n = pictures.length;
+  const column = new Float32Array(n);
   const drop = Math.floor(n / 20);
   const scale = gain.map((g) => 1 / g);
   for (let at = 0; at < common.length; at++) {

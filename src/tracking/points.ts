@@ -76,25 +76,14 @@ export function choosePoints(layers: BarLayers, most: number, outline: Outline |
     }
   }
   const worth = new Float32Array(size);
-  const candidates: number[] = [];
+  let candidates = 0;
   for (let at = 0; at < size; at++) {
     if (weight[at] === 0) continue;
     const main = turns ? turning[at]! / (turningSum || 1) : along[at]! / (alongSum || 1);
     worth[at] = 2 * main + along[at]! / (alongSum || 1) + across[at]! / (acrossSum || 1);
-    if (worth[at]! > 0) candidates.push(at);
+    if (worth[at]! > 0) candidates++;
   }
-  let chosen = candidates;
-  if (candidates.length > most) {
-    // Four fifths are the most telling ones; the rest is spread over what is left, to fix brightness and notice a hand.
-    const telling = Math.round(most * 0.8);
-    const order = [...candidates].sort((a, b) => worth[b]! - worth[a]! || a - b);
-    const rest = order.slice(telling).sort((a, b) => a - b);
-    const stride = rest.length / (most - telling);
-    chosen = order.slice(0, telling);
-    for (let i = 0; i < most - telling; i++) chosen.push(rest[Math.floor(i * stride)]!);
-    // In memory order, so that neighbouring points read neighbouring pixels.
-    chosen.sort((a, b) => a - b);
-  }
+  const chosen = mostWorth(worth, candidates, most);
   const count = chosen.length;
   const column = (): Float32Array => new Float32Array(count);
   const points = {
@@ -131,6 +120,28 @@ export function choosePoints(layers: BarLayers, most: number, outline: Outline |
   }
   for (let i = 0; i < count; i++) points.knowledge[i] = known > 0 ? points.knowledge[i]! / known : 1 / count;
   return points;
+}
+
+/**
+ * Indices of the places worth most, in memory order, so that neighbouring points read neighbouring pixels. Four fifths
+ * are the most telling ones; the rest is spread over what is left, to fix the brightness and notice a hand.
+ */
+function mostWorth(worth: Float32Array, candidates: number, most: number): number[] {
+  const telling = candidates > most ? Math.round(most * 0.8) : candidates;
+  const level = telling > 0 ? worth.slice().sort()[worth.length - telling]! : 0;
+  const stride = candidates > most ? (candidates - telling) / (most - telling) : 1;
+  const chosen: number[] = [];
+  let passed = 0;
+  let taken = 0;
+  for (let at = 0; at < worth.length; at++) {
+    if (worth[at] === 0) continue;
+    if (worth[at]! >= level) chosen.push(at);
+    else if (passed++ >= taken * stride) {
+      chosen.push(at);
+      taken++;
+    }
+  }
+  return chosen;
 }
 
 /** About `most` of the points, evenly taken: enough to look for the bar coarsely. */
