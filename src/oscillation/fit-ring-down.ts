@@ -6,7 +6,7 @@ import { type Facts, faults, findings } from './checks.ts';
 import { chooseStart } from './choose-start.ts';
 import { derived, withClock } from './derived.ts';
 import { findJump } from './jumps.ts';
-import { DRAG, DRIFT, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA, SHARE, SKEW } from './model.ts';
+import { DRAG, DRIFT, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA, SHARE } from './model.ts';
 import { withoutPrior } from './parameter-covariance.ts';
 import type { RingDown, RingDownOptions, RingDownOutcome } from './ring-down.ts';
 import { foldedFrom, gapRival } from './rivals.ts';
@@ -21,8 +21,12 @@ const FEWEST_POSES = 24;
 const NOMINAL_AMPLITUDE_rad = 0.14;
 /** Fall of chi-square by one more parameter that Akaike's criterion asks for, beside the correction for few samples. */
 const AIC_PENALTY = 2;
-/** A prior further than this many standard uncertainties from what the data say is doubted rather than the data. */
+/**
+ * A prior further than this many standard uncertainties from what the data say is doubted rather than the data; the share's only where it
+ * is also off by more than `SHARE_APART`: smaller disagreements come from disturbances, which a prior is there to withstand.
+ */
 const TENSION = 4;
+const SHARE_APART = 0.3;
 
 /**
  * Fits the decaying twist of one segment: frequency in the limit of small amplitude, damping, rest direction, each with a standard uncertainty
@@ -73,15 +77,16 @@ function asksForDrag(fit: TwistFit): boolean {
 function withWiderPriors(series: Series, fit: TwistFit): { fit: TwistFit; amplitudeLawOdd: boolean } {
   const widened: number[] = [];
   const priors = fit.model.priors.map((prior) => {
-    if (![SHARE, SKEW, DRAG].includes(prior.parameter)) return prior;
+    if (prior.parameter !== SHARE && prior.parameter !== DRAG) return prior;
     const free = withoutPrior(fit, prior);
     const apart = free === null ? 0 : Math.abs(free.value - prior.value);
     if (free === null || apart < TENSION * Math.hypot(free.u, prior.u)) return prior;
+    if (prior.parameter === SHARE && apart < SHARE_APART) return prior;
     widened.push(prior.parameter);
     return { ...prior, u: apart };
   });
   const again = widened.length > 0 ? fitTwist(series, { ...fit.model, priors }, fit.parameters, fit) : null;
-  return { fit: again ?? fit, amplitudeLawOdd: widened.includes(SHARE) || widened.includes(SKEW) };
+  return { fit: again ?? fit, amplitudeLawOdd: widened.includes(SHARE) };
 }
 
 function factsOf(
