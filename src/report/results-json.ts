@@ -1,4 +1,5 @@
 import { columns } from './columns.ts';
+import { reductionSchema } from './reduction-schema.ts';
 import type { Results } from './results.ts';
 
 const TOP = [
@@ -23,7 +24,7 @@ export function resultsText(results: Results): string {
   const ordered = {
     ...inOrder(results, TOP),
     segments: results.segments.map((segment) => inOrder(segment, segmentKeys)),
-    reduction: results.reduction,
+    reduction: inOrder(results.reduction, Object.keys(reductionSchema.shape)),
   };
   return `${JSON.stringify(ordered, null, 2)}\n`;
 }

@@ -17,7 +17,7 @@ export function provenance(results: Results): Markup {
 <dl class="facts">
 <dt>Session file, SHA-256</dt><dd><code>${session.sha256}</code></dd>
 <dt>Program</dt><dd>${results.program}</dd>
-<dt>Decoder</dt><dd>${results.ffmpeg || 'not stated'}</dd>
+<dt>Decoder</dt><dd>${decoder(results.ffmpeg)}</dd>
 </dl>
 ${
   rows.length === 0
@@ -86,6 +86,12 @@ function titleCase(name: string): string {
 function shown(value: unknown): string {
   if (typeof value === 'number') return typedText(value);
   return typeof value === 'string' ? value : '';
+}
+
+/** The version alone doesn't say of what it is one. */
+function decoder(version: string): string {
+  if (version === '') return 'not stated';
+  return /^ffmpeg/i.test(version) ? version : `ffmpeg ${version}`;
 }
 
 /** Digits in groups of three, set apart by thin spaces. */

@@ -109,7 +109,7 @@ export function fitDetails({ reduction }: Results): Markup | null {
         rows: model.candidates.map((c) => [
           MODELS[c.kind],
           c.fibre,
-          c.chi_square.toFixed(2),
+          numberText(c.chi_square, 4),
           dofText(c.dof),
           c.parameters,
           c.criterion.toFixed(2).replace('-', '−'),

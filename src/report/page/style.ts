@@ -29,6 +29,7 @@ th { text-align: left; font-weight: 600; color: #414a52; vertical-align: bottom;
 td { vertical-align: top; border-bottom: 0.4pt solid #dde2e6; padding: 0.8mm 1.6mm; }
 th:first-child, td:first-child { padding-left: 0; }
 th:last-child, td:last-child { padding-right: 0; }
+th:first-child:nth-last-child(2) { width: 30mm; }
 .n { text-align: right; white-space: nowrap; }
 th.n { white-space: normal; }
 th small, td small, .small { font-size: 7.5pt; font-weight: 400; color: #5b646d; }
