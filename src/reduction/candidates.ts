@@ -38,8 +38,8 @@ export interface ScaledCandidate extends Candidate {
   readonly scaleDirections: number;
   /** Chi-square for the uncertainties as stated. */
   readonly statedChiSquare: number;
-  /** Akaike's criterion with the small-sample term; lower is better. */
-  readonly aicc: number;
+  /** Akaike's criterion (lower is better), see `criterionOf`. */
+  readonly criterion: number;
 }
 
 /**
@@ -144,8 +144,7 @@ function reversalWithin({ current_A }: Observations, signs: Int8Array | null, al
 
 /**
  * Raises the uncertainties of frequencies (with currents) and of directions, each by what its own residuals ask for (Birge's
- * ratio, Phys. Rev. 40 (1932) 207, group by group), where chance would give such scatter less than once in twenty; and
- * works out Akaike's criterion for the likelihood with the scales in it.
+ * ratio, Phys. Rev. 40 (1932) 207, group by group), where chance would give such scatter less than once in twenty.
  */
 export function scaleToScatter(data: Observations, candidate: Candidate): ScaledCandidate {
   let { fit } = candidate;
@@ -168,8 +167,6 @@ export function scaleToScatter(data: Observations, candidate: Candidate): Scaled
     if (again === null) break;
     fit = again;
   }
-  const n = data.y.length;
-  const { free, rows } = fit;
   return {
     ...candidate,
     fit,
@@ -177,12 +174,27 @@ export function scaleToScatter(data: Observations, candidate: Candidate): Scaled
     scaleFrequencies,
     scaleDirections,
     statedChiSquare: candidate.fit.chiSquare,
-    aicc:
-      fit.chiSquare +
-      2 * (n * Math.log(scaleFrequencies) + (rows - n) * Math.log(scaleDirections)) +
-      2 * free +
-      (2 * free * (free + 1)) / Math.max(rows - free - 1, 1),
+    criterion: criterionOf(fit, handicapOf(candidate), data.y.length, scaleFrequencies, scaleDirections),
   };
+}
+
+/**
+ * Akaike's criterion: -2 log likelihood (up to what all models share) + 2 per parameter; with its small-sample term (Hurvich and
+ * Tsai, Biometrika 76 (1989) 297) where the scatter had to be estimated as well, since only then does it apply. A model that
+ * leaves less than two degrees of freedom hardly shows whether it is right and starts behind (by common sense, not by theory).
+ */
+function criterionOf(fit: SweepFit, handicap: number, n: number, frequencies: number, directions: number): number {
+  const { free, rows, dof, chiSquare } = fit;
+  const scales = 2 * (n * Math.log(frequencies) + (rows - n) * Math.log(directions));
+  const estimated = frequencies > 1 || directions > 1;
+  const smallSample = estimated ? (2 * free * (free + 1)) / Math.max(rows - free - 1, 1) : 0;
+  const unchecked = dof === 0 ? 20 : dof === 1 ? 4 : 0;
+  return chiSquare + scales + 2 * free + smallSample + unchecked + handicap;
+}
+
+/** On one side of the reversal a field across the axis shows in frequencies alone only as a slight bend, which other things make too. */
+function handicapOf({ proposal, reversal_A }: Candidate): number {
+  return proposal.kind === 'hyperbola' && reversal_A === null ? 4 : 0;
 }
 
 /** Factor by which uncertainties fall short of the scatter; 1 where the scatter may be chance. */

@@ -99,7 +99,7 @@ function separation({ values, data, context }: Findings, { chosen, candidates }:
   if (kind === 'hyperbola') checks.push(say.acrossFromFrequencies());
   const rivals = candidates.filter((other) => other !== chosen && other.proposal.kind === kind);
   for (const rival of rivals) {
-    const difference = rival.aicc - chosen.aicc;
+    const difference = rival.criterion - chosen.criterion;
     if (difference > 4) continue;
     const moved = sidesDiffer(data, chosen.reversal_A, rival.reversal_A);
     if (moved.length > 0) checks.push(say.branchAmbiguous(moved, difference));

@@ -23,8 +23,6 @@ export interface ModelChoice {
 const wildDirection_rad = (2 * Math.PI) / 180;
 /** How a fibre can follow a bar that turns round, the usual way first. */
 const twoSidedTurns: readonly Turn[] = ['with the field', 'set back', 'against the field'];
-/** By how much Akaike's criterion must fall before an across component is believed from frequencies alone. */
-const clearGain = 6;
 
 /**
  * Fits every model that the data could carry and chooses. Rest directions are used where they exist, since they alone show which
@@ -54,16 +52,11 @@ export function chooseModel(data: Observations, known: KnownFibre | null): Model
       known,
     ),
   ];
-  const straight = lowest(plain);
-  if (straight === null) return null;
-  const hyperbolas = fitAll(data, likely.slice(0, 2).flatMap(hyperbolaProposals), known);
-  const curved = lowest(hyperbolas);
-  const isCurved = curved !== null && curved.aicc < straight.aicc - clearGain && isAcrossSeen(curved);
-  return {
-    chosen: isCurved ? curved : straight,
-    candidates: [...plain, ...hyperbolas, ...turning],
-    directionsIgnored: hasDirections,
-  };
+  const fromFrequencies = [...plain, ...fitAll(data, likely.slice(0, 2).flatMap(hyperbolaProposals), known)];
+  const chosen = lowest(fromFrequencies);
+  return chosen === null
+    ? null
+    : { chosen, candidates: [...fromFrequencies, ...turning], directionsIgnored: hasDirections };
 }
 
 /**
@@ -95,9 +88,18 @@ function isAdequate(candidate: Candidate | ScaledCandidate): boolean {
   return dof > 0 && !raised && chiSquare < dof + 3 * Math.sqrt(2 * dof);
 }
 
+/** Candidates fitted to the same data as the chosen one: with rest directions, or with frequencies alone. */
+export function rivals({ chosen, candidates }: ModelChoice): ScaledCandidate[] {
+  const { directions } = chosen.fit.model;
+  return candidates.filter((other) => other !== chosen && other.fit.model.directions === directions);
+}
+
 /** The candidate with the lowest criterion; null for none. */
 function lowest(candidates: readonly ScaledCandidate[]): ScaledCandidate | null {
-  return candidates.reduce<ScaledCandidate | null>((best, c) => (best === null || c.aicc < best.aicc ? c : best), null);
+  return candidates.reduce<ScaledCandidate | null>(
+    (best, c) => (best === null || c.criterion < best.criterion ? c : best),
+    null,
+  );
 }
 
 function lineProposal(data: Observations, split: BranchSplit): Proposal {
@@ -203,12 +205,6 @@ function hasPlausibleSides(data: Observations, { fit }: Candidate): boolean {
     new Set(data.current_A.filter((current) => current + p[at.along]! > 0 === positive)).size;
   const share = p[at.fibre]! / (p[at.slope]! * Math.hypot(p[at.along]!, p[at.across]!));
   return isPlausible(Math.min(side(true), side(false)), share);
-}
-
-/** An across component larger than twice its own uncertainty. */
-function isAcrossSeen({ fit }: ScaledCandidate): boolean {
-  const u = Math.sqrt(fit.covariance[at.across * fit.parameters.length + at.across]!);
-  return Math.abs(fit.parameters[at.across]!) > 2 * u;
 }
 
 /** Root mean square of the rest directions' residuals, rad. */

@@ -5,8 +5,9 @@ import { modelSentence } from './sentences.ts';
 
 /** How the fibre followed the bar, as the results file says it. */
 export function turnOf({ proposal, reversal_A }: ScaledCandidate): Model['turn'] {
-  if (reversal_A === null || proposal.turn === 'free') return 'one side';
-  return proposal.turn;
+  if (reversal_A === null) return 'one side';
+  // A fibre that is never twisted is one that was set back.
+  return proposal.turn === 'free' ? 'set back' : proposal.turn;
 }
 
 /** The chosen model and what it was chosen from, best first. */
@@ -18,7 +19,7 @@ export function modelOf({ chosen, candidates }: ModelChoice): Model {
     turn,
     sentence: modelSentence(chosen.proposal.kind, chosen.fibre, turn),
     candidates: [...candidates]
-      .sort((a, b) => a.aicc - b.aicc)
+      .sort((a, b) => a.criterion - b.criterion)
       .map((candidate) => summary(candidate, candidate === chosen)),
   };
 }
@@ -32,7 +33,7 @@ function summary(candidate: ScaledCandidate, chosen: boolean): Candidate {
     chi_square: candidate.statedChiSquare,
     dof: candidate.fit.dof,
     parameters: candidate.fit.free,
-    aicc: candidate.aicc,
+    criterion: candidate.criterion,
     chosen,
   };
 }

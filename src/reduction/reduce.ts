@@ -3,7 +3,7 @@ import type { Check } from '../oscillation/ring-down.ts';
 import { budgetOf, correlationOf, uncertaintyOf } from './budget.ts';
 import type { KnownFibre, ScaledCandidate } from './candidates.ts';
 import { checksOf } from './checks.ts';
-import { chooseModel, type ModelChoice } from './choose-model.ts';
+import { chooseModel, type ModelChoice, rivals } from './choose-model.ts';
 import { coilConstant } from './coil-constant.ts';
 import { curveOf } from './curve.ts';
 import { expectedField, u_modelHorizontal_T } from './expected-field.ts';
@@ -16,7 +16,7 @@ import { observe } from './observations.ts';
 import type { Budget, FitSummary, Reduction, ReductionInput, ResultName } from './reduction.ts';
 import { type ResultInputs, type ResultValues, resultNames, results } from './results.ts';
 import { noModelField } from './sentences.ts';
-import { type Source, type SourceContext, sources } from './sources.ts';
+import { rivalSources, type Source, type SourceContext, sources } from './sources.ts';
 import { compareSweeps, repeatedCurrents } from './sweep-comparison.ts';
 import { at } from './sweep-model.ts';
 import { distinctCurrents, selectPoints } from './used-points.ts';
@@ -45,7 +45,7 @@ export function reduce(input: ReductionInput): Reduction {
     stiffness,
   };
   const values = results(context.inputs);
-  const from = sources(context);
+  const from = [...sources(context), ...rivalSources(context, values, choice === null ? [] : rivals(choice))];
   const u = (name: ResultName) => uncertaintyOf(name, from);
   const expected = place === undefined ? null : expectedField(place);
   const expectedChecks: Check[] =

@@ -128,7 +128,8 @@ export interface Candidate {
   readonly chi_square: number;
   readonly dof: number;
   readonly parameters: number;
-  readonly aicc: number | null;
+  /** Akaike's, lower is better; differences below about 4 decide little. */
+  readonly criterion: number;
   readonly chosen: boolean;
 }
 

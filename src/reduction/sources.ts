@@ -34,6 +34,34 @@ export interface SourceContext {
   readonly stiffness: { readonly value: number; readonly u: number } | null;
 }
 
+/**
+ * Other models that explain the same data nearly as well: what the results would be with them, at their Akaike weight. About
+ * the chosen model's values the root mean square of the difference is its size times the root of the weight.
+ */
+export function rivalSources(
+  { inputs, candidate }: SourceContext,
+  values: ResultValues,
+  rivals: readonly ScaledCandidate[],
+): Source[] {
+  if (candidate === null) return [];
+  const weights = rivals.map((rival) => Math.exp(-(rival.criterion - candidate.criterion) / 2));
+  const total = 1 + weights.reduce((sum, weight) => sum + weight, 0);
+  return rivals.flatMap((rival, i) => {
+    const weight = weights[i]! / total;
+    if (weight < 1e-4) return [];
+    const others = results({ ...inputs, parameters: rival.fit.parameters });
+    const sensitivity: { [name in ResultName]?: number } = {};
+    for (const name of resultNames) {
+      const [here, there] = [values[name], others[name]];
+      if (here !== null && there !== null && here !== there) sensitivity[name] = there - here;
+    }
+    const row = 'choice of model';
+    return [
+      { row, value: null, u: Math.sqrt(weight), unit: '1', dof: Number.POSITIVE_INFINITY, pool: null, sensitivity },
+    ];
+  });
+}
+
 /** Everything that makes the results uncertain, each source independent of the others. */
 export function sources(context: SourceContext): Source[] {
   const gradient = gradients(context.inputs);
