@@ -11,6 +11,7 @@ import {
   withPart,
 } from './apparatus-fields.ts';
 import { PlacePart } from './place-part.tsx';
+import { PlanPart } from './plan-part.tsx';
 import { RigPart } from './rig-part.tsx';
 
 const COILS: readonly (readonly [CoilKind, string])[] = [
@@ -91,6 +92,7 @@ export function ApparatusSheet() {
         </header>
         <PlacePart place={session.value?.place} />
       </section>
+      <PlanPart />
     </div>
   );
 }

@@ -2,7 +2,7 @@ import { useEffect, useState } from 'preact/hooks';
 import type { Result } from '../../contract.ts';
 import { closeDialog } from '../state/dialogs.ts';
 import { ask } from '../state/host.ts';
-import { DialogFrame } from './dialogs.tsx';
+import { DialogFrame } from './dialog-frame.tsx';
 
 /** Versions, the ffmpeg in use, and the cautions. */
 export function AboutBox() {

@@ -1,5 +1,5 @@
 import { closeDialog, type Question } from '../state/dialogs.ts';
-import { DialogFrame } from './dialogs.tsx';
+import { DialogFrame } from './dialog-frame.tsx';
 
 /** A question with its answers as buttons. */
 export function QuestionBox({ question }: { question: Question }) {

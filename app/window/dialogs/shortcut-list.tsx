@@ -1,7 +1,7 @@
 import { commands, type Menu, menuLabels } from '../../contract.ts';
 import { keysText } from '../menu/accelerators.ts';
 import { closeDialog } from '../state/dialogs.ts';
-import { DialogFrame } from './dialogs.tsx';
+import { DialogFrame } from './dialog-frame.tsx';
 
 /** Keys that belong to one place rather than to a command. */
 const PLACES: readonly (readonly [string, string])[] = [

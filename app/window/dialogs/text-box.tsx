@@ -1,6 +1,6 @@
 import { useRef } from 'preact/hooks';
 import { closeDialog, type TextRequest } from '../state/dialogs.ts';
-import { DialogFrame } from './dialogs.tsx';
+import { DialogFrame } from './dialog-frame.tsx';
 
 /** Asks for one line of text. */
 export function TextBox({ request }: { request: TextRequest }) {

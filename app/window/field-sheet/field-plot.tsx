@@ -103,7 +103,7 @@ function PlotPoint({ of: p, x, y, first }: { of: CurrentPoint; x: Scale; y: Scal
           const next = event.currentTarget[way];
           if (!(next instanceof SVGElement) || !next.classList.contains('plot-point')) return;
           next.focus();
-          selectSegment(next.dataset['point'] ?? p.id);
+          selectSegment(next.dataset.point ?? p.id);
         } else return;
         event.preventDefault();
         event.stopPropagation();

@@ -1,4 +1,3 @@
-import { useMemo } from 'preact/hooks';
 import { CheckList } from '../parts/check-list.tsx';
 import { run } from '../state/command-table.ts';
 import { reduction, resultsState, waitingFor } from '../state/results.ts';
@@ -7,6 +6,7 @@ import { BudgetPart } from './budget-part.tsx';
 import { ExpectedPart } from './expected-part.tsx';
 import { FieldPlot } from './field-plot.tsx';
 import { LeaveOutPart } from './leave-out-part.tsx';
+import { NextPart } from './next-part.tsx';
 import { ReductionPart } from './reduction-part.tsx';
 import { ResultsTable } from './results-table.tsx';
 
@@ -15,7 +15,6 @@ export function FieldSheet() {
   const results = resultsState.value?.results ?? null;
   const found = reduction.value;
   const waiting = waitingFor.value.size;
-  const points = useMemo(() => found?.points.length ?? 0, [found]);
   return (
     <div class="field-sheet">
       <header class="sheet-head">
@@ -42,13 +41,14 @@ export function FieldSheet() {
         </button>
       </header>
       <ResultsTable />
-      {points > 0 && results ? <FieldPlot results={results} /> : null}
+      {found && found.points.length > 0 && results ? <FieldPlot results={results} /> : null}
       {found ? (
         <>
           <ReductionPart reduction={found} />
           <ExpectedPart reduction={found} />
           <CheckList checks={found.checks} none="No check found anything wrong with the sweep as a whole." />
           <LeaveOutPart reduction={found} />
+          <NextPart reduction={found} />
           <BudgetPart reduction={found} />
         </>
       ) : (

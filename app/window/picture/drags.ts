@@ -120,7 +120,10 @@ export function setRegion(region: Rectangle): void {
   const v = drawing.value === 'new-view' ? null : view.value;
   if (!r || region.width < SMALLEST_REGION_PX || region.height < SMALLEST_REGION_PX) return;
   drawing.value = null;
-  if (v) return edit('Draw the region', (s) => replaceView(s, viewWithRegion(v, region)));
+  if (v) {
+    edit('Draw the region', (s) => replaceView(s, viewWithRegion(v, region)));
+    return;
+  }
   let id: string | null = null;
   edit('Draw a region', (s) => {
     const added = addView(s, r.id, view.value?.kind ?? 'plan', region);

@@ -146,9 +146,15 @@ export function mark(start_s: number, end_s: number): void {
   const r = recording.value;
   const v = view.value;
   if (!session.value || !r) return;
-  if (!v) return tell('Draw the region around the bar first: a segment is followed in it.');
+  if (!v) {
+    tell('Draw the region around the bar first: a segment is followed in it.');
+    return;
+  }
   const stretch = markedStretch(session.value, r.id, start_s, end_s, whole_s.value);
-  if (!stretch) return tell('A segment can’t begin inside another one, and needs at least 0.3 s.');
+  if (!stretch) {
+    tell('A segment can’t begin inside another one, and needs at least 0.3 s.');
+    return;
+  }
   let id: string | null = null;
   edit('Mark a segment', (s) => {
     const added = addSegment(s, { recording: r.id, view: v.id, ...stretch });
@@ -187,9 +193,9 @@ function startHere(): void {
 
 function endHere(): void {
   const start_s = markStart.value;
-  if (start_s === null) return tell('Press B where the segment begins first.');
+  if (start_s === null) tell('Press B where the segment begins first.');
+  else mark(start_s, cursor_s.value);
   markStart.value = null;
-  mark(start_s, cursor_s.value);
 }
 
 async function exportTraces(): Promise<void> {

@@ -250,7 +250,6 @@ function turn(event: WheelEvent, x_px: number, width_px: number): void {
   const sideways = event.shiftKey ? event.deltaY || event.deltaX : event.deltaX;
   const length = span.value.end_s - span.value.start_s;
   if (Math.abs(sideways) > Math.abs(event.shiftKey ? 0 : event.deltaY)) {
-    return showSpan(panSpan(span.value, (sideways / Math.max(width_px, 1)) * length, whole_s.value));
-  }
-  showSpan(zoomSpan(span.value, toTime(x_px, span.value, width_px), 1.002 ** -event.deltaY, whole_s.value));
+    showSpan(panSpan(span.value, (sideways / Math.max(width_px, 1)) * length, whole_s.value));
+  } else showSpan(zoomSpan(span.value, toTime(x_px, span.value, width_px), 1.002 ** -event.deltaY, whole_s.value));
 }
