@@ -1,5 +1,5 @@
-import { join } from 'node:path';
 import { type FfmpegTools, findFfmpeg } from '../../src/recording/find-ffmpeg.ts';
+import { InputError } from '../../src/recording/input-error.ts';
 import { TrackerPool } from '../../src/tracking/pool.ts';
 import type { CommandId, FileToken, HostEvents, Transport } from '../contract.ts';
 import { ContentCache } from './content-cache.ts';
@@ -168,7 +168,11 @@ export async function startHost(options: HostOptions, file: string | null = null
     downloads,
     folder,
     unsaved,
-    save: (path) => keeper.saveTo(path ?? keeper.need().place?.path ?? join(process.cwd(), keeper.need().name)),
+    save: (path) => {
+      const place = path ?? keeper.need().place?.path;
+      if (place === undefined) throw new InputError('This session has no file yet: say where to save it.');
+      return keeper.saveTo(place);
+    },
     close,
     [Symbol.asyncDispose]: () => close(),
   };

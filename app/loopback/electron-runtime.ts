@@ -64,9 +64,12 @@ function electronFolder(): string | null {
 
 /** path.txt beside Electron's package file names the executable within dist; both come with the runtime. */
 function executableIn(folder: string, env: NodeJS.ProcessEnv): string | null {
+  const elsewhere = env.ELECTRON_OVERRIDE_DIST_PATH;
   try {
-    const name = readFileSync(join(folder, 'path.txt'), 'utf8').trim();
-    const path = join(env.ELECTRON_OVERRIDE_DIST_PATH ?? join(folder, 'dist'), name);
+    const stated = join(folder, 'path.txt');
+    const name = existsSync(stated) ? readFileSync(stated, 'utf8').trim() : elsewhere ? 'electron' : null;
+    if (name === null) return null;
+    const path = join(elsewhere ?? join(folder, 'dist'), name);
     accessSync(path, constants.X_OK);
     return path;
   } catch {
