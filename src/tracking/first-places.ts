@@ -1,6 +1,7 @@
 import type { PlacedPicture } from './layers.ts';
 import { separate } from './layers.ts';
 import type { Motion } from './motion.ts';
+import { movingLayer } from './moving-layer.ts';
 import type { Picture } from './picture.ts';
 import { emptyPicture, valueAt } from './picture.ts';
 import { pivotOf } from './pivot.ts';
@@ -18,12 +19,98 @@ export interface TriedPlace {
 /** Farthest turn from the sample's middle that is ever looked for, radians. */
 const WIDEST_TURN = 1.2;
 
+/** Turns at the edge of the motion that are tried, radians, on both sides. */
+const SPANS = [0.006, 0.01, 0.015, 0.022, 0.033, 0.05, 0.075, 0.11, 0.16, 0.23, 0.33, 0.48, 0.7];
+/** Places that explain this share of the motion are good enough not to look for others. */
+const GOOD = 0.8;
+
 /**
- * First placements of the bar in a sample of pictures before anything is known of it but where the picture moves: one
- * picture serves as the bar's likeness, the others are searched for the same pattern turned about the centre of motion,
- * then about the pivot found from that.
+ * First placements of the bar in a sample of pictures before anything is known of it but where the picture moves. Two
+ * ways, of which the one that explains more of the motion is kept: turns in proportion to how far each picture differs
+ * from the common one; and a search of all pictures for what one of them shows.
  */
 export function firstPlaces(pictures: readonly Picture<Uint8Array>[], motion: Motion, squash: number): TriedPlace[] {
+  const grid = {
+    halfU: Math.ceil(motion.along_px * 1.1 + 3),
+    halfV: Math.ceil(motion.across_px * 1.1 + 3),
+    squash,
+  };
+  const byswing = settle(pictures, placesBySwing(pictures, motion, grid), grid, motion);
+  if (byswing.explained > GOOD) return byswing.tried;
+  const searched = settle(pictures, placesBySearch(pictures, motion, squash), grid, motion);
+  return searched.explained > byswing.explained ? searched.tried : byswing.tried;
+}
+
+interface Grid {
+  readonly halfU: number;
+  readonly halfV: number;
+  readonly squash: number;
+}
+
+/** Registers all pictures twice with what the places show to be the moving bar. */
+function settle(
+  pictures: readonly Picture<Uint8Array>[],
+  from: readonly TriedPlace[],
+  grid: Grid,
+  motion: Motion,
+): { tried: TriedPlace[]; explained: number } {
+  const nothing = emptyPicture(pictures[0]!.width, pictures[0]!.height);
+  let tried = [...from];
+  for (let round = 0; round < 3; round++) {
+    const { layers, explained } = movingLayer(placed(pictures, tried), grid, motion);
+    if (round === 2 || explained === 0) return { tried, explained };
+    const points = choosePoints(layers, 1000);
+    tried = tried.map(({ place: before }, t) => {
+      const place = { ...before };
+      const agreement = register(pictures[t]!, nothing, points, place, [8, 6, 5, 4]);
+      return { place: agreement === null ? before : place, agreement };
+    });
+    if (soundIndices(tried).length < 3) return { tried, explained: 0 };
+  }
+  return { tried, explained: 0 };
+}
+
+/** Turns in proportion to the motion's swing, with the span that explains most of the motion. */
+function placesBySwing(pictures: readonly Picture<Uint8Array>[], motion: Motion, grid: Grid): TriedPlace[] {
+  const placesFor = (span: number): TriedPlace[] =>
+    pictures.map((_, t) => ({
+      place: {
+        turn: motion.axis_rad + span * motion.swing[t]!,
+        x_px: motion.x_px,
+        y_px: motion.y_px,
+        gain: motion.gain[t]!,
+        offset: motion.offset[t]!,
+      },
+      agreement: { misfit: 1, share: 1, outside: 0, sd: 1, lastStep_px: 0 },
+    }));
+  // Every third picture is enough to tell.
+  const few = (span: number) => placed(pictures, placesFor(span)).filter((_, t) => t % 3 === 0);
+  let best = 0;
+  let most = -1;
+  for (const size of SPANS) {
+    for (const span of [size, -size]) {
+      const { explained } = movingLayer(few(span), grid, motion);
+      if (explained > most) {
+        most = explained;
+        best = span;
+      }
+    }
+  }
+  for (const span of [best * 0.83, best * 1.2]) {
+    const { explained } = movingLayer(few(span), grid, motion);
+    if (explained > most) {
+      most = explained;
+      best = span;
+    }
+  }
+  return placesFor(best);
+}
+
+/**
+ * One picture serves as the bar's likeness; the others are searched for the same pattern turned about the centre of
+ * motion, then about the pivot found from that.
+ */
+function placesBySearch(pictures: readonly Picture<Uint8Array>[], motion: Motion, squash: number): TriedPlace[] {
   const { width, height } = pictures[0]!;
   const nothing = emptyPicture(width, height);
   const middle = motion.middle;
@@ -86,6 +173,11 @@ export function firstPlaces(pictures: readonly Picture<Uint8Array>[], motion: Mo
     if (moved < 0.03 * points.reach_px) break;
   }
   return tried;
+}
+
+/** The sound ones among the pictures, with their places. */
+export function placed(pictures: readonly Picture<Uint8Array>[], tried: readonly TriedPlace[]): PlacedPicture[] {
+  return soundIndices(tried).map((i) => ({ picture: pictures[i]!, place: tried[i]!.place }));
 }
 
 /** The placements that agree with the bar about as well as most do. */

@@ -1,10 +1,11 @@
 import type { Frame } from '../recording/recording.ts';
 import { findAxis } from './axis.ts';
 import type { TriedPlace } from './first-places.ts';
-import { firstPlaces, soundIndices } from './first-places.ts';
+import { firstPlaces, placed, soundIndices } from './first-places.ts';
 import type { BarLayers, Outline, PlacedPicture } from './layers.ts';
 import { seeThrough, separate, uncover } from './layers.ts';
 import { findMotion } from './motion.ts';
+import { movingLayer } from './moving-layer.ts';
 import { findOutline, straightenBy } from './outline.ts';
 import type { Picture } from './picture.ts';
 import { emptyPicture } from './picture.ts';
@@ -77,8 +78,8 @@ export function learnBar(frames: readonly Frame[], squash: number): BarModel | N
     squash,
   };
   let layers: BarLayers;
-  for (let round = 0; round < 3; round++) {
-    layers = separate(placed(coarse, tried), wide, null, null, motion.noise);
+  for (let round = 0; round < 2; round++) {
+    layers = movingLayer(placed(coarse, tried), wide, motion).layers;
     tried = again(coarse, nothing, choosePoints(layers, 1500), tried, [5, 4, 3]);
     tried = recentre(tried, squash, motion.along_px);
     if (soundIndices(tried).length < 3) return 'no_likeness';
@@ -166,11 +167,6 @@ function describe(
     layers,
     outline,
   };
-}
-
-/** The sound ones among the pictures, with their places. */
-export function placed(pictures: readonly Picture<Uint8Array>[], tried: readonly TriedPlace[]): PlacedPicture[] {
-  return soundIndices(tried).map((i) => ({ picture: pictures[i]!, place: tried[i]!.place }));
 }
 
 /** The places after registering the pictures anew. */

@@ -1,8 +1,8 @@
 import type { Frame } from '../recording/recording.ts';
 import { findEndWindow } from './end-window.ts';
-import { soundIndices, type TriedPlace } from './first-places.ts';
+import { placed, soundIndices, type TriedPlace } from './first-places.ts';
 import { type BarLayers, separate } from './layers.ts';
-import { again, type BarModel, evenly, MOST_POINTS, type NoBar, placed, SAMPLE } from './learn-bar.ts';
+import { again, type BarModel, evenly, MOST_POINTS, type NoBar, SAMPLE } from './learn-bar.ts';
 import { findMirror } from './mirror.ts';
 import { findMotion } from './motion.ts';
 import { emptyPicture } from './picture.ts';

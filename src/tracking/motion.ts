@@ -20,6 +20,8 @@ export interface Motion {
   readonly middle: number;
   /** A number for every picture that rises or falls with the bar's motion: its likeness to the picture at one extreme. */
   readonly phase: number[];
+  /** The same, two-sided and about in proportion to the bar's turn from its middle, the largest usual size being 1. */
+  readonly swing: number[];
 }
 
 /**
@@ -94,7 +96,7 @@ export function findMotion(pictures: readonly Picture<Uint8Array>[], squash: num
     along_px = Math.max(along_px, Math.abs(c * dx + s * dy));
     across_px = Math.max(across_px, Math.abs(c * dy - s * dx));
   }
-  const phase = phases(pictures, gain, offset, common, energy);
+  const { phase, swing } = phases(pictures, gain, offset, common, energy);
   let middle = 0;
   let least = Number.POSITIVE_INFINITY;
   for (const [t, picture] of pictures.entries()) {
@@ -108,27 +110,37 @@ export function findMotion(pictures: readonly Picture<Uint8Array>[], squash: num
       middle = t;
     }
   }
-  return { gain, offset, energy, noise, x_px, y_px, axis_rad, along_px, across_px, middle, phase };
+  return { gain, offset, energy, noise, x_px, y_px, axis_rad, along_px, across_px, middle, phase, swing };
 }
 
-/** Projection of every picture's difference from the common one on that of the picture that differs most. */
+/**
+ * Projections of every picture's difference from the common one on that of a picture near one extreme, and on that of one
+ * near the other. What a bar covers and uncovers when it turns are strips along its edges, as wide as it has turned, on
+ * one side for one sense and on the other for the other: a strip's overlap with the widest one grows in proportion.
+ */
 function phases(
   pictures: readonly Picture<Uint8Array>[],
   gain: readonly number[],
   offset: readonly number[],
   common: Picture,
   energy: Picture,
-): number[] {
+): { phase: number[]; swing: number[] } {
   const places: number[] = [];
   for (let at = 0; at < energy.data.length; at++) if (energy.data[at]! > 0) places.push(at);
   const differences = pictures.map((picture, t) =>
     Float32Array.from(places, (at) => (picture.data[at]! - offset[t]!) / gain[t]! - common.data[at]!),
   );
-  const sizes = differences.map((d) => d.reduce((sum, x) => sum + x * x, 0));
+  const dot = (a: Float32Array, b: Float32Array): number => a.reduce((sum, x, i) => sum + x * b[i]!, 0);
+  const sizes = differences.map((d) => dot(d, d));
   // Not the very largest, which may be a hand's.
   const order = sizes.map((_, t) => t).sort((a, b) => sizes[b]! - sizes[a]!);
-  const extreme = differences[order[Math.floor(order.length / 8)]!]!;
-  return differences.map((d) => d.reduce((sum, x, i) => sum + x * extreme[i]!, 0));
+  const one = order[Math.floor(order.length / 8)]!;
+  const phase = differences.map((d) => dot(d, differences[one]!));
+  const opposite = order.slice(Math.floor(order.length / 8)).find((t) => phase[t]! < 0.2 * sizes[one]!) ?? one;
+  const other = differences.map((d) => dot(d, differences[opposite]!));
+  const swing = phase.map((p, t) => Math.max(0, p) / sizes[one]! - Math.max(0, other[t]!) / sizes[opposite]!);
+  const usual = swing.map(Math.abs).sort((a, b) => a - b)[Math.floor(0.9 * swing.length)]! || 1;
+  return { phase, swing: swing.map((x) => Math.max(-1.5, Math.min(1.5, x / usual))) };
 }
 
 /** Median over time of the evened pictures, and the variance about it with the farthest tenth left out. */
