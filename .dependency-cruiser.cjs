@@ -10,7 +10,7 @@ const stage = (name, allowed) => ({
 module.exports = {
   forbidden: [
     { name: 'no-circles', severity: 'error', from: {}, to: { circular: true, viaOnly: { dependencyTypesNot: ['type-only'] } } },
-    { name: 'resolvable', severity: 'error', from: {}, to: { couldNotResolve: true, pathNot: '^electron$' } },
+    { name: 'resolvable', severity: 'error', from: {}, to: { couldNotResolve: true, pathNot: '^(electron|ffmpeg-static)$' } },
     stage('numerics', []),
     stage('recording', ['numerics']),
     stage('tracking', ['numerics', 'recording']),
@@ -45,6 +45,6 @@ module.exports = {
     doNotFollow: { path: 'node_modules' },
     tsConfig: { fileName: 'tsconfig.json' },
     tsPreCompilationDeps: 'specify',
-    enhancedResolveOptions: { extensions: ['.ts', '.tsx', '.js'], conditionNames: ['import', 'require', 'node', 'default', 'types'] },
+    enhancedResolveOptions: { exportsFields: ['exports'], extensions: ['.ts', '.tsx', '.js'], conditionNames: ['import', 'require', 'node', 'default', 'types'] },
   },
 };
