@@ -5,7 +5,8 @@ import type { Place } from './motion.ts';
 
 const WIDTH_m = 0.00016;
 const KNOT_m = 0.0011;
-const SHOWN_m = 0.3;
+/** How far above the bar the fibre is drawn. */
+export const SHOWN_m = 0.3;
 
 /** Draws the knot on the stirrup and the fibre that rises from it; seen from straight above only the knot shows. */
 export function drawFibre(patch: Patch, camera: Camera, place: Place, from_m: number, lampColour: Colour): void {

@@ -1,7 +1,7 @@
 import { type BarBody, barBox, drawBar, drawBarShadow, MOMENTS, type Patch } from './bar.ts';
 import type { BenchPlan } from './bench.ts';
 import { type Camera, project, warpAt, warped } from './camera.ts';
-import { drawFibre } from './fibre.ts';
+import { drawFibre, SHOWN_m } from './fibre.ts';
 import { drawHand, handBox, layHand } from './hand.ts';
 import { blurLight, blurReach, warpStill } from './lens.ts';
 import { type Place, placeAt } from './motion.ts';
@@ -166,6 +166,16 @@ export function* film(
       placesOfLine(line)[MOMENTS - 1]!,
     ]);
     let box = barBox(body, around, camera, look.lamp, look.mirror > 0, margin);
+    if (cameraPlan.elevation_deg < 80) {
+      // Seen from the side the fibre shows: the box reaches up along it.
+      const [fx, fy] = project(camera, [0, 0, look.bar.height_m + SHOWN_m]);
+      box = {
+        x0: Math.min(box.x0, Math.floor(fx) - 3),
+        x1: Math.max(box.x1, Math.ceil(fx) + 4),
+        y0: Math.min(box.y0, Math.floor(fy)),
+        y1: box.y1,
+      };
+    }
     const tip = tipAt(plan, schedule, camera, now, time);
     const touched = tip === null ? null : handBox(hand, tip[0], tip[1], w, h);
     if (touched !== null) {

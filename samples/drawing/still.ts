@@ -96,7 +96,8 @@ export function drawStill(still: Still, scene: StillScene, camera: Camera, box: 
         const along = (oy + toWall * dy) * ahead[0] - (ox + toWall * dx) * ahead[1];
         const up = oz + toWall * dz;
         const shade = 0.75 + 0.5 * (layeredNoise(along * 9, up * 9, seed + 31, 4) - 0.5);
-        const plank = Math.abs(((along / 0.11) % 1) - 0.5) > 0.49 ? 0.5 : 1;
+        const place = along / 0.11;
+        const plank = Math.abs(place - Math.floor(place) - 0.5) > 0.49 ? 0.5 : 1;
         lighting.at(
           ahead[0] * wall_m,
           ahead[1] * wall_m,
