@@ -1,4 +1,6 @@
-import { spawn } from 'node:child_process';
+import { execFileSync, spawn } from 'node:child_process';
+import { readFile, writeFile } from 'node:fs/promises';
+import { passthroughOption } from '../../src/recording/ffmpeg-version.ts';
 import type { FfmpegTools } from '../../src/recording/find-ffmpeg.ts';
 
 /** Displayed size of the pictures drawn here. */
@@ -66,7 +68,6 @@ export async function writeNumberedVideo(
     readonly output: readonly string[];
     readonly rate?: string;
     readonly rotation_deg?: number;
-    /** Picture size factor, for recordings whose pictures change size. */
     readonly filter?: string;
   },
 ): Promise<void> {
@@ -101,4 +102,60 @@ export function runFfmpeg(tools: FfmpegTools, args: readonly string[], input?: U
     child.stdin.on('error', () => {});
     child.stdin.end(input ?? Buffer.alloc(0));
   });
+}
+
+/** Output arguments for a file whose frame times are those of its pictures, in ticks of 1/90000 s. */
+export function ownTimes(tools: FfmpegTools): readonly string[] {
+  return [...passthroughOption(tools.version), '-enc_time_base', '1:90000'];
+}
+
+/** Filter for a rate that varies, a gap of 0.1 s and frames dropped: every eleventh is missing. */
+export const varyingTimes = [
+  'settb=1/90000',
+  'setpts=N*3000+700*mod(N\\,4)+if(gt(N\\,50)\\,9000\\,0)',
+  'select=not(eq(mod(n\\,11)\\,5))',
+].join(',');
+
+const encoders = new Map<string, string>();
+
+/** Whether the ffmpeg in use can encode with this encoder. */
+export function hasEncoder(tools: FfmpegTools, name: string): boolean {
+  const list =
+    encoders.get(tools.ffmpeg) ?? execFileSync(tools.ffmpeg, ['-v', 'error', '-encoders'], { encoding: 'utf8' });
+  encoders.set(tools.ffmpeg, list);
+  return new RegExp(`^ V\\S+ ${name} `, 'm').test(list);
+}
+
+/** Makes an mp4 or mov say that its picture is to be turned clockwise, by writing the matrix of its first track header (ISO/IEC 14496-12, 8.3.2). */
+export async function writeRotation(path: string, rotation_deg: 0 | 90 | 180 | 270): Promise<void> {
+  const file = await readFile(path);
+  const header = file.indexOf('tkhd');
+  const matrix = header + 4 + (file[header + 4] === 0 ? 40 : 52);
+  const one = 0x10000;
+  const [cos, sin] = { 0: [one, 0], 90: [0, one], 180: [-one, 0], 270: [0, -one] }[rotation_deg] as [number, number];
+  for (const [place, value] of [cos, sin, 0, -sin, cos, 0].entries()) file.writeInt32BE(value, matrix + 4 * place);
+  await writeFile(path, file);
+}
+
+/** Presentation ticks of the frames as ffprobe decodes them: our packets' ticks are checked against these. */
+export function probedFrameTicks(tools: FfmpegTools, path: string): number[] {
+  const output = execFileSync(
+    tools.ffprobe,
+    ['-v', 'quiet', '-select_streams', 'V:0', '-show_entries', 'frame=best_effort_timestamp', '-of', 'csv=p=0', path],
+    { encoding: 'utf8' },
+  );
+  return [...output.matchAll(/^(-?\d+)/gm)].map((line) => Number(line[1]));
+}
+
+/** Presentation ticks of the frames that ffmpeg puts out, each as it is. */
+export function decodedFrameTicks(tools: FfmpegTools, path: string): number[] {
+  const output = execFileSync(
+    tools.ffmpeg,
+    [
+      ...['-v', 'quiet', '-copyts', '-i', path, '-map', '0:V:0', ...passthroughOption(tools.version)],
+      ...['-enc_time_base', '-1', '-f', 'framecrc', '-'],
+    ],
+    { encoding: 'utf8' },
+  );
+  return [...output.matchAll(/^\d+,\s*-?\d+,\s*(-?\d+),/gm)].map((line) => Number(line[1]));
 }
