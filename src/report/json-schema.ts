@@ -5,8 +5,9 @@ import { fieldDescriptions } from './field-descriptions.ts';
 import { quantities } from './quantities.ts';
 import { resultsSchema } from './results-schema.ts';
 
-/** Names of the schemas; they name no place on the web, since there is none to fetch them from. */
+/** Name of the schema of session files; a URN, since there is no place on the web to fetch it from. */
 export const SESSION_SCHEMA_ID = 'urn:needlebeat:schema:session:1';
+/** Name of the schema of results files, likewise. */
 export const RESULTS_SCHEMA_ID = 'urn:needlebeat:schema:results:1';
 
 /** JSON Schema (draft 2020-12) of a session file. What fields say of each other (overlaps, unknown ids) is beyond it. */

@@ -19,9 +19,15 @@ const LARGEST_TRACE_BYTES = 256 * 1024 * 1024;
 export async function reportFromFiles(resultsPath: string, outDir: string, now = new Date()): Promise<string> {
   const results = await readResults(resultsPath);
   const { traces, strangers } = await tracesBeside(resultsPath, results.segments);
-  const page = reportPage(results, { traces, strangers, madeOn: now.toISOString().slice(0, 10) });
+  const page = reportPage(results, { traces, strangers, madeOn: localDate(now) });
   const [path] = await writeFiles(outDir, [['report.html', page]]);
   return path ?? join(outDir, 'report.html');
+}
+
+/** The day of the user's own clock, as YYYY-MM-DD. */
+function localDate(time: Date): string {
+  const two = (value: number) => String(value).padStart(2, '0');
+  return `${time.getFullYear()}-${two(time.getMonth() + 1)}-${two(time.getDate())}`;
 }
 
 async function tracesBeside(resultsPath: string, segments: readonly SegmentResult[]) {

@@ -2,6 +2,7 @@ import type { Check } from '../oscillation/ring-down.ts';
 import type { Apparatus, Place } from '../reduction/apparatus.ts';
 import type { Reduction } from '../reduction/reduction.ts';
 
+/** Whether a segment has a number, and whether to trust it yet: `doubtful` and `unmeasured` have a check that says why. */
 export type Status = 'measured' | 'doubtful' | 'unmeasured';
 
 /** One segment in the results file: a row of results.csv. Units are in the names; `u_…` are standard uncertainties; null: not to be had. */
@@ -66,6 +67,7 @@ export interface Results {
   readonly reduction: Reduction;
 }
 
+/** A recording as the results remember it. */
 export interface RecordingResult {
   readonly id: string;
   readonly file: string;

@@ -17,6 +17,7 @@ export interface SegmentTrace {
   readonly ringDown: FitColumns | null;
 }
 
+/** What is written besides results.json and results.csv. */
 export interface WriteOptions {
   /** Traces of segments by id: one trace-<id>.csv is written for each that has one. Left out: none is written. */
   readonly traces?: ReadonlyMap<string, SegmentTrace> | undefined;

@@ -81,7 +81,7 @@ describe('writing results', () => {
 });
 
 describe('making a report from files', () => {
-  const now = new Date('2026-12-01T12:00:00Z');
+  const now = new Date(2026, 11, 1, 23, 30);
   const report = (out = dir) => reportFromFiles(join(dir, 'results.json'), out, now);
 
   it('needs the results file alone', async () => {

@@ -22,6 +22,7 @@ export interface RingDownCurves {
   readonly used: ArrayLike<number> | null;
 }
 
+/** How a plot looks; every plot has its own usual size. */
 export interface PlotOptions {
   readonly theme?: PlotTheme;
   /** Drawing units, 1 per CSS pixel at full size. */

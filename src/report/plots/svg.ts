@@ -38,6 +38,7 @@ export function coordinate(value: number): string {
 
 /** A piece of a label: plain text, a quantity's symbol (italic), or a lowered or raised sign. */
 export type LabelPiece = string | { readonly symbol: string } | { readonly sub: string } | { readonly sup: string };
+/** A label as its pieces in order. */
 export type Label = readonly LabelPiece[];
 
 /** A label as the inside of a `<text>` element of the given font size. */
