@@ -23,9 +23,8 @@ export function RigPart({ name, part, kind, fields, fixed = {} }: RigPartProps) 
     const next = { ...values, [key]: value };
     setValues(next);
     const whole = partOf(fields, next, fixed);
-    if (name === 'fibre' && next[FIBRE_KEY] == null)
-      return edit('Fibre', (s) => withPart(s, 'fibre', undefined), 'fibre');
-    if (whole) edit(TITLES[name], (s) => withPart(s, name, whole), `${name} ${key}`);
+    if (name === 'fibre' && next[FIBRE_KEY] == null) edit('Fibre', (s) => withPart(s, 'fibre', undefined), 'fibre');
+    else if (whole) edit(TITLES[name], (s) => withPart(s, name, whole), `${name} ${key}`);
   }
 
   const missing = fields.filter((f) => !f.optional && values[f.key] == null);

@@ -4,12 +4,44 @@ interface KindSketchProps {
   readonly kind: ViewKind;
   readonly elevation_deg?: number;
   readonly facing_deg?: number | null;
+  /** The angle that the sketch shows was dragged to, whole degrees. */
+  onDrag?(angle_deg: number): void;
 }
 
 const rad = (deg: number) => (deg * Math.PI) / 180;
 
+/** Handlers that turn a drag on a sketch into an angle; `angle` gets the place from the middle, y downwards, in the sketch's units. */
+function dragging(
+  middle: readonly [number, number],
+  viewWidth: number,
+  angle: (dx: number, dy: number) => number,
+  onDrag: ((angle_deg: number) => void) | undefined,
+) {
+  if (!onDrag) return {};
+  const to = (event: PointerEvent & { currentTarget: SVGSVGElement }) => {
+    const box = event.currentTarget.getBoundingClientRect();
+    const scale = viewWidth / Math.max(box.width, 1);
+    onDrag(
+      Math.round(angle((event.clientX - box.left) * scale - middle[0], (event.clientY - box.top) * scale - middle[1])),
+    );
+  };
+  return {
+    'data-drag': true,
+    onPointerDown(event: PointerEvent & { currentTarget: SVGSVGElement }) {
+      event.currentTarget.setPointerCapture(event.pointerId);
+      to(event);
+    },
+    onPointerMove(event: PointerEvent & { currentTarget: SVGSVGElement }) {
+      if (event.currentTarget.hasPointerCapture(event.pointerId)) to(event);
+    },
+  };
+}
+
+const inDegrees = (angle: number) => (angle * 180) / Math.PI;
+const clamp = (value: number, least: number, most: number) => Math.min(Math.max(value, least), most);
+
 /** A drawing that explains how the camera looks at the bar, with the angle that is asked for. */
-export function KindSketch({ kind, elevation_deg = 45, facing_deg = 0 }: KindSketchProps) {
+export function KindSketch({ kind, elevation_deg = 45, facing_deg = 0, onDrag }: KindSketchProps) {
   switch (kind) {
     case 'plan':
       return (
@@ -42,6 +74,7 @@ export function KindSketch({ kind, elevation_deg = 45, facing_deg = 0 }: KindSke
           viewBox="0 0 220 96"
           role="img"
           aria-label={`Camera ${elevation_deg} degrees above the bench`}
+          {...dragging([cx, cy], 220, (dx, dy) => clamp(inDegrees(Math.atan2(-dy, dx)), 10, 85), onDrag)}
         >
           <line class="thin" x1="20" x2="200" y1={cy + 5} y2={cy + 5} />
           <line class="fibre" x1={cx} x2={cx} y1="14" y2={cy - 6} />
@@ -70,6 +103,7 @@ export function KindSketch({ kind, elevation_deg = 45, facing_deg = 0 }: KindSke
           viewBox="0 0 220 118"
           role="img"
           aria-label={`From above: bar at rest ${f} degrees from the line of sight`}
+          {...dragging([cx, cy], 220, (dx, dy) => clamp(inDegrees(Math.atan2(dx, dy)), -90, 90), onDrag)}
         >
           <line class="dashed" x1={cx} y1={cy} x2={cx} y2="94" />
           <line class="bar-line" x1={cx - dx} y1={cy - dy} x2={cx + dx} y2={cy + dy} />

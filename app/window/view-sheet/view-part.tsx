@@ -38,6 +38,10 @@ export function ViewPart({ of: v }: { of: SessionView }) {
           kind={v.kind}
           {...(v.kind === 'oblique' ? { elevation_deg: v.elevation_deg } : {})}
           {...(v.kind === 'side' ? { facing_deg: v.facing_deg ?? null } : {})}
+          onDrag={(deg) => {
+            if (v.kind === 'oblique') change('Elevation', { ...v, elevation_deg: deg }, 'elevation');
+            else if (v.kind === 'side') change('Facing', { ...v, facing_deg: deg }, 'facing');
+          }}
         />
         <div class="sketch-fields">
           {v.kind === 'plan' ? (
