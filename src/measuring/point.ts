@@ -16,7 +16,9 @@ export function pointOf(row: SegmentResult): Point {
     sweep: row.sweep,
     status: row.status,
     f0_Hz: estimate(row.f0_Hz, row.u_f0_Hz, row.dof_f0, 1),
-    equilibrium_rad: estimate(row.equilibrium_deg, row.u_equilibrium_deg, row.dof_f0, RAD),
+    // Rest directions of views that the file doesn't describe have no zero in common.
+    equilibrium_rad:
+      row.view_kind === null ? null : estimate(row.equilibrium_deg, row.u_equilibrium_deg, row.dof_f0, RAD),
     viewFrame: `${row.recording} ${row.view_kind}`,
     ...(row.left_out !== null && { leftOut: row.left_out }),
   };
