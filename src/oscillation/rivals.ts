@@ -44,9 +44,11 @@ export function foldedFrom(fit: TwistFit): number | null {
   const { samples } = fit;
   const rate = 1 / sampling(samples).medianInterval_s;
   const frequency = fit.parameters[OMEGA]! / (2 * Math.PI);
-  const here = search(samples, frequency);
   // A slow motion followed to within its noise needs no second thought.
-  if (here === null || (frequency * 8 < rate && here.sum < 4 * fit.sumOfSquares)) return null;
+  const plain = startAt(samples, frequency);
+  if (frequency * 8 < rate && plain !== null && plain.sumOfSquares < 4 * fit.sumOfSquares) return null;
+  const here = search(samples, frequency);
+  if (here === null) return null;
   for (const f of [rate - frequency, rate + frequency]) {
     const there = search(samples, f);
     if (there !== null && there.sum < FAR_BETTER * here.sum) return there.frequency;

@@ -1,5 +1,6 @@
 import { median } from '../numerics/statistics.ts';
 import type { Trace } from '../tracking/trace.ts';
+import { startAmplitude } from './amplitude.ts';
 import { type SideLine, withLine } from './assumptions.ts';
 import { motionOf, OMEGA } from './model.ts';
 import { integrate } from './motion.ts';
@@ -21,6 +22,8 @@ export interface FitWithLines {
 
 /** A swing's leak into the angle, as a share of the angle its amplitude would make at the bar's end: tilt of camera and fibre. */
 const LEAK_u = 0.05;
+/** A swing of less than this share of the twist is none worth mention. */
+const FAINT = 0.005;
 /** A line of the residuals counts from here on: its height over the median of its surroundings, and the fall of chi-square it brings. */
 const HEIGHT = 5;
 const EVIDENCE = 30;
@@ -28,8 +31,9 @@ const EVIDENCE = 30;
 /** Adds to a fit the lines that the bar's position shows, then those that the residuals still show (at most two), where they help. */
 export function addLines(series: Series, trace: Trace, fit: TwistFit, side: boolean): FitWithLines {
   const motion = side ? null : positionOf(trace, fit);
-  const swings = motion?.lines ?? [];
   const half = trace.halfLength_px;
+  const twist = startAmplitude(motionOf(fit.parameters));
+  const swings = (motion?.lines ?? []).filter((line) => half === null || line.amplitude_px > FAINT * half * twist);
   let best = fit;
   for (const swing of swings) {
     const u = half !== null && half > 0 ? Math.max(LEAK_u * (swing.amplitude_px / half), 1e-5) : null;

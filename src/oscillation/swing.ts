@@ -50,18 +50,50 @@ export function positionMotion(
   for (;;) {
     const [x, y] = left.map((column) => linearLeastSquares(basis, column));
     if (x === null || x === undefined || y === null || y === undefined) return null;
-    const line = lines.length < count ? nextLine(time_s, x.residual, y.residual, duration) : null;
-    if (line === null) {
+    const found = lines.length < count ? nextLine(time_s, x.residual, y.residual, duration) : null;
+    if (found === null) {
       const inPhase_px = Math.hypot(x.parameters[0]!, y.parameters[0]!);
       return { lines, inPhase_px, quadrature_px: Math.hypot(x.parameters[1]!, y.parameters[1]!) };
     }
-    lines.push(line.line);
+    const line = refined(time_s, left, basis, found, duration);
+    lines.push({ ...line.line, prominence: found.prominence });
     left = left.map((column, axis) => column.map((v, i) => v - line.curve[axis]![i]!));
   }
 }
 
+/** A damped sine fitted to x and y, with its curve in each. */
+interface FittedLine {
+  readonly line: Omit<SwingLine, 'prominence'>;
+  readonly curve: readonly Float64Array[];
+}
+
+/** Fits the line once more to what the basis leaves once the line is out of it: the basis had taken its share of the line. */
+function refined(
+  time_s: Float64Array,
+  left: readonly Float64Array[],
+  basis: readonly Float64Array[],
+  found: FittedLine,
+  duration: number,
+): FittedLine {
+  let line = found;
+  for (let pass = 0; pass < 2; pass++) {
+    const rest = left.map((column, axis) => {
+      const bare = column.map((v, i) => v - line.curve[axis]![i]!);
+      const fit = linearLeastSquares(basis, bare);
+      return fit === null ? bare : fit.residual.map((v, i) => v + line.curve[axis]![i]!);
+    });
+    line = fitLine(time_s, rest[0]!, rest[1]!, line.line.frequency_Hz, duration) ?? line;
+  }
+  return line;
+}
+
 /** The strongest line that stands out of x or y, fitted to both; null where none does. */
-function nextLine(time_s: Float64Array, x: Float64Array, y: Float64Array, duration: number) {
+function nextLine(
+  time_s: Float64Array,
+  x: Float64Array,
+  y: Float64Array,
+  duration: number,
+): (FittedLine & { prominence: number }) | null {
   const start = [x, y]
     .map((column) => {
       const s = spectrum(time_s, column);
@@ -73,10 +105,16 @@ function nextLine(time_s: Float64Array, x: Float64Array, y: Float64Array, durati
     .find((line) => line.prominence > PROMINENT);
   if (start === undefined) return null;
   const fit = fitLine(time_s, x, y, start.frequency_Hz, duration);
-  return fit === null ? null : { line: { ...fit.line, prominence: start.prominence }, curve: fit.curve };
+  return fit === null ? null : { ...fit, prominence: start.prominence };
 }
 
-function fitLine(time_s: Float64Array, x: Float64Array, y: Float64Array, frequency_Hz: number, duration: number) {
+function fitLine(
+  time_s: Float64Array,
+  x: Float64Array,
+  y: Float64Array,
+  frequency_Hz: number,
+  duration: number,
+): FittedLine | null {
   const n = time_s.length;
   const problem = {
     rows: 2 * n,
