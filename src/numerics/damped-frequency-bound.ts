@@ -21,13 +21,13 @@ export function uDampedFrequency({ amplitude, noise, rate_Hz, duration_s, gamma_
   return Math.sqrt(base * shape(x)) / (2 * Math.PI);
 }
 
-/**
- * x³ (1 - E) / (1 - (2 + x²) E + E²), written as x³ (e^x - 1) / ((2 sinh(x/2) - x) (2 sinh(x/2) + x)) since the plain form
- * cancels for small x; 12 at x = 0.
- */
+/** x³ (1 - E) / (1 - (2 + x²) E + E²); for small x, where that cancels, as x³ (e^x - 1) / ((2 sinh(x/2) - x) (2 sinh(x/2) + x)); 12 at 0. */
 function shape(x: number): number {
   if (x === 0) return 12;
-  const twice = 2 * Math.sinh(x / 2);
-  const gap = x < 0.5 ? (x ** 3 / 24) * (1 + (x * x) / 80 + x ** 4 / 13440 + x ** 6 / 3870720) : twice - x;
-  return (x ** 3 * Math.expm1(x)) / (gap * (twice + x));
+  if (x >= 0.5) {
+    const e = Math.exp(-x);
+    return (x ** 3 * (1 - e)) / (1 - (2 + x * x) * e + e * e);
+  }
+  const gap = (x ** 3 / 24) * (1 + (x * x) / 80 + x ** 4 / 13440 + x ** 6 / 3870720);
+  return (x ** 3 * Math.expm1(x)) / (gap * (2 * Math.sinh(x / 2) + x));
 }

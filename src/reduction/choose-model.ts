@@ -43,16 +43,19 @@ export function chooseModel(data: Observations, known: KnownFibre | null): Model
     known,
   );
   if (usable) return { chosen: turned, candidates: [...turning, ...lines], directionsIgnored: false };
-  const twisted = likely.filter((split) => split.reversal_A !== null).slice(0, 1);
-  const plain = [
+  // Where one straight line does, no turning round need be looked for: only whether the line is a little bent.
+  const simple = lines.some((line) => line.reversal_A === null && isAdequate(line));
+  const bent = simple ? likely.filter(({ reversal_A }) => reversal_A === null) : likely.slice(0, 2);
+  const twisted = simple ? [] : likely.filter(({ reversal_A }) => reversal_A !== null).slice(0, 1);
+  const fromFrequencies = [
     ...lines,
     ...fitAll(
       data,
       twisted.map((split) => twistedProposal(data, split)),
       known,
     ),
+    ...fitAll(data, bent.flatMap(hyperbolaProposals), known),
   ];
-  const fromFrequencies = [...plain, ...fitAll(data, likely.slice(0, 2).flatMap(hyperbolaProposals), known)];
   const chosen = lowest(fromFrequencies);
   return chosen === null
     ? null

@@ -14,6 +14,9 @@ export interface PointSelection {
   readonly doubtfulUsed: boolean;
 }
 
+/** Nothing that swings is slower; keeps squares of denormal numbers out. */
+const leastFrequency_Hz = 1e-6;
+
 /** Whether a point has what a fit needs, whatever its status. */
 export function isUsable(point: Point): point is UsablePoint {
   return (
@@ -21,7 +24,7 @@ export function isUsable(point: Point): point is UsablePoint {
     Number.isFinite(point.current_A) &&
     point.f0_Hz !== null &&
     Number.isFinite(point.f0_Hz.value) &&
-    point.f0_Hz.value > 0
+    point.f0_Hz.value > leastFrequency_Hz
   );
 }
 
