@@ -6,6 +6,7 @@ export interface Apparatus {
   readonly meter?: Meter | undefined;
 }
 
+/** The coil pair: its dimensions, or its constant as measured. */
 export type Coil = CoilByDimensions | CoilByConstant;
 
 /** Two coaxial coils; the second one's values default to the first one's. `spacing_m` is between their middle planes. */
@@ -28,8 +29,10 @@ export interface CoilByConstant {
   readonly u_constant_T_per_A?: number | undefined;
 }
 
+/** The bar magnet: a shape with mass and dimensions, or its moment of inertia. */
 export type Magnet = Cylinder | Bar | KnownInertia;
 
+/** A round bar that lies along its length. */
 export interface Cylinder {
   readonly shape: 'cylinder';
   readonly mass_kg: number;
@@ -40,6 +43,7 @@ export interface Cylinder {
   readonly u_diameter_m?: number | undefined;
 }
 
+/** A rectangular bar. */
 export interface Bar {
   readonly shape: 'bar';
   readonly mass_kg: number;
@@ -51,6 +55,7 @@ export interface Bar {
   readonly u_width_m?: number | undefined;
 }
 
+/** A magnet of any shape whose moment of inertia about the fibre is known. */
 export interface KnownInertia {
   readonly inertia_kg_m2: number;
   readonly u_inertia_kg_m2?: number | undefined;
@@ -59,6 +64,7 @@ export interface KnownInertia {
   readonly u_length_m?: number | undefined;
 }
 
+/** The fibre’s stiffness where it is known from elsewhere; 0 for one that has none worth mention. */
 export interface Fibre {
   readonly stiffness_N_m_per_rad: number;
   readonly u_stiffness_N_m_per_rad?: number | undefined;

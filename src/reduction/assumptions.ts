@@ -9,6 +9,7 @@
  * limit / √3 (JCGM 100:2008, F.2.4.5, for a correction that is not applied).
  */
 export const fibreShareLimit = 0.1;
+/** Standard uncertainty of that share about none. */
 export const u_fibreShare = fibreShareLimit / Math.sqrt(3);
 
 /** How well the fibre's untwisted direction is brought onto the rest direction without current, rad. */

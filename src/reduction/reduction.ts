@@ -105,6 +105,7 @@ export type ModelKind = 'line' | 'two branches' | 'hyperbola' | 'turning';
  */
 export type FibreKnowledge = 'separated' | 'given' | 'assumed';
 
+/** The model that the numbers come from, and what it was chosen from. */
 export interface Model {
   readonly kind: ModelKind;
   readonly fibre: FibreKnowledge;
@@ -149,6 +150,7 @@ export interface FitSummary {
   readonly correlation: readonly (readonly number[])[];
 }
 
+/** One parameter of the fit; `u` for the uncertainties as used, coil and inertia not included. */
 export interface FittedParameter {
   /** Its place in the fit's parameter vector: 0 slope, 1 along, 2 across, 3 fibre, 4 twist, then zeros of direction. */
   readonly place: number;
@@ -225,6 +227,7 @@ export interface Budget {
   readonly expanded_u: number;
 }
 
+/** What one input contributes to a result. */
 export interface BudgetRow {
   readonly input: string;
   /** null where the row stands for many values (all frequencies, all currents). */
@@ -248,6 +251,7 @@ export interface MonteCarlo {
   readonly results: readonly MonteCarloResult[];
 }
 
+/** One result over the draws. */
 export interface MonteCarloResult {
   readonly name: ResultName;
   readonly mean: number;

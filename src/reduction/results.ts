@@ -22,6 +22,7 @@ export interface ResultInputs {
 /** All results in one unit each, null where not to be had. */
 export type ResultValues = { readonly [name in ResultName]: number | null };
 
+/** Unit of every result, as text for people. */
 export const resultUnits: { readonly [name in ResultName]: string } = {
   ambient_T: 'T',
   apparent_ambient_T: 'T',

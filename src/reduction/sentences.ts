@@ -35,12 +35,14 @@ export function noFit(): Check {
   return check('no_fit', 'fault', message);
 }
 
+/** The coil is not described. */
 export function noCoil(): Check {
   const message =
     'The ambient field and m/J can’t be had: the apparatus holds neither the coil’s dimensions nor its constant.';
   return check('no_coil', 'fault', message);
 }
 
+/** The magnet is not described. */
 export function noMagnet(): Check {
   const message =
     'Moment and inertia can’t be had: the apparatus holds neither the magnet’s shape and mass nor its moment of inertia.';
@@ -54,11 +56,13 @@ export function stiffnessNeedsInertia(): Check {
   return check('stiffness_needs_inertia', 'doubt', message);
 }
 
+/** Doubtful segments had to be used. */
 export function doubtfulUsed(ids: readonly string[]): Check {
   const message = `Doubtful segments (${list(ids)}) had to be used, since fewer than two currents were measured without doubt.`;
   return check('doubtful_used', 'doubt', message);
 }
 
+/** No point carries an uncertainty. */
 export function noUncertainties(): Check {
   const message =
     'No segment has an uncertainty of its own in frequency or current: all points weigh alike per share of f0², and the uncertainties are those of the scatter alone.';
@@ -73,33 +77,39 @@ export function noSpareDof(kind: ModelKind): Check {
   return check('no_spare_points', 'doubt', message);
 }
 
+/** Birge’s ratio of frequencies and currents was above chance; `dof` may be broken. */
 export function scatterAbove(scale: number, dof: number): Check {
   const message = `The points scatter ${short(scale)} times more than their uncertainties allow (${short(dof)} degrees of freedom): the uncertainties of frequencies and currents were raised by that factor.`;
   return check('scatter_above_uncertainty', 'doubt', message);
 }
 
+/** The same for rest directions. */
 export function directionsScatter(scale: number): Check {
   const message = `The rest directions scatter ${short(scale)} times more than their uncertainties allow, which were raised by that factor.`;
   return check('directions_scatter', 'note', message);
 }
 
+/** Rest directions that no field gives. */
 export function directionsIgnored(): Check {
   const message =
     'The rest directions do not follow any field (was the camera or the region moved between segments?): only the frequencies were used.';
   return check('directions_ignored', 'doubt', message);
 }
 
+/** A large standardised residual of f0²; `standardised` with its sign. */
 export function offTheLine(id: string, standardised: number): Check {
   const way = standardised > 0 ? 'above' : 'below';
   const message = `Segment ${id} lies ${short(Math.abs(standardised))} standard uncertainties ${way} the fit. It was kept; check its current and its fit.`;
   return check('off_the_line', 'doubt', message);
 }
 
+/** A large standardised residual of a rest direction. */
 export function directionOff(id: string, standardised: number): Check {
   const message = `The rest direction of segment ${id} lies ${short(Math.abs(standardised))} standard uncertainties from the fit. It was kept.`;
   return check('direction_off', 'note', message);
 }
 
+/** A result moves by `moved` standard uncertainties without one segment. */
 export function hangsOnOne(id: string, moved: number): Check {
   const message = `The result hangs on segment ${id}: without it a result moves by ${short(moved)} standard uncertainties. Film that current again, and one near it.`;
   return check('hangs_on_one', 'doubt', message);
@@ -114,6 +124,7 @@ export function fibreNotSeparated(ambient_T: number | null): Check {
   return check('fibre_not_separated', 'note', message);
 }
 
+/** A typed stiffness against that of the data, N m/rad. */
 export function fibreDisagrees(found: number, given: number, u: number): Check {
   const message = `The stiffness given for the fibre (${given.toExponential(3)} N m/rad) and that in the frequencies (${found.toExponential(3)} N m/rad) differ by ${short(Math.abs(found - given) / u)} standard uncertainties.`;
   return check('fibre_disagrees', 'doubt', message);
@@ -133,16 +144,19 @@ export function acrossFromFrequencies(): Check {
   return check('across_from_frequencies', 'note', message);
 }
 
+/** Segments that could lie on either side; `difference` of the criterion. */
 export function branchAmbiguous(ids: readonly string[], difference: number): Check {
   const message = `On which side of the reversal ${list(ids)} lies is not certain: taking the other side fits almost as well (criterion ${short(difference)} higher). A current further from the reversal would settle it.`;
   return check('branch_ambiguous', 'doubt', message);
 }
 
+/** Another way for the fibre to have followed fits about as well. */
 export function turnAmbiguous(other: Model['turn'], difference: number): Check {
   const message = `How the fibre followed when the bar turned round is not certain: “${other}” fits almost as well (criterion ${short(difference)} higher).`;
   return check('turn_ambiguous', 'note', message);
 }
 
+/** Where the fields cancel, and how the fibre followed. */
 export function reversalBetween(reversal_A: number, turn: Model['turn']): Check {
   const how = {
     'with the field': 'the fibre was then twisted by half a turn the way the field turned',
@@ -154,11 +168,13 @@ export function reversalBetween(reversal_A: number, turn: Model['turn']): Check 
   return check('reversal', 'note', message);
 }
 
+/** The ambient field is against that of a positive current. */
 export function ambientOpposed(): Check {
   const message = 'The ambient field points against the field of a positive current.';
   return check('ambient_opposed', 'note', message);
 }
 
+/** Rising and falling steps differ by more than chance. */
 export function sweepsDiffer(difference_Hz2: number, u: number, difference_T: number | null): Check {
   const field =
     difference_T === null
@@ -168,16 +184,19 @@ export function sweepsDiffer(difference_Hz2: number, u: number, difference_T: nu
   return check('sweeps_differ', 'doubt', message);
 }
 
+/** The bar is long for its coils; `shift` as a share. */
 export function unevenField(shift: number): Check {
   const message = `A bar this long lies in an uneven coil field: evenly magnetised it would be turned ${short(Math.abs(shift) * 100)} % ${shift < 0 ? 'less' : 'more'} than the mean field over its length says. The mean is used; the difference is in the uncertainty.`;
   return check('uneven_field', 'note', message);
 }
 
+/** Names of inputs that were typed without an uncertainty. */
 export function exactInputs(names: readonly string[]): Check {
   const message = `No uncertainty is given for ${list(names)}: taken as exact, which makes the results look better than they are.`;
   return check('inputs_without_uncertainty', 'note', message);
 }
 
+/** The field of the World Magnetic Model beside the measured one. */
 export function modelFieldNote(expected_T: number, share: number | null): Check {
   const compared =
     share === null ? '' : `; the measured field is ${short(Math.abs(share) * 100)} % ${share < 0 ? 'lower' : 'higher'}`;
@@ -185,6 +204,7 @@ export function modelFieldNote(expected_T: number, share: number | null): Check 
   return check('expected_field', 'note', message);
 }
 
+/** Why there is no expected field. */
 export function noModelField(reason: 'date' | 'place', date: string): Check {
   const message =
     reason === 'date'

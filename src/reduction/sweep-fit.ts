@@ -30,6 +30,7 @@ export interface Residuals {
   readonly standardisedAngle: Float64Array;
 }
 
+/** Chi-square of some of the observations, and the degrees of freedom that are theirs (not a whole number). */
 export interface Part {
   readonly chiSquare: number;
   readonly dof: number;
