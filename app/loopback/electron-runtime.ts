@@ -1,7 +1,7 @@
 import { accessSync, constants, existsSync, readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { dirname, join } from 'node:path';
-import { fileURLToPath } from 'node:url';
+import { packageRoot } from '../page/package-root.ts';
 
 /** Whether the window can be Electron's: how to start it, or one plain reason why not. */
 export type ElectronChoice =
@@ -39,19 +39,6 @@ export function electronRuntime(surroundings: Surroundings): ElectronChoice {
     return no('Electron keeps its sandbox, which does not work for the superuser');
   }
   return { use: true, executable, root };
-}
-
-/** Folder of the program's package: the first above this module that has our package file. */
-export function packageRoot(): string | null {
-  for (let folder = dirname(fileURLToPath(import.meta.url)); ; folder = dirname(folder)) {
-    try {
-      const facts: unknown = JSON.parse(readFileSync(join(folder, 'package.json'), 'utf8'));
-      if (typeof facts === 'object' && facts !== null && 'name' in facts && facts.name === 'needlebeat') return folder;
-    } catch {
-      // Not here: one further up.
-    }
-    if (folder === dirname(folder)) return null;
-  }
 }
 
 function electronFolder(): string | null {

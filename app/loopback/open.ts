@@ -4,9 +4,10 @@ import { join } from 'node:path';
 import { createInterface } from 'node:readline';
 import { type Host, startHost } from '../host/host.ts';
 import { userFolderPath } from '../host/user-folder.ts';
+import { packageRoot } from '../page/package-root.ts';
 import { readPageFiles } from '../page/page-files.ts';
 import { openBrowser } from './browser.ts';
-import { electronRuntime, hasDisplay, packageRoot } from './electron-runtime.ts';
+import { electronRuntime, hasDisplay } from './electron-runtime.ts';
 import { type LoopbackServer, serveLoopback } from './server.ts';
 
 /** The session that the empty window offers, below the package's folder. */

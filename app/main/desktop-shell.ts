@@ -4,6 +4,7 @@ import { fileURLToPath } from 'node:url';
 import { app, type BrowserWindow, dialog, ipcMain, Menu, MessageChannelMain, screen, session } from 'electron';
 import { shellChannels } from '../contract/shell-channels.ts';
 import { userFolderPath } from '../host/user-folder.ts';
+import { packageRoot } from '../page/package-root.ts';
 import { readPageFiles } from '../page/page-files.ts';
 import { choosePlace, showDialog } from './file-dialogs.ts';
 import { HostLink } from './host-link.ts';
@@ -17,8 +18,7 @@ import { isOurPage } from './sender.ts';
 import { placeWindow, readWindowState, writeWindowState } from './window-state.ts';
 
 const here = dirname(fileURLToPath(import.meta.url));
-/** Folder of the package; dist/app/main is three levels down in it. */
-const root = join(here, '../../..');
+const root = packageRoot() ?? here;
 
 /** Starts the desktop program: window, menu, dialogs, and the host in its own process. */
 export async function startShell(): Promise<void> {
