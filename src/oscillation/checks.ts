@@ -160,9 +160,10 @@ function moved(facts: Facts): Check[] {
   }
   if (facts.amplitudeLawOdd && unit === 'rad') out.push(check('amplitude_law_odd', 'note', undefined));
   if (ringDown.quadraticDrag > 0) {
-    const quadratic = ((4 / 3) * ringDown.quadraticDrag * ringDown.fd_Hz.value * 2 * amplitudeStart) / 1;
+    // Loss per second by the drag that grows with speed, averaged over a cycle: 4 drag omega a / (3 pi).
+    const quadratic = (8 / 3) * ringDown.quadraticDrag * ringDown.fd_Hz.value * amplitudeStart;
     const share = quadratic / (quadratic + Math.max(ringDown.gamma_per_s.value, 0));
-    if (share > 0.02) out.push(check('drag_quadratic', 'note', { share }));
+    if (share > 0.05) out.push(check('drag_quadratic', 'note', { share }));
   }
   const growth = Math.log(amplitudeEnd / amplitudeStart);
   if (growth > 0.02 && -ringDown.gamma_per_s.value > 3 * ringDown.gamma_per_s.u) {

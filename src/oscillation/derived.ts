@@ -1,4 +1,5 @@
 import type { Estimate } from '../numerics/estimate.ts';
+import { combinedUncertainty, effectiveDof } from '../numerics/welch-satterthwaite.ts';
 import { type Fitted, uncertaintyOf } from './parameter-covariance.ts';
 
 /** Value and standard uncertainty of a function of the parameters: derivatives over half a standard uncertainty to either side. */
@@ -20,14 +21,12 @@ export function derived(fit: Fitted, dof: number, f: (p: Float64Array) => number
   return { value: f(parameters), u: Math.sqrt(Math.max(0, variance)), dof };
 }
 
-/** Adds the clock's relative uncertainty to a rate. */
+/** Adds the clock's relative uncertainty, taken as exactly known, to a rate. */
 export function withClock(estimate: Estimate, u_time_scale: number): Estimate {
-  const clock = Math.abs(estimate.value) * u_time_scale;
-  const u = Math.hypot(estimate.u, clock);
-  // Welch-Satterthwaite with a clock known exactly enough (JCGM 100:2008 G.4).
+  const clock = { u: Math.abs(estimate.value) * u_time_scale, dof: Number.POSITIVE_INFINITY };
   return {
     value: estimate.value,
-    u,
-    dof: estimate.u > 0 ? estimate.dof * (u / estimate.u) ** 4 : Number.POSITIVE_INFINITY,
+    u: combinedUncertainty([estimate, clock]),
+    dof: effectiveDof([estimate, clock]),
   };
 }
