@@ -1,3 +1,4 @@
+import { chiSquareProbability } from '../numerics/distributions.ts';
 import type { Check } from '../oscillation/ring-down.ts';
 import type { ModelChoice } from './choose-model.ts';
 import { turnOf } from './model-summary.ts';
@@ -6,7 +7,7 @@ import type { ExpectedField, FittedPoint, LeaveOneOut, SweepComparison } from '.
 import type { ResultValues } from './results.ts';
 import * as say from './sentences.ts';
 import type { Source, SourceContext } from './sources.ts';
-import { fitSweep } from './sweep-fit.ts';
+import { fitSweep, type Part } from './sweep-fit.ts';
 import { at } from './sweep-model.ts';
 import { distinctCurrents, type PointSelection } from './used-points.ts';
 
@@ -34,7 +35,8 @@ export function checksOf(findings: Findings): Check[] {
   const shift = context.coil?.turningShift ?? 0;
   if (choice !== null && Math.abs(shift) > 1e-3) checks.push(say.unevenField(shift));
   const exact = findings.sources.filter(({ u, value, row }) => u === 0 && value !== null && typed(row));
-  if (choice !== null && exact.length > 0) checks.push(say.exactInputs([...new Set(exact.map(({ row }) => row))]));
+  if (choice !== null && exact.length > 0)
+    checks.push(say.exactInputs([...new Set(exact.map(({ row }) => row.replace(', common to all', '')))]));
   if (expected_field !== null) {
     checks.push(say.modelFieldNote(expected_field.horizontal_T, expected_field.measured_less_expected_share));
   }
@@ -67,6 +69,7 @@ function agreement({ points, sweeps }: Findings, { chosen, directionsIgnored }: 
   const { fit } = chosen;
   if (fit.dof === 0) checks.push(say.noSpareDof(chosen.proposal.kind));
   if (chosen.scaleFrequencies > 1) checks.push(say.scatterAbove(chosen.scaleFrequencies, fit.parts.frequencies.dof));
+  if (isTooQuiet(fit.parts.frequencies)) checks.push(say.scatterBelow());
   if (chosen.scaleDirections > 1) checks.push(say.directionsScatter(chosen.scaleDirections));
   if (directionsIgnored) checks.push(say.directionsIgnored());
   const used = points.filter((point) => point.used);
@@ -81,6 +84,11 @@ function agreement({ points, sweeps }: Findings, { chosen, directionsIgnored }: 
     checks.push(say.sweepsDiffer(sweeps.difference_Hz2, sweeps.u_difference_Hz2, sweeps.difference_T));
   }
   return checks;
+}
+
+/** A scatter as small as this comes by chance once in a thousand sweeps; not asked of sweeps that are exact to rounding. */
+function isTooQuiet({ chiSquare, dof }: Part): boolean {
+  return dof > 2 && chiSquare > 1e-9 && chiSquareProbability(chiSquare, dof) < 1e-3;
 }
 
 /** A residual is large where fewer than one sweep in about fifty would have one by chance: 3 for ten points, a little more for many. */

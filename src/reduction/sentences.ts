@@ -89,6 +89,13 @@ export function directionsScatter(scale: number): Check {
   return check('directions_scatter', 'note', message);
 }
 
+/** Chi-square is far below what chance would leave of the stated uncertainties. */
+export function scatterBelow(): Check {
+  const message =
+    'The points scatter far less than the uncertainties of their currents would have it. What is stated for each step is then rather common to all steps: given as the meter’s scale or zero it would not average out over them.';
+  return check('scatter_below_uncertainty', 'note', message);
+}
+
 /** Rest directions that no field gives. */
 export function directionsIgnored(): Check {
   const message =
@@ -120,7 +127,7 @@ export function fibreNotSeparated(ambient_T: number | null): Check {
   const share = `${short(100 * fibreShareLimit)} %`;
   const size =
     ambient_T === null ? `of it` : `(${microtesla(ambient_T * fibreShareLimit, ambient_T * fibreShareLimit * 0.05)})`;
-  const message = `The fibre’s share can’t be separated from the field: the ambient field is too high by stiffness / moment. A fibre that carries up to ${share} of the restoring torque without current makes that up to ${share} ${size}, which is in the uncertainty. Reversed currents that turn the bar round, or the fibre’s stiffness, would separate it.`;
+  const message = `The fibre’s share can’t be separated from the field: the ambient field is too high by stiffness / moment. A fibre that carries up to ${share} of the restoring torque without current makes that up to ${share}${size}, which is in the uncertainty. Reversed currents that turn the bar round, or the fibre’s stiffness, would separate it.`;
   return check('fibre_not_separated', 'note', message);
 }
 
@@ -176,10 +183,7 @@ export function ambientOpposed(): Check {
 
 /** Rising and falling steps differ by more than chance. */
 export function sweepsDiffer(difference_Hz2: number, u: number, difference_T: number | null): Check {
-  const field =
-    difference_T === null
-      ? ''
-      : `, as if the field had changed by ${microtesla(difference_T, Math.abs(difference_T) / 10)}`;
+  const field = difference_T === null ? '' : `, as if the field had changed by ${short(difference_T * 1e6)} µT`;
   const message = `Falling steps lie ${short(Math.abs(difference_Hz2 / u))} standard uncertainties ${difference_Hz2 > 0 ? 'above' : 'below'} rising ones${field}: the field drifted, or something was magnetised.`;
   return check('sweeps_differ', 'doubt', message);
 }

@@ -150,6 +150,14 @@ describe('reduce', () => {
     expect(moved.largest_change_in_u!).toBeGreaterThan(Math.max(...others));
   });
 
+  it('notes where the points agree better than their currents’ uncertainties would have it', () => {
+    // The errors drawn are a tenth of those stated.
+    const quiet = reduce({ points: pointsAt(bench, oneSide, { ...careful, scatter: 0.1, seed: 11 }), apparatus });
+    expect(codes(quiet)).toContain('scatter_below_uncertainty');
+    const usual = reduce({ points: pointsAt(bench, oneSide, { ...careful, seed: 11 }), apparatus });
+    expect(codes(usual)).not.toContain('scatter_below_uncertainty');
+  });
+
   it('leaving one out is what a sweep without it gives', () => {
     const points = pointsAt(bench, oneSide, { ...careful, seed: 5 });
     const all = reduce({ points, apparatus });
