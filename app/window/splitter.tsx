@@ -4,7 +4,6 @@ import { boardShare, setShare, sheetShare } from './state/layout.ts';
 export function Splitter({ way }: { way: 'sheet' | 'board' }) {
   const share = way === 'sheet' ? sheetShare.value : boardShare.value;
   return (
-    // biome-ignore lint/a11y/useSemanticElements: a rule can't be moved by the keyboard.
     <div
       class="splitter"
       data-way={way}

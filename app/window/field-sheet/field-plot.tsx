@@ -81,11 +81,10 @@ function PlotPoint({ of: p, x, y, first }: { of: CurrentPoint; x: Scale; y: Scal
   const text = quantityText(p.value, p.u, 'Hz²').both;
   const state = `${p.used ? '' : ', not used'}${p.trusted ? '' : ', doubtful'}${p.sweep ? `, ${p.sweep}` : ''}`;
   return (
-    // biome-ignore lint/a11y/useSemanticElements: a button can't stand inside an SVG.
     <g
       class="plot-point"
       role="button"
-      tabIndex={first ? 0 : -1}
+      tabindex={first ? 0 : -1}
       data-point={p.id}
       data-chosen={chosen || undefined}
       aria-label={`${p.id}: ${entryText(p.current_A)} A, ${text}${state}`}

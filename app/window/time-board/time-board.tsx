@@ -67,7 +67,6 @@ export function TimeBoard() {
   return (
     <section class="board" aria-label="Time board">
       <Gutter heights={heights} />
-      {/* biome-ignore lint/a11y/useAriaPropsSupportedByRole: the lanes are one surface for pointer and keyboard. */}
       <div
         ref={lanes}
         class="lanes"
