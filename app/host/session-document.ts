@@ -70,7 +70,7 @@ export class SessionDocument {
   /** Name for sentences and save dialogs. */
   get name(): string {
     if (this.#place) return basename(this.#place.path);
-    const title = (this.session.title ?? '').replace(/[^\p{L}\p{N} ._-]+/gu, ' ').trim();
+    const title = (this.session.title ?? '').replace(/[^\p{L}\p{N}._-]+/gu, ' ').trim();
     const recording = this.session.recordings[0]?.file.replace(/\.[^.]*$/, '');
     return `${(title || recording || 'session').slice(0, 80)}.needlebeat.json`;
   }
@@ -112,7 +112,8 @@ export class SessionDocument {
    * @param folder absolute, null: recordings are taken to lie beside it.
    */
   textFor(folder: string | null): { readonly session: Session; readonly text: string; readonly sha256: string } {
-    const session = placed(this.session, this.#paths, folder, this.#place?.asWritten);
+    const sameFolder = this.#place !== null && folder === dirname(this.#place.path);
+    const session = placed(this.session, this.#paths, folder, sameFolder ? this.#place?.asWritten : undefined);
     const text = sessionText(session);
     return { session, text, sha256: sha256(text) };
   }
