@@ -34,16 +34,16 @@ async function installedPath(name: string, env: NodeJS.ProcessEnv): Promise<stri
   }
 }
 
-/** Programs can't be started from within an Electron archive: they are unpacked beside it. */
-function outsideArchive(path: string): string {
+/** Where a program that an Electron archive seems to hold really is: it can't be started from within, so it is unpacked beside the archive. */
+export function outsideArchive(path: string): string {
   return path.replace(/app\.asar(?=[\\/])/, 'app.asar.unpacked');
 }
 
 /**
  * The packed ffprobe may be executable by its owner only. Gives it the missing bits where we may, else makes a copy of our own in the user's
- * cache folder (once: its name carries size and time of the original).
+ * cache folder (once: its name carries size and time of the original). Rejects where neither can be done.
  */
-async function madeExecutable(path: string, env: NodeJS.ProcessEnv): Promise<string> {
+export async function madeExecutable(path: string, env: NodeJS.ProcessEnv): Promise<string> {
   if (await mayRun(path)) return path;
   try {
     await chmod(path, 0o755);

@@ -93,7 +93,11 @@ async function displayedFrames(
     return { ticks, keyframes: Uint32Array.of(0), seekable: false, packets };
   }
   // Pictures that lean on something before the file's beginning (it was cut out of a longer one) can't be shown by anybody.
-  const ticks = ascending(packets.pts, remarks).filter((tick) => tick >= (head[0] ?? tick));
+  const shown = ascending(packets.pts, remarks);
+  const ticks = shown.filter((tick) => tick >= (head[0] ?? tick));
+  if (ticks.length < shown.length) {
+    remarks.push(`The first ${shown.length - ticks.length} frames can't be decoded and are passed over.`);
+  }
   const keyTicks = new Set(packets.pts.filter((_, row) => packets.key[row] === 1));
   const keyframes = Uint32Array.from(ticks.keys()).filter((index) => keyTicks.has(ticks[index] ?? Number.NaN));
   return { ticks, keyframes, seekable: keyframes.length > 0, packets };

@@ -164,7 +164,8 @@ describe.each(kinds)('$title in $file', (kind) => {
     const probed = probedFrameTicks(tools, path());
     if (kind.timed) expect([...recording.ticks]).toEqual(probed);
     else expect([...recording.ticks].slice(0, probed.length)).toEqual(probed);
-    expect(recording.ticks.length).toBe(kind.frames);
+    // An old muxer gives the last frame no duration, and its own edit list then cuts that frame away.
+    expect([kind.frames, kind.frames - 1]).toContain(recording.ticks.length);
   });
 
   test.skipIf(missing)('facts', () => {

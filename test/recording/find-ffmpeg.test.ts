@@ -1,8 +1,13 @@
-import { chmod, mkdir, mkdtemp, rm, writeFile } from 'node:fs/promises';
+import { chmod, mkdir, mkdtemp, rm, stat, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { basename, dirname, join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
-import { installedFfmpegPath, installedFfprobePath } from '../../src/recording/bundled-binaries.ts';
+import {
+  installedFfmpegPath,
+  installedFfprobePath,
+  madeExecutable,
+  outsideArchive,
+} from '../../src/recording/bundled-binaries.ts';
 import { isNewer, parseFfmpegVersion, passthroughOption } from '../../src/recording/ffmpeg-version.ts';
 import { findFfmpeg } from '../../src/recording/find-ffmpeg.ts';
 
@@ -93,7 +98,24 @@ describe.skipIf(process.platform === 'win32')('where it is looked for', () => {
   });
 });
 
+test('a program in an Electron archive is looked for beside it', () => {
+  const inside = '/opt/Needlebeat/resources/app.asar/node_modules/x/ffmpeg';
+  const beside = '/opt/Needlebeat/resources/app.asar.unpacked/node_modules/x/ffmpeg';
+  expect([inside, beside].map(outsideArchive)).toEqual([beside, beside]);
+  expect(outsideArchive('C:\\Needlebeat\\app.asar\\x\\ffmpeg.exe')).toBe(
+    'C:\\Needlebeat\\app.asar.unpacked\\x\\ffmpeg.exe',
+  );
+});
+
 describe.skipIf(process.platform === 'win32')('the packed ffprobe', () => {
+  test('is given the right to run where it lacks it', async () => {
+    const path = join(folder, 'ffprobe-without');
+    await writeFile(path, '#!/bin/sh\n');
+    await chmod(path, 0o644);
+    expect(await madeExecutable(path, { HOME: folder })).toBe(path);
+    expect((await stat(path)).mode & 0o111).toBe(0o111);
+  });
+
   test('is found and runs', async () => {
     const path = await installedFfprobePath({ HOME: folder });
     const tools = await findFfmpeg({
