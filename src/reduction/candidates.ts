@@ -60,13 +60,13 @@ export function fitProposal(data: Observations, rough: Proposal, known: KnownFib
   // On one side of a straight line field and fibre are one number: nothing to try.
   if (proposal.signs === null || proposal.signs.some((sign) => sign !== proposal.signs![0])) {
     const free = fitSweep(data, modelOf(proposal, []), proposal.start);
-    if (free !== null && isSeparated(free)) return candidate('separated', free);
+    if (free !== null && isSeparated(data, free)) return candidate('separated', free);
   }
   const held = fitAssumed(data, proposal);
   if (held === null) return null;
   if (uncertainty(held, at.fibre) < 0.5 * separatedShare * fieldTorque(held)) {
     const free = fitSweep(data, modelOf(proposal, []), held.parameters);
-    if (free !== null && isSeparated(free)) return candidate('separated', free);
+    if (free !== null && isSeparated(data, free)) return candidate('separated', free);
   }
   return candidate('assumed', held);
 }
@@ -122,10 +122,16 @@ function modelOf({ kind, turn, signs }: Proposal, priors: readonly Prior[]): Swe
   };
 }
 
-/** Whether the fibre's share came out of the data alone, and as something a fibre can have. */
-function isSeparated(fit: SweepFit): boolean {
+/**
+ * Whether the fibre's share came out of the data alone, and as something a fibre can have. On one side of the reversal only the
+ * directions' slight lag can tell it, which asks for more; frequencies alone never do there, as any bend would pass for a fibre.
+ */
+function isSeparated(data: Observations, fit: SweepFit): boolean {
   const u = uncertainty(fit, at.fibre);
-  return u < separatedShare * fieldTorque(fit) && fit.parameters[at.fibre]! > -2 * u;
+  const oneSide = reversalWithin(data, fit.model.signs, fit.parameters[at.along]!) === null;
+  if (oneSide && !fit.model.directions) return false;
+  const limit = oneSide ? 0.5 * separatedShare : separatedShare;
+  return u < limit * fieldTorque(fit) && fit.parameters[at.fibre]! > -2 * u;
 }
 
 function uncertainty({ covariance, parameters }: SweepFit, parameter: number): number {

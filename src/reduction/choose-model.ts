@@ -91,10 +91,19 @@ function isAdequate(candidate: Candidate | ScaledCandidate): boolean {
   return dof > 0 && !raised && chiSquare < dof + 3 * Math.sqrt(2 * dof);
 }
 
-/** Candidates fitted to the same data as the chosen one: with rest directions, or with frequencies alone. */
+/**
+ * Candidates fitted to the same data as the chosen one: with rest directions, or with frequencies alone. Beside a straight line
+ * the slightly bent one is no rival, since the budget has a row for a misalignment that is not seen.
+ */
 export function rivals({ chosen, candidates }: ModelChoice): ScaledCandidate[] {
   const { directions } = chosen.fit.model;
-  return candidates.filter((other) => other !== chosen && other.fit.model.directions === directions);
+  const isBent = (other: ScaledCandidate) => other.proposal.kind === 'hyperbola' && other.reversal_A === null;
+  return candidates.filter(
+    (other) =>
+      other !== chosen &&
+      other.fit.model.directions === directions &&
+      !(chosen.proposal.kind === 'line' && isBent(other)),
+  );
 }
 
 /** The candidate with the lowest criterion; null for none. */
