@@ -14,8 +14,14 @@ export interface Setup {
  * 0.01 per radian (estimated from the drag of a cylinder, no published source).
  */
 const DRAG_u_per_rad = 0.01;
-/** Skew of the torque: the fibre pulls a turned-round bar off the field by its share of the torque times up to a half turn of twist. */
-const SKEW_u = 0.1;
+/**
+ * Skew of the torque is the fibre's share times its twist at rest: seldom above this many radians, also where the bar has turned round, and
+ * never taken wider than SKEW_u, since a second harmonic comes from the view as well.
+ */
+const TWIST_u_rad = 1.5;
+const SKEW_u = 0.15;
+/** The fibre's share times the squared frequency, see `sharePrior`. */
+const FIBRE_Hz2 = 0.02;
 /** Scaling of an oblique or side view to degrees: an error of 3 % in angle is 6 % in the effect of the amplitude, which share takes up. */
 const SCALE_u = 0.06;
 
@@ -32,9 +38,15 @@ export function sharePrior(
   if (unit === 'px') return { value: 1, u: 1 };
   const fibre = options.fibreShare ?? {
     value: 0.03,
-    u: Math.min(0.5, Math.hypot(0.04, 0.02 / frequency_Hz ** 2)),
+    u: Math.min(0.5, Math.hypot(0.04, FIBRE_Hz2 / frequency_Hz ** 2)),
   };
   return { value: 1 - fibre.value, u: options.view === 'plan' ? fibre.u : Math.hypot(fibre.u, SCALE_u) };
+}
+
+/** Standard uncertainty of the skew about zero. */
+function skewPrior({ fibreShare }: RingDownOptions, frequency_Hz: number): number {
+  const share = fibreShare === undefined ? FIBRE_Hz2 / frequency_Hz ** 2 : fibreShare.value + fibreShare.u;
+  return Math.max(1e-6, Math.min(SKEW_u, TWIST_u_rad * Math.abs(share)));
 }
 
 /** The model without side lines and where its fit starts. */
@@ -42,7 +54,7 @@ export function setUp(start: StartValues, duration_s: number, options: RingDownO
   const share = sharePrior(options, start.frequency_Hz, unit);
   const priors: Prior[] = [
     { parameter: SHARE, value: share.value, u: Math.max(share.u, 1e-6) },
-    { parameter: SKEW, value: 0, u: SKEW_u },
+    { parameter: SKEW, value: 0, u: skewPrior(options, start.frequency_Hz) },
     { parameter: DRAG, value: 0, u: DRAG_u_per_rad },
   ];
   const swept = Math.PI * start.frequency_Hz * (options.exposure_s ?? 0);

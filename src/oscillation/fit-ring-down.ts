@@ -22,11 +22,13 @@ const NOMINAL_AMPLITUDE_rad = 0.14;
 /** Fall of chi-square by one more parameter that Akaike's criterion asks for, beside the correction for few samples. */
 const AIC_PENALTY = 2;
 /**
- * A prior further than this many standard uncertainties from what the data say is doubted rather than the data; the share's only where it
- * is also off by more than `SHARE_APART`: smaller disagreements come from disturbances, which a prior is there to withstand.
+ * A prior further than this many standard uncertainties from what the data say is doubted rather than the data; the share's only where the
+ * data know it to within `SHARE_KNOWN_u` and it is off by more than `SHARE_APART`: the rest comes from disturbances, which a prior is there to
+ * withstand.
  */
 const TENSION = 4;
 const SHARE_APART = 0.3;
+const SHARE_KNOWN_u = 0.15;
 
 /**
  * Fits the decaying twist of one segment: frequency in the limit of small amplitude, damping, rest direction, each with a standard uncertainty
@@ -81,7 +83,7 @@ function withWiderPriors(series: Series, fit: TwistFit): { fit: TwistFit; amplit
     const free = withoutPrior(fit, prior);
     const apart = free === null ? 0 : Math.abs(free.value - prior.value);
     if (free === null || apart < TENSION * Math.hypot(free.u, prior.u)) return prior;
-    if (prior.parameter === SHARE && apart < SHARE_APART) return prior;
+    if (prior.parameter === SHARE && (apart < SHARE_APART || free.u > SHARE_KNOWN_u)) return prior;
     widened.push(prior.parameter);
     return { ...prior, u: apart };
   });
@@ -147,7 +149,7 @@ function factsOf(
     swing:
       swing !== undefined && half !== null
         ? { frequency_Hz: swing.frequency_Hz, share: shareOf(swing.amplitude_px / half) }
-        : angleLine !== null
+        : angleLine !== null && shareOf(angleLine.amplitude) > 0.005
           ? { frequency_Hz: angleLine.frequency_Hz, share: shareOf(angleLine.amplitude) }
           : null,
     amplitudeShift: 1 / seenAt(parameters) - 1,
