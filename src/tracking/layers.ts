@@ -23,8 +23,12 @@ export interface BarLayers {
   readonly bar: Float32Array;
   readonly see: Float32Array;
   readonly variance: Float32Array;
+  /** Variance of what is seen, background included. */
+  readonly raw: Float32Array;
   /** One over the expected variance of a residual; 0 where nothing is known. */
   readonly weight: Float32Array;
+  /** 1 where enough pictures show the place, else 0. */
+  readonly known: Uint8Array;
   /** Variance of the sensor's noise. */
   readonly noise: number;
   readonly reach_px: number;
@@ -130,13 +134,19 @@ export function separate(
     rest[at] = Math.max(0, seen[at]! - 2 * beta * cov[at]! + beta * beta * spread[at]!);
   }
   const variance = smooth(rest, columns, rows);
+  const raw = background === null ? variance : smooth(seen, columns, rows);
   const enough = 0.5 * pictures.length;
   const filled: number[] = [];
   for (let at = 0; at < size; at++) if (n[at]! > enough) filled.push(variance[at]!);
   filled.sort((a, b) => a - b);
   const noise = Math.max(0.05, filled[Math.floor(filled.length * 0.2)] ?? 0.05);
   const weight = new Float32Array(size);
-  for (let at = 0; at < size; at++) if (n[at]! > enough) weight[at] = 1 / (noise + variance[at]!);
+  const known = new Uint8Array(size);
+  for (let at = 0; at < size; at++) {
+    if (n[at]! <= enough) continue;
+    weight[at] = 1 / (noise + variance[at]!);
+    known[at] = 1;
+  }
   return {
     halfU,
     halfV,
@@ -148,7 +158,9 @@ export function separate(
     bar,
     see,
     variance,
+    raw,
     weight,
+    known,
     noise,
     reach_px: Math.hypot(halfU, halfV),
   };

@@ -1,8 +1,9 @@
 import type { Frame } from '../recording/recording.ts';
+import { alignAlong } from './align-along.ts';
 import { findAxis } from './axis.ts';
 import type { TriedPlace } from './first-places.ts';
 import { firstPlaces, placed, soundIndices } from './first-places.ts';
-import type { BarLayers, Outline, PlacedPicture } from './layers.ts';
+import type { BarLayers, Outline } from './layers.ts';
 import { seeThrough, separate, uncover } from './layers.ts';
 import { findMotion } from './motion.ts';
 import { movingLayer } from './moving-layer.ts';
@@ -103,11 +104,10 @@ export function learnBar(frames: readonly Frame[], squash: number): BarModel | N
   let outline = findOutline(layers);
   if (outline === null) return 'no_outline';
   const axis = findAxis(layers, outline);
-  if (axis !== null) {
-    tried = turned(tried, axis.turn_rad);
-    layers = separate(placed(sample, tried), grid, null, null, motion.noise);
-    outline = findOutline(layers) ?? outline;
-  }
+  if (axis !== null) tried = turned(tried, axis.turn_rad);
+  tried = alignAlong(sample, tried, outline, squash);
+  layers = separate(placed(sample, tried), grid, null, null, motion.noise);
+  outline = findOutline(layers) ?? outline;
   let background = emptyPicture(1, 1);
   let points = choosePoints(layers, MOST_POINTS, outline);
   for (let round = 0; round < 2; round++) {

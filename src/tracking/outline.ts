@@ -1,26 +1,33 @@
 import type { BarLayers, Outline } from './layers.ts';
 
+/** Squared slope over variance that counts half as much as any more would. */
+const MUCH = 60;
+
 /**
  * The bar's outline in its own frame, from the averaged picture: its long edges are the outermost lines along the bar
  * that stay sharp in the bar's frame (whatever belongs to the background is smeared there or changes from picture to
  * picture), its ends are where those lines stop. Null where no such lines are found.
  */
 export function findOutline(layers: BarLayers): Outline | null {
-  const { columns, rows, halfU, halfV, mean, variance, noise } = layers;
+  const { columns, rows, halfU, halfV, mean, raw, noise } = layers;
   const sharp = new Float32Array(columns * rows);
   const profile = new Float64Array(rows);
   for (let row = 1; row < rows - 1; row++) {
     for (let column = 0; column < columns; column++) {
       const at = row * columns + column;
-      if (layers.weight[at] === 0) continue;
+      const { weight } = layers;
+      if (weight[at] === 0 || weight[at + columns] === 0 || weight[at - columns] === 0) continue;
       const slope = (mean[at + columns]! - mean[at - columns]!) / 2;
-      const q = (slope * slope) / (noise + variance[at]!);
-      // A single very sharp spot must not outweigh a line.
-      sharp[at] = q / (1 + q / 400);
+      const q = (slope * slope) / (noise + raw[at]!);
+      // A very sharp line must not make a less sharp one disappear: what counts is its length.
+      sharp[at] = q / (1 + q / MUCH);
       const u = (column - halfU) / halfU;
       profile[row] = profile[row]! + sharp[at]! * u * u;
     }
   }
+  const bare = texturedRows(layers);
+  for (let row = 0; row < bare.first; row++) profile[row] = 0;
+  for (let row = bare.last + 1; row < rows; row++) profile[row] = 0;
   const edges = outermost(profile);
   if (edges === null) return null;
   const [top, bottom] = edges;
@@ -45,7 +52,72 @@ export function findOutline(layers: BarLayers): Outline | null {
   let right = columns - 1;
   while (right > 2 && !(enough(right) && enough(right - 1) && enough(right - 2))) right--;
   if (right - left < bottom - top) return null;
-  return { left: left - halfU, right: right - halfU, top: top - halfV, bottom: bottom - halfV };
+  const ends = endEdges(layers, left, right, top, bottom);
+  return { left: ends.left - halfU, right: ends.right - halfU, top: top - halfV, bottom: bottom - halfV };
+}
+
+/**
+ * First and last row that may belong to the bar: from the rims inwards, rows that vary in the bar's frame as the rims do
+ * are a textured background. An even background doesn't vary, and nothing is left out.
+ */
+function texturedRows(layers: BarLayers): { first: number; last: number } {
+  const { columns, rows, halfU, raw, noise, weight } = layers;
+  const usual = Array.from({ length: rows }, (_, row) => {
+    const values: number[] = [];
+    for (let column = 0; column < columns; column++) {
+      const at = row * columns + column;
+      // Near the pivot nothing moves.
+      if (weight[at] !== 0 && Math.abs(column - halfU) > 0.3 * halfU) values.push(raw[at]!);
+    }
+    return values.sort((a, b) => a - b)[values.length >> 1] ?? Number.POSITIVE_INFINITY;
+  });
+  const inwards = (from: number, step: 1 | -1): number => {
+    const rim = [0, 1, 2, 3].map((k) => usual[from + k * step] ?? 0).filter(Number.isFinite);
+    const level = Math.max(6 * noise, 0.2 * Math.max(0, ...rim));
+    let row = from;
+    while (row >= 0 && row < rows && usual[row]! > level) row += step;
+    return row < 0 || row >= rows ? from : row - 2 * step;
+  };
+  return { first: inwards(0, 1), last: inwards(rows - 1, -1) };
+}
+
+/** Share of the bar's length about where the long edges stop in which its end edge is looked for. */
+const END_REACH = 0.12;
+
+/** The bar's ends: near where the long edges stop, the outermost steep lines across it; where there are none, there. */
+function endEdges(
+  layers: BarLayers,
+  left: number,
+  right: number,
+  top: number,
+  bottom: number,
+): { left: number; right: number } {
+  const { columns, mean, raw, noise, weight } = layers;
+  const inset = Math.floor((bottom - top) / 5);
+  const steep = new Float64Array(columns);
+  for (let column = 1; column < columns - 1; column++) {
+    for (let row = top + inset; row <= bottom - inset; row++) {
+      const at = row * columns + column;
+      if (weight[at] === 0 || weight[at + 1] === 0 || weight[at - 1] === 0) continue;
+      const slope = (mean[at + 1]! - mean[at - 1]!) / 2;
+      const q = (slope * slope) / (noise + raw[at]!);
+      steep[column] = steep[column]! + q / (1 + q / MUCH);
+    }
+  }
+  const reach = Math.ceil(END_REACH * (right - left));
+  const enough = 3 * (bottom - top - 2 * inset + 1);
+  const find = (around: number, outwards: 1 | -1): number => {
+    let highest = 0;
+    for (let k = -reach; k <= reach; k++) highest = Math.max(highest, steep[around + k] ?? 0);
+    if (highest < enough) return around;
+    for (let k = reach; k >= -reach; k--) {
+      const at = around + k * outwards;
+      const here = steep[at] ?? 0;
+      if (here >= 0.4 * highest && here >= (steep[at - 1] ?? 0) && here >= (steep[at + 1] ?? 0)) return at;
+    }
+    return around;
+  };
+  return { left: find(left, -1), right: find(right, 1) };
 }
 
 /**
@@ -53,21 +125,21 @@ export function findOutline(layers: BarLayers): Outline | null {
  * at which the sharp lines, projected along u, pile up most steeply.
  */
 export function straightenBy(layers: BarLayers): number {
-  const { columns, rows, halfU, halfV, mean, variance, noise, weight } = layers;
+  const { columns, rows, halfU, halfV, mean, raw, noise, weight } = layers;
   const us: number[] = [];
   const vs: number[] = [];
   const qs: number[] = [];
   for (let row = 1; row < rows - 1; row++) {
     for (let column = 1; column < columns - 1; column++) {
       const at = row * columns + column;
-      if (weight[at] === 0) continue;
+      if (weight[at] === 0 || weight[at + columns] === 0 || weight[at - columns] === 0) continue;
       const gv = (mean[at + columns]! - mean[at - columns]!) / 2;
       const gu = (mean[at + 1]! - mean[at - 1]!) / 2;
-      const q = (gv * gv) / (noise + variance[at]!);
+      const q = (gv * gv) / (noise + raw[at]!);
       if (q < 2 || Math.abs(gu) > Math.abs(gv)) continue;
       us.push(column - halfU);
       vs.push(row - halfV);
-      qs.push((q / (1 + q / 400)) * Math.min(1, ((column - halfU) / halfU) ** 2));
+      qs.push((q / (1 + q / MUCH)) * Math.min(1, ((column - halfU) / halfU) ** 2));
     }
   }
   const pileUp = (turn: number): number => {

@@ -47,7 +47,7 @@ function trusted(outline: Outline, u: number, v: number, gu: number, gv: number)
  * slopes that don't belong to the bar as a body are left out.
  */
 export function choosePoints(layers: BarLayers, most: number, outline: Outline | null = null, turns = true): BarPoints {
-  const { columns, rows, halfU, halfV, bar, see, weight } = layers;
+  const { columns, rows, halfU, halfV, bar, see, weight, known } = layers;
   const size = columns * rows;
   const grad = (from: Float32Array, at: number, stride: number): number =>
     (from[at + stride]! - from[at - stride]!) / 2;
@@ -61,7 +61,9 @@ export function choosePoints(layers: BarLayers, most: number, outline: Outline |
     for (let column = 1; column < columns - 1; column++) {
       const at = row * columns + column;
       const w = weight[at]!;
-      if (w === 0) continue;
+      // Where a neighbour isn't known, neither is the slope.
+      const around = known[at - 1]! & known[at + 1]! & known[at - columns]! & known[at + columns]!;
+      if (w === 0 || around === 0) continue;
       const ground = layers.ground[at]!;
       const gu = grad(bar, at, 1) + grad(see, at, 1) * ground;
       const gv = grad(bar, at, columns) + grad(see, at, columns) * ground;
@@ -104,7 +106,7 @@ export function choosePoints(layers: BarLayers, most: number, outline: Outline |
     turns,
     reach_px: Math.max(1, layers.reach_px),
   };
-  let known = 0;
+  let told = 0;
   for (const [i, at] of chosen.entries()) {
     points.u[i] = (at % columns) - halfU;
     points.v[i] = Math.floor(at / columns) - halfV;
@@ -116,9 +118,9 @@ export function choosePoints(layers: BarLayers, most: number, outline: Outline |
     points.seeV[i] = grad(see, at, columns);
     points.weight[i] = weight[at]!;
     points.knowledge[i] = turns ? turning[at]! : along[at]!;
-    known += points.knowledge[i]!;
+    told += points.knowledge[i]!;
   }
-  for (let i = 0; i < count; i++) points.knowledge[i] = known > 0 ? points.knowledge[i]! / known : 1 / count;
+  for (let i = 0; i < count; i++) points.knowledge[i] = told > 0 ? points.knowledge[i]! / told : 1 / count;
   return points;
 }
 
