@@ -1,7 +1,7 @@
 import type { Estimate } from '../numerics/estimate.ts';
+import { statusOf } from '../oscillation/checks.ts';
 import type { Check, RingDown } from '../oscillation/ring-down.ts';
 import type { DecodeAccount } from '../recording/recording.ts';
-import type { Status } from '../report/results.ts';
 import type { SessionSegment, SessionView } from '../session/session.ts';
 import type { TrackOutcome } from '../tracking/trace.ts';
 import type { MeasuredSegment } from './measure-segment.ts';
@@ -24,7 +24,7 @@ export interface SegmentFindings {
 export function segmentResult(found: SegmentFindings): MeasuredSegment {
   const { segment, view, opened, outcome, account, ringDown } = found;
   const checks = [...decodingChecks(account), ...found.checks];
-  const status = statusOf(checks, ringDown);
+  const status = ringDown ? statusOf(checks) : 'unmeasured';
   const r = status === 'unmeasured' ? null : ringDown;
   const angles = r?.unit === 'rad' ? r : null;
   const equilibrium = angles ? folded(angles.equilibrium, view.kind) : null;
@@ -62,12 +62,6 @@ export function segmentResult(found: SegmentFindings): MeasuredSegment {
     checks,
   };
   return { trace: outcome.ok ? outcome.trace : null, ringDown, result };
-}
-
-/** The contract's status: any fault leaves a segment unmeasured, any doubt makes it doubtful. */
-export function statusOf(checks: readonly Check[], ringDown: RingDown | null): Status {
-  if (!ringDown || checks.some((c) => c.severity === 'fault')) return 'unmeasured';
-  return checks.some((c) => c.severity === 'doubt') ? 'doubtful' : 'measured';
 }
 
 function decodingChecks(account: DecodeAccount): Check[] {
