@@ -85,8 +85,7 @@ export async function startHost(options: HostOptions, file: string | null = null
     pool,
     fits,
     store: new MeasuredStore(cache),
-    // One core is left for the pictures and fits that the user looks at meanwhile.
-    cores: Math.max(1, cores - 1),
+    cores: Math.max(1, cores),
     changed: () => broadcast('results', measuring.state()),
     report,
   });

@@ -25,7 +25,7 @@ export interface MeasuringKit {
   readonly pool: TrackerPool;
   readonly fits: FitThread;
   readonly store: MeasuredStore;
-  /** How many segments are followed at once. */
+  /** Most segments that are followed at once. */
   readonly cores: number;
   /** Told when the state has changed; not more often than every `TELL_EVERY_MS` while a segment is followed. */
   readonly changed: () => void;
@@ -66,7 +66,7 @@ export class Measuring {
   #told_ms = 0;
   #held = false;
   #closed = false;
-  #waiters: (() => void)[] = [];
+  readonly #waiters = new Set<() => void>();
 
   constructor(kit: MeasuringKit) {
     this.#kit = kit;
@@ -136,11 +136,18 @@ export class Measuring {
 
   /** Settles when everything that can be measured is. Rejects with the signal's reason when it aborts. */
   async settled(signal: AbortSignal): Promise<void> {
-    while (this.#pending().length > 0 && !this.#closed) {
-      signal.throwIfAborted();
+    const over = () => this.#closed || this.#pending().length === 0;
+    if (!over()) {
       await new Promise<void>((resolve) => {
-        this.#waiters.push(resolve);
-        signal.addEventListener('abort', () => resolve(), { once: true });
+        const go = () => {
+          signal.removeEventListener('abort', go);
+          this.#waiters.delete(go);
+          resolve();
+        };
+        this.#waiters.add(go);
+        signal.addEventListener('abort', go, { once: true });
+        // Somebody waits now: with all there is.
+        this.#advance();
       });
     }
     signal.throwIfAborted();
@@ -163,8 +170,10 @@ export class Measuring {
   #advance(): void {
     if (this.#closed) return;
     for (const w of this.#wanted) this.#show(w);
+    // One core is left for the pictures and fits that the user looks at meanwhile, unless the user waits for the results.
+    const atOnce = this.#waiters.size > 0 ? this.#kit.cores : Math.max(1, this.#kit.cores - 1);
     for (const w of this.#wanted) {
-      if (this.#held || this.#running.size >= this.#kit.cores) break;
+      if (this.#held || this.#running.size >= atOnce) break;
       if (this.#running.has(w.follow) || this.#failed.has(w.follow) || this.#kit.store.fit(w.fit)) continue;
       this.#begin(w);
     }
@@ -228,7 +237,7 @@ export class Measuring {
   }
 
   #wake(): void {
-    for (const wake of this.#waiters.splice(0)) wake();
+    for (const wake of [...this.#waiters]) wake();
   }
 }
 

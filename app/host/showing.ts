@@ -67,8 +67,12 @@ export class PlayPace {
     while (this.#sent - this.#shown >= FRAMES_AHEAD) {
       signal.throwIfAborted();
       await new Promise<void>((resolve) => {
-        this.#wake = resolve;
-        signal.addEventListener('abort', () => resolve(), { once: true });
+        const go = () => {
+          signal.removeEventListener('abort', go);
+          resolve();
+        };
+        this.#wake = go;
+        signal.addEventListener('abort', go, { once: true });
       });
     }
     signal.throwIfAborted();
