@@ -36,6 +36,7 @@ export const commands = [
   { id: 'add-recording', menu: 'file', label: 'Add a recording…', accelerator: null, needs: ['recording'] },
   { id: 'save', menu: 'file', label: 'Save', accelerator: 'CmdOrCtrl+S', needs: ['recording'] },
   { id: 'save-as', menu: 'file', label: 'Save as…', accelerator: 'CmdOrCtrl+Shift+S', needs: ['recording'] },
+  { id: 'close-session', menu: 'file', label: 'Close the session', accelerator: null, needs: ['recording'] },
   { id: 'export-all', menu: 'file', label: 'Export everything…', accelerator: 'CmdOrCtrl+E', needs: ['results'] },
   { id: 'export-csv', menu: 'file', label: 'Export table (CSV)…', accelerator: null, needs: ['results'] },
   { id: 'export-json', menu: 'file', label: 'Export results (JSON)…', accelerator: null, needs: ['results'] },

@@ -12,6 +12,25 @@ const STEPS = [
   ['Read and export', 'frequencies, field and moment with their uncertainties.'],
 ] as const;
 
+/** A bar on its fibre, and how it rings down: f(t) = exp(-t / 2.6) cos(2π t) over eight swings. */
+function RingDownDrawing() {
+  const points = Array.from({ length: 321 }, (_, i) => {
+    const t = i / 40;
+    return `${(150 + (i / 320) * 440).toFixed(1)} ${(52 - 38 * Math.exp(-t / 2.6) * Math.cos(2 * Math.PI * t)).toFixed(1)}`;
+  });
+  return (
+    <svg class="empty-drawing" viewBox="0 0 600 104" aria-hidden="true">
+      <line x1="62" x2="62" y1="4" y2="52" />
+      <g transform="rotate(-14 62 52)">
+        <rect class="south" x="14" y="46.500" width="48" height="11" rx="1.500" />
+        <rect class="north" x="62" y="46.500" width="48" height="11" rx="1.500" />
+      </g>
+      <line class="axis" x1="150" x2="592" y1="52" y2="52" />
+      <path class="curve" d={`M${points.join('L')}`} />
+    </svg>
+  );
+}
+
 /** Nothing is open: what to do, the demo session, sessions used before, and the cautions. */
 export function EmptyState() {
   const [recent, setRecent] = useState<Result<'recentSessions'>>([]);
@@ -25,6 +44,7 @@ export function EmptyState() {
   return (
     <main class="empty-state">
       <div class="empty-page">
+        <RingDownDrawing />
         <h1>Time a magnet on a fibre from a phone recording</h1>
         <p class="lead">Drop a recording or a session file here, or</p>
         <div class="empty-buttons">

@@ -7,11 +7,11 @@ import { entryText, quantityText } from '../numbers/quantity-text.ts';
 import { PlotAxes } from '../plots/plot-axes.tsx';
 import { segment, selectSegment } from '../state/selection.ts';
 
-const HEIGHT = 264;
+const HEIGHT = 250;
 const LEFT = 58;
-const SPLIT = 164;
+const SPLIT = 152;
 const BOTTOM = HEIGHT - 36;
-const LOWER_TOP = 178;
+const LOWER_TOP = 166;
 
 /** f0² against current with the fitted curve, and the residuals below. A point is a button that selects its segment. */
 export function FieldPlot({ results }: { results: Results }) {

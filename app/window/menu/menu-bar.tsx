@@ -5,6 +5,21 @@ import { commandState, run } from '../state/command-table.ts';
 import { documentState } from '../state/document.ts';
 import { keysText } from './accelerators.ts';
 
+/** Commands that begin a new group within their menu. */
+const GROUPS: ReadonlySet<string> = new Set([
+  'save',
+  'export-all',
+  'copy-table',
+  'zoom-in',
+  'follow',
+  'frame-back',
+  'time-zoom-in',
+  'segment-previous',
+  'edit-current',
+  'delete-segment',
+  'about',
+]);
+
 const MENUS = Object.keys(menuLabels) as Menu[];
 
 /** The menus, where the shell has none of its own. Keyboard as usual for menu bars: arrows, Enter, Escape, first letters. */
@@ -114,6 +129,7 @@ function Item({ command, onDone }: { command: Command; onDone(): void }) {
       tabIndex={-1}
       aria-disabled={!enabled}
       data-command={command.id}
+      data-group={GROUPS.has(command.id) || undefined}
       onClick={() => {
         if (!enabled) return;
         onDone();

@@ -1,7 +1,7 @@
 import { useEffect, useRef } from 'preact/hooks';
 import { viewDraft } from '../state/bar.ts';
 import { drawing, panel, pictureSize, zoom, zoomNow } from '../state/picture-tools.ts';
-import { playing, shown, wantedWidth_px } from '../state/pictures.ts';
+import { playing, shown, wantWidth } from '../state/pictures.ts';
 import { frame, recording, view } from '../state/selection.ts';
 import { BarOutline } from './bar-outline.tsx';
 import { type Drag, dragFrom, type Grip, gripAt } from './drags.ts';
@@ -42,8 +42,7 @@ export function PictureStage() {
   }, []);
 
   useEffect(() => {
-    const wanted = Math.ceil((picture.width * now.scale * devicePixelRatio) / 160) * 160;
-    wantedWidth_px.value = Math.max(160, Math.min(wanted, picture.width, 3840));
+    wantWidth(picture.width * now.scale * devicePixelRatio, Math.min(picture.width, 3840));
   }, [picture.width, now.scale]);
 
   useEffect(() => {

@@ -1,5 +1,6 @@
 import { useEffect, useRef } from 'preact/hooks';
 import uPlot from 'uplot';
+import { fixedText } from '../numbers/quantity-text.ts';
 import { colours } from '../state/colours.ts';
 
 interface ChartProps {
@@ -43,6 +44,13 @@ export function Chart({ label, height, data, options, of }: ChartProps) {
 
 const FONT = '11px "Segoe UI", Cantarell, Ubuntu, "Noto Sans", "Liberation Sans", Arial, system-ui, sans-serif';
 
+/** A mark with as many decimals as the step to its neighbour needs, and a true minus sign. */
+function tickText(value: number, neighbour: number): string {
+  const step = Math.abs(value - neighbour);
+  const decimals = step > 0 ? Math.min(6, Math.max(0, -Math.floor(Math.log10(step) + 1e-9))) : 0;
+  return fixedText(value, decimals);
+}
+
 /** An axis as all plots of the window have it. */
 export function axis(more: Partial<uPlot.Axis>): uPlot.Axis {
   const c = colours.peek();
@@ -55,6 +63,7 @@ export function axis(more: Partial<uPlot.Axis>): uPlot.Axis {
     gap: 3,
     grid: { stroke: c.line, width: 1 },
     ticks: { stroke: c.line, width: 1, size: 4 },
+    values: (_plot, splits) => splits.map((value, i) => tickText(value, splits[i === 0 ? 1 : i - 1] ?? value)),
     ...more,
   };
 }

@@ -126,10 +126,11 @@ function Sweep({ of: s, onChange }: { of: SessionSegment; onChange(sweep: Sessio
           key={value}
           type="button"
           aria-pressed={s.sweep === value}
+          aria-label={word}
           title={`${word} step; press again for neither`}
           onClick={() => onChange(s.sweep === value ? undefined : value)}
         >
-          <span aria-hidden="true">{sign}</span> {word}
+          <span aria-hidden="true">{sign}</span> <span class="word">{word}</span>
         </button>
       ))}
     </span>

@@ -6,7 +6,7 @@ import { revealCursor, showAround, showWhole, zoomBoard } from './board.ts';
 import { copyTable, exportPlot } from './copies.ts';
 import { askText, dialog } from './dialogs.ts';
 import { documentState, edit, session, step } from './document.ts';
-import { chooseAndOpen, exportAll, exportItem, openDemo, save } from './files.ts';
+import { chooseAndOpen, closeDocument, exportAll, exportItem, openDemo, save } from './files.ts';
 import { follow, following, stopFollowing } from './following.ts';
 import { ask, hello } from './host.ts';
 import { markStart } from './mark.ts';
@@ -44,6 +44,7 @@ const handlers: Readonly<Record<CommandId, () => unknown>> = {
   'add-recording': () => chooseAndOpen(true),
   save: () => save(),
   'save-as': () => save(true),
+  'close-session': closeDocument,
   'export-all': exportAll,
   'export-csv': () => exportItem({ kind: 'results.csv' }),
   'export-json': () => exportItem({ kind: 'results.json' }),

@@ -32,41 +32,73 @@ export function bitmapOf(picture: Picture): Promise<ImageBitmap> {
   return createImageBitmap(new Blob([picture.jpeg], { type: 'image/jpeg' }));
 }
 
-let asking = false;
-let last: { recording: string; frame: number; width: number } | null = null;
+/** A request that has run so long is given up where the cursor has moved on. */
+const PATIENCE_MS = 400;
+
+interface Asked {
+  readonly recording: string;
+  readonly frame: number;
+  readonly width: number;
+  readonly since_ms: number;
+  readonly abort: AbortController;
+}
+
+let asked: Asked | null = null;
+let last: Pick<Asked, 'recording' | 'frame' | 'width'> | null = null;
+
+/** Says how many pixels wide the picture is on the panel; it is read anew only where it would look coarse. */
+export function wantWidth(width_px: number, mostWidth_px: number): void {
+  const steps = Math.ceil(width_px / WIDTH_STEP_PX) * WIDTH_STEP_PX;
+  wantedWidth_px.value = Math.min(Math.max(steps, WIDTH_STEP_PX), mostWidth_px);
+}
+
+const WIDTH_STEP_PX = 480;
 
 /** Keeps the panel's picture at the cursor: one request at a time, always for where the cursor is then. */
 export function keepPicture(): () => void {
   return effect(() => {
-    void frame.value;
+    const at = frame.value;
     void wantedWidth_px.value;
-    if (recording.value?.state === 'ready' && !playing.value) void fetchNewest();
+    if (recording.value?.state !== 'ready' || playing.value) return;
+    if (!asked) void fetchNewest();
+    else if (asked.frame !== at && performance.now() - asked.since_ms > PATIENCE_MS) asked.abort.abort();
   });
 }
 
 async function fetchNewest(): Promise<void> {
-  if (asking) return;
-  asking = true;
-  try {
-    for (;;) {
-      const r = recording.peek();
-      const at = frame.peek();
-      const width = wantedWidth_px.peek();
-      if (r?.state !== 'ready' || at === null || playing.peek()) return;
-      if (last?.recording === r.id && last.frame === at && last.width === width && shown.peek()?.index === at) return;
-      last = { recording: r.id, frame: at, width };
-      const picture = await host().call('picture', { recording: r.id, frame: at, maxWidth_px: width });
-      if (!playing.peek() && recording.peek()?.id === r.id) await showPicture(r.id, picture);
+  for (let next = wanted(); next; next = wanted()) {
+    const mine: Asked = { ...next, since_ms: performance.now(), abort: new AbortController() };
+    asked = mine;
+    try {
+      const args = { recording: mine.recording, frame: mine.frame, maxWidth_px: mine.width };
+      const picture = await host().call('picture', args, mine.abort.signal);
+      last = next;
+      if (!playing.peek() && recording.peek()?.id === mine.recording) await showPicture(mine.recording, picture);
+    } catch (error) {
+      if (!mine.abort.signal.aborted) {
+        tellFailure(error);
+        return;
+      }
+    } finally {
+      asked = null;
     }
-  } catch (error) {
-    tellFailure(error);
-  } finally {
-    asking = false;
   }
+}
+
+/** What is to be asked for: the cursor's frame, unless it is shown already and fine enough. */
+function wanted(): Pick<Asked, 'recording' | 'frame' | 'width'> | null {
+  const r = recording.peek();
+  const at = frame.peek();
+  const width = wantedWidth_px.peek();
+  if (r?.state !== 'ready' || at === null || playing.peek()) return null;
+  const same = last?.recording === r.id && last.frame === at;
+  if (same && last && last.width >= width && (shown.peek() === null || shown.peek()?.index === at)) return null;
+  return { recording: r.id, frame: at, width };
 }
 
 /** Forgets the picture: another document is open. */
 export function forgetPicture(): void {
+  asked?.abort.abort();
   shown.value?.bitmap.close();
   shown.value = null;
   last = null;

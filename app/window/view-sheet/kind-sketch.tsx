@@ -52,10 +52,10 @@ export function KindSketch({ kind, elevation_deg = 45, facing_deg = 0, onDrag }:
           aria-label="Camera straight above the bar, looking along the fibre"
         >
           <line class="thin" x1="20" x2="200" y1="80" y2="80" />
-          <line class="fibre" x1="110" x2="110" y1="30" y2="66" />
-          <rect class="bar" x="80" y="66" width="60" height="7" rx="1" />
-          <Camera x={110} y={17} turn={90} />
-          <text x="128" y="20">
+          <line class="fibre" x1="80" x2="80" y1="30" y2="66" />
+          <rect class="bar" x="50" y="66" width="60" height="7" rx="1" />
+          <Camera x={80} y={17} turn={90} />
+          <text x="96" y="20">
             camera along the fibre
           </text>
           <text x="26" y="92">

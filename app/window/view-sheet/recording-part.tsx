@@ -52,7 +52,7 @@ export function RecordingPart() {
           </dd>
           <dt>File</dt>
           <dd>
-            {facts.container}, {facts.codec}
+            {containerName(facts.container, r.name)}, {facts.codec}
             {bytes === null ? '' : `, ${bytesText(bytes)}`}
           </dd>
           <dt>Clock</dt>
@@ -90,4 +90,10 @@ function setClock(id: string, change: { time_scale?: number | undefined; u_time_
       return Object.fromEntries(merged) as typeof r;
     }),
   }));
+}
+
+/** One of the demuxer's names for the container: that of the file's ending where it is among them. */
+function containerName(names: string, file: string): string {
+  const all = names.split(',');
+  return all.find((name) => file.toLowerCase().endsWith(`.${name}`)) ?? all[0] ?? names;
 }
