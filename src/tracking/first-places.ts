@@ -191,9 +191,11 @@ export function soundIndices(tried: readonly TriedPlace[]): number[] {
   if (agreed.length === 0) return [];
   const middle = (of: (a: Agreement) => number): number => agreed.map(of).sort((a, b) => a - b)[agreed.length >> 1]!;
   const share = middle((a) => a.share);
+  // A hand over the bar in a few pictures must not teach that a hand is usual.
+  const misfit = 3 * middle((a) => a.misfit) + 0.1;
   const indices: number[] = [];
-  for (const [i, { agreement }] of tried.entries()) {
-    if (agreement !== null && agreement.share > 0.6 * share && agreement.lastStep_px < 1) indices.push(i);
+  for (const [i, { agreement: a }] of tried.entries()) {
+    if (a !== null && a.share > 0.6 * share && a.misfit < misfit && a.lastStep_px < 1) indices.push(i);
   }
   return indices;
 }

@@ -1,10 +1,11 @@
+import { type Brightness, brightnessOf } from './brightness.ts';
 import type { BarModel } from './learn-bar.ts';
 import type { Picture } from './picture.ts';
 import type { BarPoints } from './points.ts';
 import { thinPoints } from './points.ts';
 import type { Placement } from './register.ts';
 import { register } from './register.ts';
-import { searchShift, searchTurn } from './search.ts';
+import { disagreement, searchShift, searchTurn } from './search.ts';
 import type { Refusal } from './trace.ts';
 
 /** What one frame gave. Angle in radians, anticlockwise as seen; middle in pixels of the region; `sd` of the angle, of an end of its place. */
@@ -20,6 +21,8 @@ export type Fix =
 
 /** Points used to look for the bar before it is registered. */
 const SCOUTS = 150;
+/** Residuals beyond so many expected standard deviations count as disagreement, however large. */
+const TOLERANCE = 6;
 
 /** Follows the bar from frame to frame, each frame once and in order of time. */
 export class Follower {
@@ -31,6 +34,7 @@ export class Follower {
   #rateX = 0;
   #rateY = 0;
   #misses = 0;
+  #brightness: Brightness | null = null;
 
   constructor(model: BarModel) {
     this.#model = model;
@@ -41,7 +45,8 @@ export class Follower {
   /** Finds the bar in the next frame's region. */
   next(picture: Picture<Uint8Array>, time_s: number): Fix {
     const { background, points, usualShare, usualMisfit } = this.#model;
-    const place = this.#look(picture, time_s);
+    const brightness = brightnessOf(picture);
+    const place = this.#look(picture, time_s, brightness);
     let agreement = register(picture, background, points, place, [4, 3]);
     // Two steps are enough from a good prediction; more only where the last one was still long.
     for (let more = 0; more < 3 && agreement !== null && agreement.lastStep_px > 0.03; more++) {
@@ -70,6 +75,7 @@ export class Follower {
     this.#misses = 0;
     this.#time_s = time_s;
     this.#last = place;
+    this.#brightness = brightness;
     const { axis_rad, middleU_px: u, middleV_px: v } = this.#model;
     const c = Math.cos(place.turn);
     const s = Math.sin(place.turn);
@@ -82,19 +88,39 @@ export class Follower {
     };
   }
 
+  /**
+   * A placement near the bar's. Light may have changed since the last one: of its brightness as it was and as the
+   * picture's mean and contrast make it, the one that agrees better with the picture is taken.
+   */
+  #look(picture: Picture<Uint8Array>, time_s: number, now: Brightness): Placement {
+    const before = this.#brightness;
+    const same = this.#lookWith(picture, time_s, this.#last);
+    if (before === null || before.spread < 1 || now.spread < 1) return same;
+    const ratio = now.spread / before.spread;
+    if (Math.abs(ratio - 1) < 0.01 && Math.abs(now.mean - before.mean) < 1) return same;
+    const gain = this.#last.gain * ratio;
+    const offset = now.mean - ratio * (before.mean - this.#last.offset);
+    const other = this.#lookWith(picture, time_s, { ...this.#last, gain, offset });
+    return this.#disagreement(picture, other) < this.#disagreement(picture, same) ? other : same;
+  }
+
+  #disagreement(picture: Picture<Uint8Array>, place: Placement): number {
+    return disagreement(picture, this.#model.background, this.#scouts, place, place.turn, TOLERANCE);
+  }
+
   /** A placement near the bar's: looked for about the expected place, or everywhere after a gap. */
-  #look(picture: Picture<Uint8Array>, time_s: number): Placement {
-    if (!this.#scouts.turns) return this.#lookSideways(picture, time_s);
-    const { background, leastTurn, mostTurn } = this.#model;
+  #lookWith(picture: Picture<Uint8Array>, time_s: number, from: Placement): Placement {
     const scouts = this.#scouts;
+    const { background, leastTurn, mostTurn } = this.#model;
+    const place = { ...from };
+    if (!scouts.turns) return this.#lookSideways(picture, time_s, place);
     const step = 2 / scouts.reach_px;
     const swing = mostTurn - leastTurn;
-    const place = { ...this.#last };
     if (this.#time_s === null || this.#misses > 0) {
       const wide = Math.max(0.1, swing);
-      const range = { from: leastTurn - wide, to: mostTurn + wide, step, tolerance: 6 };
+      const range = { from: leastTurn - wide, to: mostTurn + wide, step, tolerance: TOLERANCE };
       const reach = 0.1 * scouts.reach_px;
-      const shift = { across: reach, along: reach, step: 1.5, tolerance: 6 };
+      const shift = { across: reach, along: reach, step: 1.5, tolerance: TOLERANCE };
       place.turn = searchTurn(picture, background, scouts, place, range).turn;
       searchShift(picture, background, scouts, place, shift);
       const near = { ...range, from: place.turn - 4 * step, to: place.turn + 4 * step };
@@ -108,24 +134,23 @@ export class Follower {
     place.x_px += clamp(this.#rateX * ahead_s, 0.1 * scouts.reach_px);
     place.y_px += clamp(this.#rateY * ahead_s, 0.1 * scouts.reach_px);
     const spread = Math.max(2 * step, Math.abs(turning));
-    const range = { from: place.turn - spread, to: place.turn + spread, step, tolerance: 6 };
+    const range = { from: place.turn - spread, to: place.turn + spread, step, tolerance: TOLERANCE };
     place.turn = searchTurn(picture, background, scouts, place, range).turn;
     return place;
   }
 
   /** The same for a body that only shifts. */
-  #lookSideways(picture: Picture<Uint8Array>, time_s: number): Placement {
+  #lookSideways(picture: Picture<Uint8Array>, time_s: number, place: Placement): Placement {
     const { background, shift_px } = this.#model;
-    const place = { ...this.#last };
     if (this.#time_s === null || this.#misses > 0) {
-      const wide = { across: 3, along: 2 * shift_px + 6, step: 1.5, tolerance: 6 };
+      const wide = { across: 3, along: 2 * shift_px + 6, step: 1.5, tolerance: TOLERANCE };
       searchShift(picture, background, this.#scouts, place, wide);
       return place;
     }
     const ahead_s = time_s - this.#time_s;
     const ahead_px = clamp(this.#rateX * ahead_s, shift_px);
     place.x_px += ahead_px;
-    const near = { across: 0, along: Math.max(3, Math.abs(ahead_px)), step: 1.5, tolerance: 6 };
+    const near = { across: 0, along: Math.max(3, Math.abs(ahead_px)), step: 1.5, tolerance: TOLERANCE };
     searchShift(picture, background, this.#scouts, place, near);
     return place;
   }

@@ -21,6 +21,9 @@ interface Job {
   taken: number;
   /** Called when the worker has taken frames, or the job is over. */
   wake: (() => void) | null;
+  /** Rejects what the feeding of frames waits for; the reason once the job has failed. */
+  break: ((reason: unknown) => void) | null;
+  broken: { readonly reason: unknown } | null;
 }
 
 /**
@@ -139,12 +142,11 @@ class TrackerThread {
     options.signal?.addEventListener('abort', onAbort, { once: true });
     const iterator = frames[Symbol.asyncIterator]();
     try {
-      // The outcome comes first only when the job has failed: then the frames are left where they are.
       for (;;) {
-        const next = await Promise.race([iterator.next(), job.outcome]);
-        if (!('done' in next) || next.done === true) break;
+        const next = await this.#unlessBroken(job, iterator.next());
+        if (next.done === true) break;
         this.#send(job, next.value);
-        while (job.underWay >= FRAMES_UNDER_WAY) await Promise.race([this.#room(job), job.outcome]);
+        while (job.underWay >= FRAMES_UNDER_WAY) await this.#unlessBroken(job, this.#room(job));
       }
       this.#post({ kind: 'end', job: job.number });
       return await job.outcome;
@@ -172,7 +174,22 @@ class TrackerThread {
     });
     // Whoever waits for it hears of a failure; nobody may be waiting yet.
     outcome.catch(() => {});
-    const job: Job = { number: this.#next++, options, outcome, settle, fail, underWay: 0, taken: 0, wake: null };
+    const job: Job = {
+      number: this.#next++,
+      options,
+      outcome,
+      settle,
+      fail: (reason) => {
+        job.broken ??= { reason };
+        fail(reason);
+        job.break?.(reason);
+      },
+      underWay: 0,
+      taken: 0,
+      wake: null,
+      break: null,
+      broken: null,
+    };
     this.#jobs.set(job.number, job);
     if (this.#dead !== null) job.fail(this.#dead);
     else this.#post({ kind: 'begin', job: job.number, view });
@@ -185,6 +202,15 @@ class TrackerThread {
     const grey = alone ? frame.grey : frame.grey.slice();
     job.underWay++;
     this.#post({ kind: 'frame', job: job.number, frame: { ...frame, grey } }, [grey.buffer as ArrayBuffer]);
+  }
+
+  /** What is waited for, or the job's failure, if that comes first. (A race against the outcome would keep a handler per frame.) */
+  #unlessBroken<T>(job: Job, waited: Promise<T>): Promise<T> {
+    return new Promise((resolve, reject) => {
+      job.break = reject;
+      if (job.broken !== null) reject(job.broken.reason);
+      waited.then(resolve, reject);
+    });
   }
 
   #room(job: Job): Promise<void> {
