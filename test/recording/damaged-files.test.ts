@@ -136,7 +136,7 @@ describe('what is damaged is used as far as it goes, and the account says how fa
   });
 
   test.skipIf(encoder !== 'libx264')('pictures that change size: decoding ends there', async () => {
-    const parts = ['192x112', '96x64'].map((name) => inFolder(`${name}.ts`));
+    const parts = ['192x112', '96x64'].map((name) => inFolder(`${name}.h264`));
     await writeNumberedVideo(parts[0]!, tools, { frames: 30, output: [...output, '-bf', '0'] });
     await writeNumberedVideo(parts[1]!, tools, {
       frames: 30,
@@ -144,7 +144,7 @@ describe('what is damaged is used as far as it goes, and the account says how fa
       filter: 'scale=384:224',
     });
     await appendFile(parts[0]!, await readFile(parts[1]!));
-    await runFfmpeg(tools, ['-fflags', '+genpts', '-i', parts[0]!, '-c', 'copy', inFolder('sizes.mkv')]);
+    await runFfmpeg(tools, ['-f', 'h264', '-framerate', '30', '-i', parts[0]!, '-c', 'copy', inFolder('sizes.mkv')]);
     const { numbers, account } = await decoded('sizes.mkv');
     expect(account.claimed).toBe(60);
     expect(account.problem).toMatch(
