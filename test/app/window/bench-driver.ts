@@ -208,7 +208,7 @@ export class BenchDriver {
         (one.id && document.querySelector(`label[for="${CSS.escape(one.id)}"]`)) ||
         one.textContent?.trim();
       return [...controls]
-        .filter((one) => one.checkVisibility() && !named(one))
+        .filter((one) => one.checkVisibility() && !one.parentElement?.closest('[role=img]') && !named(one))
         .map((one) => one.outerHTML.slice(0, 120));
     });
   }

@@ -65,7 +65,7 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', () => {
     await bench.showStretch(sample.segments[2]!.end_s + 6);
     const words = await bench.followStretch();
     expect(words.join('\n')).toMatch(/× real time \(\d+ frames\/s\)/);
-    expect(await bench.page.getByRole('img', { name: 'Angle of the bar against time' }).count()).toBe(1);
+    expect(await bench.page.getByRole('img', { name: 'Angle of the bar against time', exact: true }).count()).toBe(1);
   });
 
   test('three segments are marked by dragging and their currents typed', async () => {
@@ -136,7 +136,9 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', () => {
     await bench.page.locator('.bracket').first().waitFor({ timeout: 30_000 });
     await bench.measured();
     expect(await bench.segments()).toEqual(before);
-    await expect.poll(() => bench.page.getByRole('img', { name: 'Angle of the bar against time' }).count()).toBe(1);
+    await expect
+      .poll(() => bench.page.getByRole('img', { name: 'Angle of the bar against time', exact: true }).count())
+      .toBe(1);
   });
 
   test('the program killed and started again brings the session back', async () => {
