@@ -19,6 +19,7 @@ export function pointOf(row: SegmentResult): Point {
     // Rest directions of views that the file doesn't describe have no zero in common.
     equilibrium_rad:
       row.view_kind === null ? null : estimate(row.equilibrium_deg, row.u_equilibrium_deg, row.dof_f0, RAD),
+    u_time_scale: row.u_time_scale,
     viewFrame: `${row.recording} ${row.view_kind}`,
     ...(row.left_out !== null && { leftOut: row.left_out }),
   };

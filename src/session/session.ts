@@ -75,6 +75,13 @@ const fibre = z.strictObject({
   u_stiffness_N_m_per_rad: uncertainty.optional(),
 });
 
+/** The current meter: what is common to all steps (gain, zero) and what one reading can resolve. */
+const meter = z.strictObject({
+  u_gain: uncertainty.optional(),
+  u_zero_A: uncertainty.optional(),
+  resolution_A: uncertainty.optional(),
+});
+
 /** The coil pair: its dimensions, or its measured constant. The second coil's values default to the first one's. */
 export const coilSchema = z.union([coilByDimensions, coilByConstant]);
 /** The bar magnet: a shape with its dimensions, or its moment of inertia. */
@@ -85,6 +92,7 @@ export const apparatusSchema = z.strictObject({
   coil: coilSchema.optional(),
   magnet: magnetSchema.optional(),
   fibre: fibre.optional(),
+  meter: meter.optional(),
 });
 
 /** Where and when the recording was made, for the field expected there. */
