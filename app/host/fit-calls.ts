@@ -57,8 +57,9 @@ export function fitCalls(parts: Parts): Some<'follow' | 'overview' | 'previewFit
         return { ok: false, checks: [{ code: 'not_followed', severity: 'note', message }], curves: null };
       }
       const { apparatus } = keeper.need().session;
-      const request = { outcome: { ok: true, trace } as const, options: ringDownOptions(view, opened), apparatus };
-      return shownFit(trace, await fits.fit(request, lane, signal));
+      const outcome = { ok: true, trace } as const;
+      const task = { kind: 'fit', outcome, options: ringDownOptions(view, opened), apparatus } as const;
+      return shownFit(trace, await fits.do(task, lane, signal));
     },
     results: () => measuring.state(),
     segmentCurves: ({ segment }) => {

@@ -2,11 +2,11 @@ import { type FfmpegTools, findFfmpeg } from '../../src/recording/find-ffmpeg.ts
 import { InputError } from '../../src/recording/input-error.ts';
 import { TrackerPool } from '../../src/tracking/pool.ts';
 import type { CommandId, FileToken, HostEvents, Transport } from '../contract.ts';
+import { Calculator } from './calculator.ts';
 import { ContentCache } from './content-cache.ts';
 import { documentCalls } from './document-calls.ts';
 import { Downloads } from './downloads.ts';
 import { fitCalls } from './fit-calls.ts';
-import { FitThread } from './fit-thread.ts';
 import { Jobs } from './jobs.ts';
 import { KnownRecordings } from './known-recordings.ts';
 import { MeasuredStore } from './measured-store.ts';
@@ -79,11 +79,14 @@ export async function startHost(options: HostOptions, file: string | null = null
   const pool = new TrackerPool(Math.max(1, cores));
   // What the user waits for right now must not queue behind whole segments.
   const quickPool = new TrackerPool(1);
-  const fits = new FitThread();
+  const fits = new Calculator();
+  // Its own thread: a fit that the user waits for must not queue behind a reduction.
+  const reductions = new Calculator();
   const measuring = new Measuring({
     tools,
     pool,
     fits,
+    reductions,
     store: new MeasuredStore(cache),
     cores: Math.max(1, cores),
     changed: () => broadcast('results', measuring.state()),
@@ -100,6 +103,7 @@ export async function startHost(options: HostOptions, file: string | null = null
     const source = document?.file() ?? null;
     const task = source && {
       revision,
+      document: document as object,
       file: source,
       inputs: sessionInputs(source.session, (id) => keeper.fileOf(id)),
     };
@@ -139,7 +143,7 @@ export async function startHost(options: HostOptions, file: string | null = null
       ending.abort();
       await jobs.cancelAll();
       await measuring.close();
-      await Promise.all([fits.close(), pool.close(), quickPool.close()]);
+      await Promise.all([fits.close(), reductions.close(), pool.close(), quickPool.close()]);
       await keeper.end(!discard);
     })();
     return closing;

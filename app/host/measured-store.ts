@@ -1,7 +1,7 @@
 import type { DecodeAccount } from '../../src/recording/recording.ts';
 import type { TrackOutcome } from '../../src/tracking/trace.ts';
+import type { Fit } from './calculator-protocol.ts';
 import type { ContentCache } from './content-cache.ts';
-import type { Fit } from './fit-protocol.ts';
 
 /** What following one segment yielded. */
 export interface Followed {

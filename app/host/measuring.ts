@@ -1,4 +1,3 @@
-import { assembleResults } from '../../src/measure.ts';
 import { followSegment, type MeasuredSegment, ringDownOptions } from '../../src/measuring/measure-segment.ts';
 import { segmentResult } from '../../src/measuring/segment-result.ts';
 import type { FfmpegTools } from '../../src/recording/find-ffmpeg.ts';
@@ -7,10 +6,11 @@ import type { Results } from '../../src/report/results.ts';
 import type { SessionFile } from '../../src/session/read-session.ts';
 import type { TrackerPool } from '../../src/tracking/pool.ts';
 import type { ResultsState } from '../contract.ts';
-import type { Fit } from './fit-protocol.ts';
-import type { FitThread } from './fit-thread.ts';
+import type { Calculator } from './calculator.ts';
+import type { Fit } from './calculator-protocol.ts';
 import { fitKey, followKey } from './keys.ts';
 import type { Followed, MeasuredStore } from './measured-store.ts';
+import { ResultsAssembler } from './results-assembler.ts';
 import type { SegmentInput, SessionInputs } from './segment-inputs.ts';
 
 /** A segment as measured, with what is needed to draw it. */
@@ -23,7 +23,8 @@ export interface DrawnSegment {
 export interface MeasuringKit {
   readonly tools: () => Promise<FfmpegTools>;
   readonly pool: TrackerPool;
-  readonly fits: FitThread;
+  readonly fits: Calculator;
+  readonly reductions: Calculator;
   readonly store: MeasuredStore;
   /** Most segments that are followed at once. */
   readonly cores: number;
@@ -35,6 +36,8 @@ export interface MeasuringKit {
 /** The session as it stands: its file and what can be measured of it. */
 export interface MeasuringTask {
   readonly revision: number;
+  /** The same for all states of one document. */
+  readonly document: object;
   readonly file: SessionFile;
   readonly inputs: SessionInputs;
 }
@@ -61,6 +64,7 @@ export class Measuring {
   readonly #failed = new Map<string, string>();
   readonly #running = new Map<string, AbortController>();
   readonly #work = new Set<Promise<void>>();
+  readonly #assembler: ResultsAssembler;
   #measuring: { segment: string; share: number } | null = null;
   #settle: NodeJS.Timeout | undefined;
   #told_ms = 0;
@@ -70,6 +74,7 @@ export class Measuring {
 
   constructor(kit: MeasuringKit) {
     this.#kit = kit;
+    this.#assembler = new ResultsAssembler(kit.reductions, () => this.#tell(), kit.report);
   }
 
   /** Takes a changed session. Begins when nothing has changed for a moment. @param another a different document: nothing of the last one is shown. */
@@ -84,6 +89,9 @@ export class Measuring {
     for (const key of this.#failed.keys()) if (!follows.has(key)) this.#failed.delete(key);
     clearTimeout(this.#settle);
     this.#settle = setTimeout(() => this.#advance(), SETTLE_MS);
+    // What was measured before (undo) is there at once.
+    for (const w of this.#wanted) this.#show(w);
+    this.#assemble();
     this.#tell();
   }
 
@@ -113,12 +121,9 @@ export class Measuring {
     };
   }
 
-  /** The results file's object over what has been measured so far. */
+  /** The results file's object over what has been measured so far; up to date when `settled`. */
   results(): Results | null {
-    if (!this.#task || !this.#tools) return null;
-    const { file, inputs } = this.#task;
-    const segments = new Map([...this.current()].map(([id, drawn]) => [id, drawn.measured]));
-    return assembleResults(file, inputs.recordings, segments, this.#tools);
+    return this.#task && this.#assembler.results(this.#task.document);
   }
 
   /** The segments of the session that have been measured, those included whose measurement is of an earlier edit. */
@@ -136,8 +141,7 @@ export class Measuring {
 
   /** Settles when everything that can be measured is. Rejects with the signal's reason when it aborts. */
   async settled(signal: AbortSignal): Promise<void> {
-    const over = () => this.#closed || this.#pending().length === 0;
-    if (!over()) {
+    if (!this.#isSettled()) {
       await new Promise<void>((resolve) => {
         const go = () => {
           signal.removeEventListener('abort', go);
@@ -158,7 +162,7 @@ export class Measuring {
     this.#closed = true;
     clearTimeout(this.#settle);
     for (const abort of this.#running.values()) abort.abort();
-    await Promise.allSettled([...this.#work]);
+    await Promise.allSettled([...this.#work, this.#assembler.close()]);
     this.#wake();
   }
 
@@ -169,7 +173,8 @@ export class Measuring {
 
   #advance(): void {
     if (this.#closed) return;
-    for (const w of this.#wanted) this.#show(w);
+    const isNew = this.#wanted.filter((w) => this.#show(w));
+    if (isNew.length > 0) this.#assemble();
     // One core is left for the pictures and fits that the user looks at meanwhile, unless the user waits for the results.
     const atOnce = this.#waiters.size > 0 ? this.#kit.cores : Math.max(1, this.#kit.cores - 1);
     for (const w of this.#wanted) {
@@ -203,7 +208,7 @@ export class Measuring {
     const followed = (await store.findFollowed(w.follow)) ?? (await this.#follow(w, signal));
     const { outcome } = followed;
     const options = ringDownOptions(w.view, w.opened);
-    const fit = await fits.fit({ outcome, options, apparatus: w.apparatus }, null, signal);
+    const fit = await fits.do({ kind: 'fit', outcome, options, apparatus: w.apparatus }, null, signal);
     store.putFit(w.fit, fit);
   }
 
@@ -220,20 +225,37 @@ export class Measuring {
     return followed;
   }
 
-  #show(w: Wanted): void {
+  /** Takes a segment's result over from the store. @returns whether it is new. */
+  #show(w: Wanted): boolean {
     const { store } = this.#kit;
     const fit = store.fit(w.fit);
     const followed = store.followed(w.follow);
-    if (!fit || !followed) return;
     const { segment, view, opened } = w;
+    const shown = this.#shown.get(segment.id);
+    const names = (r: { recording: string; view: string }) => `${r.recording} ${r.view}`;
+    const isShown = shown?.fit === fit && names(shown.measured.result) === names(segment);
+    if (!fit || !followed || isShown) return false;
     const measured = segmentResult({ segment, view, opened, ...followed, ringDown: fit.ringDown, checks: fit.checks });
     this.#shown.set(segment.id, { measured, fit });
+    return true;
+  }
+
+  #assemble(): void {
+    const [task, tools] = [this.#task, this.#tools];
+    if (!task || !tools) return;
+    const { file, document, inputs } = task;
+    const rows = [...this.current().values()].map((drawn) => drawn.measured.result);
+    this.#assembler.want({ document, file, recordings: inputs.recordings, rows, tools });
+  }
+
+  #isSettled(): boolean {
+    return this.#closed || (this.#pending().length === 0 && this.#assembler.isCurrent);
   }
 
   #tell(): void {
     this.#told_ms = performance.now();
     this.#kit.changed();
-    if (this.#pending().length === 0) this.#wake();
+    if (this.#isSettled()) this.#wake();
   }
 
   #wake(): void {

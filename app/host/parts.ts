@@ -1,7 +1,7 @@
 import type { FfmpegTools } from '../../src/recording/find-ffmpeg.ts';
 import type { TrackerPool } from '../../src/tracking/pool.ts';
 import type { AboutFacts, HostEvents } from '../contract.ts';
-import type { FitThread } from './fit-thread.ts';
+import type { Calculator } from './calculator.ts';
 import type { Jobs } from './jobs.ts';
 import type { Measuring } from './measuring.ts';
 import type { Overviews } from './overviews.ts';
@@ -39,7 +39,7 @@ export interface Parts {
   readonly options: HostOptions & { readonly now: () => string; readonly now_ms: () => number };
   readonly keeper: SessionKeeper;
   readonly measuring: Measuring;
-  readonly fits: FitThread;
+  readonly fits: Calculator;
   readonly pool: TrackerPool;
   /** For what the user waits for right now. */
   readonly quickPool: TrackerPool;

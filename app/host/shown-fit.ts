@@ -1,7 +1,7 @@
 import type { RingDown } from '../../src/oscillation/ring-down.ts';
 import type { Trace } from '../../src/tracking/trace.ts';
 import type { FitCurves, PreviewFit } from '../contract.ts';
-import type { Fit } from './fit-protocol.ts';
+import type { Fit } from './calculator-protocol.ts';
 
 /** A fit drawn over its data, in the unit of the window's border. */
 export function fitCurves(trace: Trace, fit: Fit): FitCurves {

@@ -1,7 +1,7 @@
 import type { RingDown } from '../../src/oscillation/ring-down.ts';
 import { spectrum } from '../../src/oscillation/spectrum.ts';
 import type { Trace } from '../../src/tracking/trace.ts';
-import type { Spectra } from './fit-protocol.ts';
+import type { Spectra } from './calculator-protocol.ts';
 
 /** Spectra of a trace and of its residuals for drawing; null where the trace is too short for one. */
 export function spectraOf(trace: Trace, ringDown: RingDown | null): Spectra | null {

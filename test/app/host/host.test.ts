@@ -15,7 +15,7 @@ import { readSession } from '../../../src/session/read-session.ts';
 const root = new URL('../../../', import.meta.url).pathname;
 const sample = join(root, 'samples/boathouse');
 const demo = join(sample, 'boathouse.needlebeat.json');
-const ready = existsSync(demo) && existsSync(join(root, 'dist/app/host/fit-worker.js'));
+const ready = existsSync(demo) && existsSync(join(root, 'dist/app/host/calculator-worker.js'));
 if (!ready) console.log('The host is not tested here: the sample or the build is missing ("npm run build").');
 
 let home: string;

@@ -47,7 +47,7 @@ describe('electron-builder.yml', () => {
       'dist/app/preload/preload.cjs',
       'dist/window/index.html',
       'dist/src/tracking/worker.js',
-      'dist/app/host/fit-worker.js',
+      'dist/app/host/calculator-worker.js',
     ];
     for (const file of needed) {
       expect(existsSync(join(root, file)), file).toBe(true);
