@@ -29,7 +29,7 @@ export async function stillPicture(
       limit_bytes: 256 << 20,
       signal,
     });
-    if (run.stdout.length > 0) return new Uint8Array(run.stdout);
+    if (run.stopped === null && run.stdout.length > 0) return new Uint8Array(run.stdout);
   }
   throw new InputError(
     `"${recording.path}": frame ${frameIndex} can't be decoded: the recording is damaged or cut short there.`,
