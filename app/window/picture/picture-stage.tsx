@@ -101,9 +101,7 @@ export function PictureStage() {
         role="img"
         aria-label={picked ? `Frame ${picked.index} at ${picked.time_s.toFixed(3)} s` : 'No frame yet'}
       />
-      {!playing.value && frame.value !== null && picked?.index !== frame.value ? (
-        <p class="reading">reading frame {frame.value} …</p>
-      ) : null}
+      <Reading />
       <svg class="overlay" width={size.width} height={size.height}>
         <RegionFrame view={viewDraft.value ?? view.value} />
         <SideGuides view={viewDraft.value ?? view.value} />
@@ -112,6 +110,13 @@ export function PictureStage() {
       </svg>
     </div>
   );
+}
+
+/** Says which frame is being read, where it keeps us waiting. */
+function Reading() {
+  const at = frame.value;
+  if (playing.value || at === null || shown.value?.index === at) return null;
+  return <p class="reading">reading frame {at} …</p>;
 }
 
 function cursorOf(grip: Grip): string {

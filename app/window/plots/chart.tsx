@@ -19,16 +19,23 @@ export function Chart({ label, height, data, options, of }: ChartProps) {
   const place = useRef<HTMLDivElement>(null);
   const plot = useRef<uPlot | null>(null);
   const palette = colours.value;
+  const latest = useRef(data);
+  latest.current = data;
 
   useEffect(() => {
     const element = place.current;
     if (!element) return;
-    plot.current = new uPlot({ ...options(), width: Math.max(element.clientWidth, 50), height }, data, element);
     const observer = new ResizeObserver(() =>
       plot.current?.setSize({ width: Math.max(element.clientWidth, 50), height }),
     );
-    observer.observe(element);
+    // A task of its own for each plot: several at once would hold the window up.
+    const making = setTimeout(() => {
+      const size = { width: Math.max(element.clientWidth, 50), height };
+      plot.current = new uPlot({ ...options(), ...size }, latest.current, element);
+      observer.observe(element);
+    });
     return () => {
+      clearTimeout(making);
       observer.disconnect();
       plot.current?.destroy();
       plot.current = null;

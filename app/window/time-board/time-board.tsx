@@ -8,12 +8,12 @@ import { cursor_s, recording, segment, segments, view, whole_s } from '../state/
 import { type BoardDraft, type BoardDrag, markDrag, NO_DRAFT, scrubDrag } from './board-drag.ts';
 import { BoardScroll } from './board-scroll.tsx';
 import { CurrentLane, currentPlace, currentTicks } from './current-lane.tsx';
-import { curveRange } from './curve-paint.ts';
 import { FilmLane } from './film-lane.tsx';
+import { laneCurves, laneRange } from './lane-curves.ts';
 import { targetAt } from './marking.ts';
 import { SegmentLane } from './segment-lane.tsx';
 import { panSpan, toPixel, toTime, zoomSpan } from './time-span.ts';
-import { laneCurves, TraceLane } from './trace-lane.tsx';
+import { TraceLane } from './trace-lane.tsx';
 
 const RULER_PX = 22;
 const SEGMENTS_PX = 26;
@@ -73,7 +73,7 @@ export function TimeBoard() {
         // biome-ignore lint/a11y/noNoninteractiveTabindex: it takes the keys of the time menu.
         tabIndex={0}
         role="group"
-        aria-label={`Time axis, cursor at ${cursor_s.value.toFixed(3)} seconds. B and E mark a segment.`}
+        aria-label="Time axis. Arrow keys move the cursor, B and E mark a segment."
         onPointerDown={press}
         onPointerMove={(event) => {
           if (drag.current) draft.value = drag.current.to(x_of(event));
@@ -103,7 +103,7 @@ export function TimeBoard() {
         <SegmentLane width={width} span={now} draft={draft.value.edge} />
         <Bands width={width} film={heights.film} draft={draft.value} />
         <Marks width={width} film={heights.film} />
-        {laneCurves().curves.length === 0 && recording.value ? (
+        {laneCurves.value.curves.length === 0 && recording.value ? (
           <p class="lane-word" style={{ top: `${RULER_PX + heights.film + heights.trace / 2 - 10}px` }}>
             {view.value
               ? 'Not followed yet: press F to follow the bar'
@@ -120,8 +120,8 @@ export function TimeBoard() {
 function Gutter({ heights }: { heights: LaneHeights }) {
   const trace_px = heights.trace;
   const current_px = heights.current;
-  const lane = laneCurves();
-  const range = curveRange(lane.curves, span.value);
+  const lane = laneCurves.value;
+  const range = laneRange.value;
   const ticks = niceTicks(range[0], range[1], Math.max(2, trace_px / 28));
   const shown = lane.curves.length > 0;
   return (
