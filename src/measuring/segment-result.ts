@@ -23,7 +23,7 @@ export interface SegmentFindings {
 /** Makes the row of the table from what was found out about a segment. */
 export function segmentResult(found: SegmentFindings): MeasuredSegment {
   const { segment, view, opened, outcome, account, ringDown } = found;
-  const checks = [...decodingChecks(account), ...found.checks];
+  const checks = [...decodingChecks(account, opened.recording.remarks), ...found.checks];
   const status = ringDown ? statusOf(checks) : 'unmeasured';
   const r = status === 'unmeasured' ? null : ringDown;
   const angles = r?.unit === 'rad' ? r : null;
@@ -64,8 +64,8 @@ export function segmentResult(found: SegmentFindings): MeasuredSegment {
   return { trace: outcome.ok ? outcome.trace : null, ringDown, result };
 }
 
-function decodingChecks(account: DecodeAccount): Check[] {
-  const checks: Check[] = [];
+function decodingChecks(account: DecodeAccount, remarks: readonly string[]): Check[] {
+  const checks: Check[] = remarks.map((message) => ({ code: 'recording_odd', severity: 'note', message }));
   if (account.claimed !== account.decoded + account.lost) {
     const message = `The container claims ${account.claimed} frames here, but ${account.decoded} decoded and ${account.lost} lost make another number; this is a mistake of the program.`;
     checks.push({ code: 'ledger_unbalanced', severity: 'fault', message });
