@@ -27,11 +27,7 @@ export function BarOutline() {
       <g class="bar-outline" role="img" aria-label={`Bar found at ${fixedText(looked.found.angle, 1)}${unit}`}>
         <polygon class="halo" points={path} />
         <polygon class="edge" points={path} />
-        <text x={region.x + 6} y={region.y + 16} class="halo">
-          bar at {fixedText(looked.found.angle, 1)}
-          {unit}
-        </text>
-        <text x={region.x + 6} y={region.y + 16} class="word">
+        <text x={region.x + 1} y={region.y > 20 ? region.y - 7 : region.y + 16}>
           bar at {fixedText(looked.found.angle, 1)}
           {unit}
         </text>

@@ -23,10 +23,10 @@ export function SideGuides({ view }: { view: SessionView | null }) {
           </g>
         </g>
       ))}
-      <text x={x + 5} y={region.y + 14}>
+      <text x={x} y={region.y + region.height + 16} text-anchor="middle">
         fibre
       </text>
-      <text x={x + half - 4} y={y - 9} text-anchor="end">
+      <text x={x + half + 6} y={y + 4}>
         {known ? `half length ${view.half_length_px} px` : 'half length: drag an end'}
       </text>
     </g>

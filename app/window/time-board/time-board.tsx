@@ -127,7 +127,7 @@ function Gutter({ heights }: { heights: LaneHeights }) {
   return (
     <div class="gutter" aria-hidden="true">
       <div class="gutter-lane" style={{ height: '22px' }}>
-        <span>time</span>
+        <span>{whole_s.value < 100 ? 'time / s' : 'time / min:s'}</span>
       </div>
       <div class="gutter-lane" style={{ height: `${heights.film}px` }}>
         <span>film</span>
