@@ -1,5 +1,5 @@
 import { readdir, readFile } from 'node:fs/promises';
-import { extname, join, sep } from 'node:path';
+import { extname, join } from 'node:path';
 
 /** One file of the built window, held whole: they are few and small, and nothing is read from disk by a request. */
 export interface PageFile {
@@ -25,16 +25,24 @@ const types: Readonly<Record<string, string>> = {
  * @throws Error where the folder holds no index.html, so was never built.
  */
 export async function readPageFiles(folder: string): Promise<PageFiles> {
-  const entries = await readdir(folder, { recursive: true, withFileTypes: true }).catch(() => []);
   const files = new Map<string, PageFile>();
-  for (const entry of entries) {
-    const type = types[extname(entry.name)];
-    if (!entry.isFile() || type === undefined) continue;
-    const path = join(entry.parentPath, entry.name);
-    const name = path.slice(folder.length).split(sep).filter(Boolean).join('/');
-    files.set(`/${name}`, { bytes: await readFile(path), type });
+  for (const name of await filesBelow(folder, '')) {
+    const type = types[extname(name)];
+    if (type !== undefined) files.set(`/${name}`, { bytes: await readFile(join(folder, name)), type });
   }
   const index = files.get('/index.html');
   if (!index) throw new Error('The window has not been built: run "npm run build" first.');
   return files.set('/', index);
+}
+
+/** Names of all files below a folder, with `/` between their parts. Level by level: inside a package's archive nothing else is sure to work. */
+async function filesBelow(folder: string, below: string): Promise<string[]> {
+  const entries = await readdir(join(folder, below), { withFileTypes: true }).catch(() => []);
+  const names: string[] = [];
+  for (const entry of entries) {
+    const name = below === '' ? entry.name : `${below}/${entry.name}`;
+    if (entry.isDirectory()) names.push(...(await filesBelow(folder, name)));
+    else if (entry.isFile()) names.push(name);
+  }
+  return names;
 }
