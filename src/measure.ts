@@ -19,6 +19,7 @@ export interface Progress {
   readonly segments: number;
 }
 
+/** What may be passed to `measureSession`. */
 export interface MeasureOptions {
   /** The ffmpeg to use; found by `findFfmpeg` when left out. */
   readonly tools?: FfmpegTools;
