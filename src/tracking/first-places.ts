@@ -81,7 +81,7 @@ function placesBySwing(pictures: readonly Picture<Uint8Array>[], motion: Motion,
         gain: motion.gain[t]!,
         offset: motion.offset[t]!,
       },
-      agreement: { misfit: 1, share: 1, outside: 0, sd: 1, lastStep_px: 0 },
+      agreement: { misfit: 1, share: 1, odd: 0, outside: 0, sd: 1, lastStep_px: 0 },
     }));
   // Every third picture is enough to tell.
   const few = (span: number) => placed(pictures, placesFor(span)).filter((_, t) => t % 3 === 0);

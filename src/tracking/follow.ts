@@ -3,7 +3,7 @@ import type { BarModel } from './learn-bar.ts';
 import type { Picture } from './picture.ts';
 import type { BarPoints } from './points.ts';
 import { thinPoints } from './points.ts';
-import type { Placement } from './register.ts';
+import type { Agreement, Placement } from './register.ts';
 import { register } from './register.ts';
 import { disagreement, searchShift, searchTurn } from './search.ts';
 import type { Refusal } from './trace.ts';
@@ -44,7 +44,7 @@ export class Follower {
 
   /** Finds the bar in the next frame's region. */
   next(picture: Picture<Uint8Array>, time_s: number): Fix {
-    const { background, points, usualShare, usualMisfit } = this.#model;
+    const { background, points } = this.#model;
     const brightness = brightnessOf(picture);
     const place = this.#look(picture, time_s, brightness);
     let agreement = register(picture, background, points, place, [4, 3]);
@@ -52,12 +52,7 @@ export class Follower {
     for (let more = 0; more < 3 && agreement !== null && agreement.lastStep_px > 0.03; more++) {
       agreement = register(picture, background, points, place, [3]);
     }
-    let reason: Refusal | null = null;
-    if (agreement === null) reason = 'no_fit';
-    else if (agreement.outside > 0.3) reason = 'left_region';
-    else if (agreement.share < 0.75 * usualShare) reason = 'hidden';
-    else if (agreement.misfit > 4 * usualMisfit + 1) reason = 'blurred';
-    else if (agreement.lastStep_px > 0.5) reason = 'no_fit';
+    const reason = agreement === null ? 'no_fit' : refusalOf(agreement, this.#model);
     if (agreement === null || reason !== null) {
       this.#misses++;
       return { ok: false, reason: reason ?? 'no_fit' };
@@ -154,6 +149,19 @@ export class Follower {
     searchShift(picture, background, this.#scouts, place, near);
     return place;
   }
+}
+
+/** Shares of what is usual below which, or above which, a frame isn't to be trusted. */
+const LEAST_SHARE = 0.55;
+const MOST_ODD = 0.25;
+const MOST_OUTSIDE = 0.3;
+
+/** Why a frame's fix isn't to be trusted, judged by what is usual of the stretch; null: it is. */
+function refusalOf(agreement: Agreement, usual: BarModel): Refusal | null {
+  if (agreement.outside > MOST_OUTSIDE) return 'left_region';
+  if (agreement.share < LEAST_SHARE * usual.usualShare || agreement.odd > usual.usualOdd + MOST_ODD) return 'hidden';
+  if (agreement.misfit > 4 * usual.usualMisfit + 1) return 'blurred';
+  return agreement.lastStep_px > 0.5 ? 'no_fit' : null;
 }
 
 function clamp(value: number, limit: number): number {

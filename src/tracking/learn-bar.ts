@@ -31,6 +31,7 @@ export interface BarModel {
   readonly halfLength_px: number;
   /** What is usual of a sound frame. */
   readonly usualShare: number;
+  readonly usualOdd: number;
   readonly usualMisfit: number;
   /** Turns seen, radians, and a placement to start from. */
   readonly leastTurn: number;
@@ -157,6 +158,7 @@ function describe(
     middleV_px: pivot.v_px,
     halfLength_px: length_px / 2,
     usualShare: middle(sound.map(({ agreement }) => agreement!.share)),
+    usualOdd: middle(sound.map(({ agreement }) => agreement!.odd)),
     usualMisfit: middle(sound.map(({ agreement }) => agreement!.misfit)),
     leastTurn: Math.min(...turns),
     mostTurn: Math.max(...turns),

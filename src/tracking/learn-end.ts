@@ -46,7 +46,7 @@ export function learnEnd(frames: readonly Frame[], expected: Expected | null): B
       gain: motion.gain[t]!,
       offset: motion.offset[t]!,
     },
-    agreement: { misfit: 1, share: window.correlation[t]!, outside: 0, sd: 1, lastStep_px: 0 },
+    agreement: { misfit: 1, share: window.correlation[t]!, odd: 0, outside: 0, sd: 1, lastStep_px: 0 },
   }));
   let layers: BarLayers;
   for (let round = 0; round < 4; round++) {
@@ -89,6 +89,7 @@ export function learnEnd(frames: readonly Frame[], expected: Expected | null): B
     middleV_px: (mirror.top + mirror.bottom) / 2,
     halfLength_px: mirror.half_px,
     usualShare: middle(sound.map(({ agreement }) => agreement!.share)),
+    usualOdd: middle(sound.map(({ agreement }) => agreement!.odd)),
     usualMisfit: middle(sound.map(({ agreement }) => agreement!.misfit)),
     leastTurn: 0,
     mostTurn: 0,

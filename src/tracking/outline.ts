@@ -181,7 +181,17 @@ function outermost(profile: Float64Array): readonly [number, number] | null {
   while (first < profile.length && !isPeak(first)) first++;
   let last = profile.length - 1;
   while (last >= 0 && !isPeak(last)) last--;
-  return last > first ? [first, last] : null;
+  if (last <= first) return null;
+  // A line that keeps close outside a much sharper one is the rim of the bar's shadow.
+  const near = Math.floor(0.25 * (last - first));
+  const sharper = (from: number, step: 1 | -1): number => {
+    for (let k = near; k > 0; k--) {
+      const at = from + k * step;
+      if (isPeak(at) && profile[at]! > 3 * profile[from]!) return at;
+    }
+    return from;
+  };
+  return [sharper(first, 1), sharper(last, -1)];
 }
 
 /** Running mean over 2 * half + 1 values. */

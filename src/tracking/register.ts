@@ -21,6 +21,8 @@ export interface Agreement {
   misfit: number;
   /** Share of the points' knowledge of the angle that agreed with the picture, 0 to 1. */
   share: number;
+  /** Share of the points within the picture whose grey doesn't fit, whatever they tell, 0 to 1. */
+  odd: number;
   /** The same share of knowledge that lay outside the picture. */
   outside: number;
   /** Standard deviation of the angle (of a body that only shifts: of its place along u) if residuals are as expected, radians (pixels). */
@@ -53,6 +55,7 @@ export function register(
   const bottom = height - 1;
   let lastStep_px = 0;
   let misfit = 0;
+  let odd = 0;
   let share = 0;
   let outside = 0;
   for (const tolerance of tolerances) {
@@ -83,6 +86,8 @@ export function register(
     let b4 = 0;
     let squares = 0;
     let weights = 0;
+    let unfit = 0;
+    let within = 0;
     share = 0;
     outside = 0;
     for (let i = 0; i < count; i++) {
@@ -122,6 +127,8 @@ export function register(
       const w = w0 * keep * keep;
       squares += e * keep * keep;
       weights += keep * keep;
+      unfit += 1 - keep;
+      within++;
       share += keep * keep * knowledge[i]!;
       const wt = w * jt;
       const wu = -w * gu;
@@ -194,9 +201,10 @@ export function register(
     place.gain += step[3]!;
     place.offset += step[4]!;
     lastStep_px = Math.hypot(Math.abs(step[0]!) * points.reach_px, step[1]!, step[2]!);
+    odd = within > 0 ? unfit / within : 1;
     misfit = weights > 0 ? squares / weights : Number.POSITIVE_INFINITY;
     if (!Number.isFinite(turn) || !(place.gain > 0)) return null;
   }
   const sd = Math.sqrt(diagonalOfInverse(normal, PARAMETERS, points.turns ? 0 : 1));
-  return { misfit, share, outside, sd, lastStep_px };
+  return { misfit, share, odd, outside, sd, lastStep_px };
 }

@@ -118,10 +118,28 @@ function halfLengthOf(view: View, model: BarModel): number | null {
   return view.kind === 'side' ? view.half_length_px : model.halfLength_px;
 }
 
+/** How well the line of sight is taken to be known, radians: along the fibre to 2 degrees, a stated elevation to half a degree. */
+const U_TILT_RAD = (2 * Math.PI) / 180;
+const U_ELEVATION_RAD = (0.5 * Math.PI) / 180;
+/** An axis found from edges may be off by more than their scatter says, since shading is not the same all along. */
+const AXIS_COVER = 1.5;
+
 /** What all angles of a stretch have in common by way of error, in the unit of the angle. */
 function commonUncertainty(view: View, model: BarModel): number {
-  if (view.kind !== 'side') return model.u_axis_rad;
-  return view.half_length_px === null ? model.u_axis_rad : model.u_axis_rad / view.half_length_px;
+  const angle = -(model.start.turn + model.axis_rad);
+  switch (view.kind) {
+    case 'plan':
+      // A circle seen at a slant is squeezed by cos(tilt): directions at 45 degrees to it turn by tilt squared / 4.
+      return Math.hypot(AXIS_COVER * model.u_axis_rad, U_TILT_RAD ** 2 / 4);
+    case 'oblique': {
+      const squeeze = Math.abs(Math.sin(2 * angle)) / 2 / Math.tan((view.elevation_deg * Math.PI) / 180);
+      return Math.hypot(AXIS_COVER * model.u_axis_rad, squeeze * U_ELEVATION_RAD);
+    }
+    case 'side':
+      return view.half_length_px === null ? model.u_axis_rad : model.u_axis_rad / view.half_length_px;
+    default:
+      return view satisfies never;
+  }
 }
 
 const SENTENCES: Record<NoBar, string> = {
