@@ -2,7 +2,7 @@ import type { Frame } from '../recording/recording.ts';
 import { Follower } from './follow.ts';
 import { type BarModel, learnBar, type NoBar } from './learn-bar.ts';
 import { type Expected, learnEnd } from './learn-end.ts';
-import type { SideView, TrackOutcome, View } from './trace.ts';
+import type { SideView, Trace, TrackOutcome, View } from './trace.ts';
 import type { PoseColumns } from './trace-builder.ts';
 import { TraceBuilder } from './trace-builder.ts';
 
@@ -18,15 +18,24 @@ export interface TrackOptions {
 
 /** Bytes of opening frames kept to learn the bar from; memory is bounded by this, however long the stretch. */
 const OPENING_BYTES = 64 * 2 ** 20;
+/** The bar is first learnt from so many frames and seconds; where that fails, again from twice as many, and so on. */
+const OPENING_FRAMES = 240;
+const OPENING_S = 8;
 /** Fewest frames a bar can be learnt from. */
 const FEWEST_FRAMES = 8;
 /** Poses between two reports. */
 const REPORT_EVERY = 30;
 
 /**
- * Follows the bar through one stretch of frames (ascending in time, all of one size). The opening frames, up to 64 MiB,
- * are kept until the bar has been learnt from them; then they and all later ones are followed one by one.
+ * Follows the bar through one stretch of frames (ascending in time, all of one size). The opening frames, some seconds and
+ * at most 64 MiB, are kept until the bar has been learnt from them; then they and all later ones are followed one by one.
  * A bar that can't be found is an outcome, not an exception.
+ *
+ * How: the opening gives a model of two layers, a static background and the bar's own picture, and every frame is
+ * registered against it in angle, place and brightness. Two other ways were measured on drawn recordings (720p, bars of
+ * 200 to 300 px): straight lines through the long edges frame by frame have 2.5 to 3 times the scatter (0.022 against
+ * 0.007 degrees) and on squared paper follow the paper by several per cent; weighted moments of the difference from the
+ * background have 7 times the scatter, and are off by up to a quarter of the swing where shadows fall or halves differ.
  */
 export async function trackFrames(
   frames: AsyncIterable<Frame>,
@@ -36,27 +45,20 @@ export async function trackFrames(
   const opening: Frame[] = [];
   let bytes = 0;
   let taken = 0;
-  let follower: Follower | null = null;
-  let builder: TraceBuilder | null = null;
+  let enough = OPENING_FRAMES;
+  let following: Following | null = null;
   let failure: NoBar | null = null;
 
-  const follow = (frame: Frame): void => {
-    const fix = follower!.next({ width: frame.width_px, height: frame.height_px, data: frame.grey }, frame.time_s);
-    builder!.add(frame, fix);
-    if (builder!.waiting >= REPORT_EVERY) options.onPoses?.(builder!.takeNew());
-  };
   const begin = (): void => {
     const model = learn(opening, view);
     if (typeof model === 'string') {
       failure = model;
-    } else {
-      follower = new Follower(model);
-      builder = new TraceBuilder(view, halfLengthOf(view, model), commonUncertainty(view, model), {
-        edgeLean_px: model.edgeLean_px,
-        restX_px: model.restX_px + view.region.x,
-      });
-      for (const frame of opening) follow(frame);
+      enough *= 2;
+      if (bytes >= OPENING_BYTES) opening.length = 0;
+      return;
     }
+    following = new Following(view, model, options);
+    for (const frame of opening) following.take(frame);
     opening.length = 0;
   };
 
@@ -64,11 +66,12 @@ export async function trackFrames(
     options.signal?.throwIfAborted();
     taken++;
     if (taken % REPORT_EVERY === 0) options.onProgress?.(taken);
-    if (follower !== null) follow(frame);
-    else if (failure === null) {
+    if (following !== null) (following as Following).take(frame);
+    else if (bytes < OPENING_BYTES) {
       opening.push(frame);
       bytes += frame.grey.byteLength;
-      if (bytes >= OPENING_BYTES) begin();
+      const seen_s = frame.time_s - opening[0]!.time_s;
+      if (bytes >= OPENING_BYTES || (opening.length >= enough && seen_s >= OPENING_S)) begin();
     }
   }
   options.signal?.throwIfAborted();
@@ -80,17 +83,40 @@ export async function trackFrames(
       frames: taken,
     };
   }
-  if (follower === null && failure === null) begin();
-  if (failure !== null || builder === null) {
-    return { ok: false, reason: 'no_bar', message: SENTENCES[failure ?? 'no_likeness'], frames: taken };
-  }
-  const done: TraceBuilder = builder;
+  if (following === null && opening.length > 0) begin();
   options.onProgress?.(taken);
-  if (done.waiting > 0) options.onPoses?.(done.takeNew());
-  if (done.rows < FEWEST_FRAMES) {
-    return { ok: false, reason: 'no_bar', message: SENTENCES.no_likeness, frames: taken };
+  const trace = (following as Following | null)?.finish() ?? null;
+  return trace === null
+    ? { ok: false, reason: 'no_bar', message: SENTENCES[failure ?? 'no_likeness'], frames: taken }
+    : { ok: true, trace };
+}
+
+/** A stretch whose bar is known: frames in, trace out, poses reported on the way. */
+class Following {
+  readonly #follower: Follower;
+  readonly #builder: TraceBuilder;
+  readonly #options: TrackOptions;
+
+  constructor(view: View, model: BarModel, options: TrackOptions) {
+    this.#follower = new Follower(model);
+    this.#builder = new TraceBuilder(view, halfLengthOf(view, model), commonUncertainty(view, model), {
+      edgeLean_px: model.edgeLean_px,
+      restX_px: model.restX_px + view.region.x,
+    });
+    this.#options = options;
   }
-  return { ok: true, trace: done.finish() };
+
+  take(frame: Frame): void {
+    const picture = { width: frame.width_px, height: frame.height_px, data: frame.grey };
+    this.#builder.add(frame, this.#follower.next(picture, frame.time_s));
+    if (this.#builder.waiting >= REPORT_EVERY) this.#options.onPoses?.(this.#builder.takeNew());
+  }
+
+  /** The trace; null where hardly a frame could be trusted. */
+  finish(): Trace | null {
+    if (this.#builder.waiting > 0) this.#options.onPoses?.(this.#builder.takeNew());
+    return this.#builder.rows < FEWEST_FRAMES ? null : this.#builder.finish();
+  }
 }
 
 function learn(opening: readonly Frame[], view: View): BarModel | NoBar {
