@@ -1,15 +1,16 @@
 import { computed } from '@preact/signals';
+import { rangeWithin } from '../plots/extremes.ts';
 import { span } from '../state/board.ts';
 import { curves } from '../state/results.ts';
 import { segments, view, views } from '../state/selection.ts';
-import { traces } from '../state/traces.ts';
+import { type GrowingTrace, traces } from '../state/traces.ts';
 import { type Curve, curveRange } from './curve-paint.ts';
 
 /** A curve of the angle lane; `own`: of the view that is shown. */
 export type LaneCurve = Curve & { readonly own: boolean };
 
 /**
- * The curves of the angle lane: what was followed of each view; where nothing was, the poses of measured segments. The view shown
+ * The curves of the angle lane: what was followed of each view; in segments where nothing was, the poses that were measured there. The view shown
  * comes last, and its unit counts.
  */
 export const laneCurves = computed<{ readonly curves: readonly LaneCurve[]; readonly unit: 'deg' | 'px' }>(() => {
@@ -25,13 +26,18 @@ export const laneCurves = computed<{ readonly curves: readonly LaneCurve[]; read
   }
   for (const s of segments.value) {
     const measured = curves.value.get(s.id);
-    if (measured && measured.unit === unit && !traces.value.get(s.view)?.length) {
+    if (measured && measured.unit === unit && !isFollowed(traces.value.get(s.view), s.start_s, s.end_s)) {
       all.push({ x: measured.time_s, y: measured.angle, own: s.view === shown?.id });
     }
   }
   if (own?.length) all.push({ x: own.time_s, y: own.angle, own: true });
   return { curves: all, unit };
 });
+
+/** Whether a trace has any pose within a stretch. */
+function isFollowed(trace: GrowingTrace | undefined, start_s: number, end_s: number): boolean {
+  return trace !== undefined && rangeWithin(trace.time_s, trace.angle, start_s, end_s) !== null;
+}
 
 /** What the angle lane reaches from and to, in its unit. */
 export const laneRange = computed(() => curveRange(laneCurves.value.curves, span.value));
