@@ -1,5 +1,6 @@
 import { computed } from '@preact/signals';
-import { rangeWithin } from '../plots/extremes.ts';
+import type { SessionSegment } from '../../contract.ts';
+import { lowerBound } from '../plots/extremes.ts';
 import { span } from '../state/board.ts';
 import { curves } from '../state/results.ts';
 import { segments, view, views } from '../state/selection.ts';
@@ -26,7 +27,7 @@ export const laneCurves = computed<{ readonly curves: readonly LaneCurve[]; read
   }
   for (const s of segments.value) {
     const measured = curves.value.get(s.id);
-    if (measured && measured.unit === unit && !isFollowed(traces.value.get(s.view), s.start_s, s.end_s)) {
+    if (measured && measured.unit === unit && !isFollowed(traces.value.get(s.view), s, measured.time_s.length)) {
       all.push({ x: measured.time_s, y: measured.angle, own: s.view === shown?.id });
     }
   }
@@ -34,9 +35,10 @@ export const laneCurves = computed<{ readonly curves: readonly LaneCurve[]; read
   return { curves: all, unit };
 });
 
-/** Whether a trace has any pose within a stretch. */
-function isFollowed(trace: GrowingTrace | undefined, start_s: number, end_s: number): boolean {
-  return trace !== undefined && rangeWithin(trace.time_s, trace.angle, start_s, end_s) !== null;
+/** Whether at least half of the poses measured in a segment were followed as well. */
+function isFollowed(trace: GrowingTrace | undefined, s: SessionSegment, measured: number): boolean {
+  if (!trace) return false;
+  return lowerBound(trace.time_s, s.end_s) - lowerBound(trace.time_s, s.start_s) >= measured / 2;
 }
 
 /** What the angle lane reaches from and to, in its unit. */
