@@ -54,7 +54,7 @@ export interface BarModel {
 export type NoBar = 'still' | 'no_likeness' | 'no_outline';
 
 /** Most points compared per frame. */
-export const MOST_POINTS = 2000;
+export const MOST_POINTS = 1400;
 /** Pictures the bar is learnt from. */
 export const SAMPLE = 28;
 /** Larger sides are shrunk below this for the first look, pixels. */
