@@ -2,7 +2,7 @@ import type { Apparatus, BenchLook, Colour } from './bench.ts';
 import type { Paint } from './board.ts';
 import { METER, meterPaint } from './meter.ts';
 import { layeredNoise, smoothNoise } from './random.ts';
-import { type Hit, meetBox, meetRing, type Solid } from './solids.ts';
+import { meetBox, meetRing, type Solid } from './solids.ts';
 
 const WINDING_WIDTH = 0.016;
 const FLANGE = 0.0026;
@@ -157,9 +157,4 @@ export function cables(below: Paint, place: NonNullable<BenchLook['meter']>, app
       }
     }
   };
-}
-
-/** A solid's paint needs a hit; this one is made for measuring shadows, where only the meeting counts. */
-export function emptyHit(): Hit {
-  return { distance: 0, nx: 0, ny: 0, nz: 0 };
 }

@@ -1,7 +1,6 @@
 import type { Lamp } from './bench.ts';
-import { emptyHit } from './furniture.ts';
 import type { Random } from './random.ts';
-import type { Solid } from './solids.ts';
+import { emptyHit, type Solid } from './solids.ts';
 
 /** Light that falls on a place with a normal, and the highlight it makes towards a viewer; linear, per colour. */
 export interface Lighting {

@@ -1,9 +1,14 @@
-/** Where a ray first meets a solid: distance along the ray (in units of its direction), outward normal, and the place on the surface. */
+/** Where a ray first meets a solid: distance along the ray (in units of its direction) and the outward normal there. */
 export interface Hit {
   distance: number;
   nx: number;
   ny: number;
   nz: number;
+}
+
+/** A hit to be written into. */
+export function emptyHit(): Hit {
+  return { distance: 0, nx: 0, ny: 0, nz: 0 };
 }
 
 /** A body that stands still on the bench. `meet` writes into `hit` and says whether the ray meets it beyond `from`. */

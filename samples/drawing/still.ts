@@ -1,10 +1,9 @@
 import type { Paint } from './board.ts';
 import type { Camera } from './camera.ts';
 import { rayThrough } from './camera.ts';
-import { emptyHit } from './furniture.ts';
 import type { Lighting } from './light.ts';
 import { layeredNoise, randomFrom } from './random.ts';
-import type { Solid } from './solids.ts';
+import { emptyHit, type Solid } from './solids.ts';
 
 /** The bench without bar and hand, before the lens: linear light row by row (red, green, blue a pixel). */
 export interface Still {

@@ -1,7 +1,7 @@
 import type { LampMap } from './bar.ts';
 import type { BenchPlan } from './bench.ts';
 import { boardPaint, graduatedCard } from './board.ts';
-import { type Camera, cameraOf, pictureTurn_rad, project } from './camera.ts';
+import { type Camera, cameraOf, project } from './camera.ts';
 import { cables, coilSolids, meterSolid } from './furniture.ts';
 import { blurLight, blurReach } from './lens.ts';
 import { type Lighting, lightingOf } from './light.ts';
@@ -134,6 +134,3 @@ function displayBox(plan: BenchPlan, camera: Camera, margin: number): Box | null
   };
   return box.x1 - box.x0 < 4 * margin || box.y1 - box.y0 < 4 * margin ? null : box;
 }
-
-/** Direction of the picture's +x axis of a plan in the world, radians. */
-export const worldTurn_rad = (plan: BenchPlan): number => pictureTurn_rad(plan.camera);
