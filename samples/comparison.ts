@@ -201,8 +201,11 @@ export function reductionLines(comparison: Comparison): string[] {
   );
 }
 
-/** Root mean square of the errors of f0 over their uncertainties, of the segments that were measured; null without any. */
+/** Root mean square of the errors of f0 over their uncertainties, of the segments that ought to be and were measured; null without any. */
 export function rmsRatio(segments: readonly SegmentComparison[]): number | null {
-  const ratios = segments.flatMap(({ ratio }) => (ratio === null ? [] : [ratio]));
+  const counted = segments.filter(
+    ({ measured, truth }) => truth.expected_status === 'measured' && measured.status === 'measured',
+  );
+  const ratios = counted.flatMap(({ ratio }) => (ratio === null ? [] : [ratio]));
   return ratios.length === 0 ? null : Math.sqrt(ratios.reduce((sum, r) => sum + r * r, 0) / ratios.length);
 }
