@@ -39,7 +39,7 @@ export function findAxis(layers: BarLayers, outline: Outline): BarAxis | null {
 }
 
 function edgeLine(layers: BarLayers, outline: Outline, edge: number, quarters: Quarters): Line | null {
-  const { columns, rows, halfU, halfV, mean, noise } = layers;
+  const { columns, rows, halfU, halfV, mean, noise, pictures } = layers;
   const trim = 0.06 * (outline.right - outline.left) + 1;
   const reach = Math.max(2, Math.min(4, 0.25 * (outline.bottom - outline.top)));
   const us: number[] = [];
@@ -67,7 +67,7 @@ function edgeLine(layers: BarLayers, outline: Outline, edge: number, quarters: Q
       centre += moment / sum;
       if (Math.abs(centre - edge) > 2 * reach) break;
     }
-    if (strength < 4 * noise || Math.abs(centre - edge) > 2 * reach) continue;
+    if (strength < (16 * noise) / pictures || Math.abs(centre - edge) > 2 * reach) continue;
     const quarter = quarterOf(quarters, u, edge);
     if (quarter === NEITHER) continue;
     us.push(u);

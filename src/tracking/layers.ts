@@ -29,8 +29,9 @@ export interface BarLayers {
   readonly weight: Float32Array;
   /** 1 where enough pictures show the place, else 0. */
   readonly known: Uint8Array;
-  /** Variance of the sensor's noise. */
+  /** Variance of the sensor's noise in one picture, and how many were averaged. */
   readonly noise: number;
+  readonly pictures: number;
   readonly reach_px: number;
 }
 
@@ -162,6 +163,7 @@ export function separate(
     weight,
     known,
     noise,
+    pictures: pictures.length,
     reach_px: Math.hypot(halfU, halfV),
   };
 }

@@ -84,6 +84,31 @@ describe('following a bar from above', () => {
   });
 });
 
+describe('a long stretch', () => {
+  it('is followed while it still comes in, from the first seconds on', async () => {
+    const drawn = drawBar({ width: 64, height: 56, length_px: 40, thickness_px: 6, frames: 400 });
+    let given = 0;
+    let firstAt = 0;
+    let reported = 0;
+    const stream = async function* () {
+      for await (const frame of asStream(drawn.frames)) {
+        given++;
+        yield frame;
+      }
+    };
+    const outcome = await trackFrames(stream(), viewOf(drawn), {
+      onPoses: ({ angle }) => {
+        if (firstAt === 0) firstAt = given;
+        reported += angle.length;
+      },
+    });
+    // Eight seconds are kept back to learn the bar from; what comes later is not.
+    expect(firstAt).toBeGreaterThanOrEqual(240);
+    expect(firstAt).toBeLessThan(260);
+    expect(reported).toBe(traceOf(outcome).angle.length);
+  });
+});
+
 describe('what must change with the picture, and what must not', () => {
   it('a picture turned by a quarter turns the angle by 90 degrees', async () => {
     const drawn = drawBar({ width: 160, height: 150, frames: 60 });
