@@ -31,6 +31,8 @@ export interface Facts {
   readonly rival_Hz: number | null;
   /** A frequency above half the frame rate that fits the uneven frame times better, null where there is none. */
   readonly folded_Hz: number | null;
+  /** The motion is so fast that it may be folded, and the frame times don't rule it out. */
+  readonly mayBeFolded: boolean;
   /** Energy of the twist over the noise: its mean square times the number of samples over the noise variance. */
   readonly signal: number;
   readonly converged: boolean;
@@ -81,7 +83,7 @@ function sampled(facts: Facts): Check[] {
   const rate_Hz = 1 / facts.medianInterval_s;
   if (facts.folded_Hz !== null) {
     out.push(check('folded_frequency', 'doubt', { frequency_Hz, other_Hz: facts.folded_Hz }));
-  } else if (frequency_Hz > 0.4 * rate_Hz) {
+  } else if (frequency_Hz > 0.4 * rate_Hz || facts.mayBeFolded) {
     out.push(check('near_half_frame_rate', 'doubt', { frequency_Hz, rate_Hz }));
   } else if (frequency_Hz > 0.2 * rate_Hz) {
     out.push(check('few_frames_per_cycle', 'note', { frequency_Hz, rate_Hz }));

@@ -9,7 +9,7 @@ import { findJump } from './jumps.ts';
 import { DRAG, DRIFT, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA, SHARE } from './model.ts';
 import { withoutPrior } from './parameter-covariance.ts';
 import type { RingDown, RingDownOptions, RingDownOutcome } from './ring-down.ts';
-import { foldedFrom, gapRival } from './rivals.ts';
+import { foldedFrom, gapRival, mayBeFolded } from './rivals.ts';
 import { angleSeries, type Series, sampling } from './series.ts';
 import { addLines, type FitWithLines, motionAt } from './side-lines.ts';
 import { fitTwist, type TwistFit } from './twist-fit.ts';
@@ -176,6 +176,7 @@ function factsOf(
     angleLine: angleLine === null ? null : { ...angleLine, amplitude: angleLine.amplitude * unitScale },
     rival_Hz: gapRival(fit),
     folded_Hz: foldedFrom(fit),
+    mayBeFolded: mayBeFolded(fit),
     signal: (fit.residual.length * rootMeanSquare(twist) ** 2) / fit.level,
     converged: fit.converged,
     amplitudeLawOdd,

@@ -56,6 +56,22 @@ export function foldedFrom(fit: TwistFit): number | null {
   return null;
 }
 
+/** From this share of the frame rate on a motion folded about half of it is as likely as one that isn't (common practice). */
+const FAST = 0.25;
+/** A folded frequency is ruled out where it leaves more than this times the sum of squares of the one seen. */
+const FAR_WORSE = 1.5;
+
+/** Whether a fast motion may as well be a faster one folded about half the frame rate: the frame times are too even to rule it out. */
+export function mayBeFolded(fit: TwistFit): boolean {
+  const { samples } = fit;
+  const rate = 1 / sampling(samples).medianInterval_s;
+  const frequency = fit.parameters[OMEGA]! / (2 * Math.PI);
+  if (frequency < FAST * rate) return false;
+  const here = search(samples, frequency);
+  const there = search(samples, rate - frequency);
+  return here === null || there === null || there.sum < FAR_WORSE * here.sum;
+}
+
 /** The best plain damped sine within three lines of the spectrum about `centre`. */
 function search(series: Series, centre: number): { frequency: number; sum: number } | null {
   const duration = series.time_s[series.time_s.length - 1]!;

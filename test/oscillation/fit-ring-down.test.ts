@@ -300,6 +300,8 @@ describe('how it was filmed', () => {
   it('near half the frame rate, and folded about it', () => {
     expect(codes(ringDownOf({ f0_Hz: 13, gamma_per_s: 0.2 }))).toContain('doubt near_half_frame_rate');
     expect(codes(ringDownOf({ f0_Hz: 7, gamma_per_s: 0.2 }))).toContain('note few_frames_per_cycle');
+    // 18.1 Hz seen 30 times a second at even times can't be told from 11.9 Hz.
+    expect(codes(ringDownOf({ f0_Hz: 18.1, gamma_per_s: 0.2, jitter_s: 0 }))).toContain('doubt near_half_frame_rate');
     // 22 Hz seen 30 times a second at uneven times looks like 8 Hz, but not quite.
     const folded = ringDownOf({ f0_Hz: 22, gamma_per_s: 0.2, jitter_s: 0.008 });
     expect(statusOf(folded.checks)).not.toBe('measured');
