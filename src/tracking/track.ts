@@ -33,7 +33,7 @@ const REPORT_EVERY = 30;
  *
  * How: the opening gives a model of two layers, a static background and the bar's own picture, and every frame is
  * registered against it in angle, place and brightness. Two other ways were measured on drawn recordings (720p, bars of
- * 200 to 300 px): straight lines through the long edges frame by frame have 2.5 to 3 times the scatter (0.022 against
+ * 200 to 300 px): straight lines through the long edges frame by frame have 1.6 to 3.2 times the scatter (0.022 against
  * 0.007 degrees) and on squared paper follow the paper by several per cent; weighted moments of the difference from the
  * background have 7 times the scatter, and are off by up to a quarter of the swing where shadows fall or halves differ.
  */
