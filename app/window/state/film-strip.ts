@@ -2,7 +2,7 @@ import { signal } from '@preact/signals';
 import type { Picture } from '../../contract.ts';
 import type { TimeSpan } from '../time-board/time-span.ts';
 import { host } from './host.ts';
-import { bitmapOf } from './pictures.ts';
+import { bitmapOf, retire } from './pictures.ts';
 
 /** A small picture of the film strip. */
 export interface FilmPicture {
@@ -28,7 +28,7 @@ export async function askFilm(recording: string, span: TimeSpan, count: number):
   if (question === asked) return;
   asked = question;
   if (film.peek().recording !== recording) {
-    for (const { bitmap } of film.peek().pictures) bitmap.close();
+    for (const { bitmap } of film.peek().pictures) retire(bitmap);
     film.value = { recording, pictures: [] };
   }
   const before = job;

@@ -23,8 +23,16 @@ export const playing = signal<{ readonly job: string } | null>(null);
 /** Shows a picture as the host sent it. */
 export async function showPicture(recordingId: string, picture: Picture): Promise<void> {
   const bitmap = await bitmapOf(picture);
-  shown.value?.bitmap.close();
+  const before = shown.peek();
   shown.value = { recording: recordingId, index: picture.index, time_s: picture.time_s, bitmap };
+  if (before) retire(before.bitmap);
+}
+
+const LAST_DRAWING_MS = 500;
+
+/** Gives a picture's memory back once nothing can be about to draw it any more. */
+export function retire(bitmap: ImageBitmap): void {
+  setTimeout(() => bitmap.close(), LAST_DRAWING_MS);
 }
 
 /** Decodes a picture. */
@@ -99,7 +107,8 @@ function wanted(): Pick<Asked, 'recording' | 'frame' | 'width'> | null {
 /** Forgets the picture: another document is open. */
 export function forgetPicture(): void {
   asked?.abort.abort();
-  shown.value?.bitmap.close();
+  const before = shown.peek();
+  if (before) retire(before.bitmap);
   shown.value = null;
   last = null;
 }
