@@ -46,10 +46,13 @@ export const view = computed<SessionView | null>(
 /** Presentation times of its frames, seconds; null until they have been read. */
 export const frameTimes = computed<Float64Array | null>(() => timesOf.value.get(recording.value?.id ?? '') ?? null);
 
-/** Seconds from the first frame to the end of the last. 0 while unknown. */
+/**
+ * Seconds from the first frame to the end of the last. While the recording is still being opened, or is missing: to the end of the
+ * last segment, so that the segments can be seen all the same. 0 where there is none.
+ */
 export const whole_s = computed(() => {
   const times = frameTimes.value;
-  if (!times?.length) return recording.value?.facts?.duration_s ?? 0;
+  if (!times?.length) return recording.value?.facts?.duration_s ?? segments.value.at(-1)?.end_s ?? 0;
   const last = times[times.length - 1]!;
   return Math.max(last + last / Math.max(1, times.length - 1), 0.001);
 });

@@ -94,21 +94,25 @@ export function TimeBoard() {
           turn(event, x_of(event), width);
         }}
       >
-        <div data-lane="upper">
-          <Ruler width={width} />
-          <FilmLane width={width} height={heights.film} span={now} />
-        </div>
-        <TraceLane width={width} height={heights.trace} span={now} />
-        <CurrentLane width={width} height={heights.current} span={now} />
-        <SegmentLane width={width} span={now} draft={draft.value.edge} />
-        <Bands width={width} film={heights.film} draft={draft.value} />
-        <Marks width={width} film={heights.film} />
-        {laneCurves.value.curves.length === 0 && recording.value ? (
-          <p class="lane-word" style={{ top: `${RULER_PX + heights.film + heights.trace / 2 - 10}px` }}>
-            {view.value
-              ? 'Not followed yet: press F to follow the bar'
-              : 'The angle of the bar appears here once a region is drawn'}
-          </p>
+        {width > 0 ? (
+          <>
+            <div data-lane="upper">
+              <Ruler width={width} />
+              <FilmLane width={width} height={heights.film} span={now} />
+            </div>
+            <TraceLane width={width} height={heights.trace} span={now} />
+            <CurrentLane width={width} height={heights.current} span={now} />
+            <SegmentLane width={width} span={now} draft={draft.value.edge} />
+            <Bands width={width} film={heights.film} draft={draft.value} />
+            <Marks width={width} film={heights.film} />
+            {laneCurves.value.curves.length === 0 && recording.value ? (
+              <p class="lane-word" style={{ top: `${RULER_PX + heights.film + heights.trace / 2 - 10}px` }}>
+                {view.value
+                  ? 'Not followed yet: press F to follow the bar'
+                  : 'The angle of the bar appears here once a region is drawn'}
+              </p>
+            ) : null}
+          </>
         ) : null}
       </div>
       <BoardScroll />

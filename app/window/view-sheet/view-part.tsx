@@ -170,10 +170,11 @@ function RegionFields({ of: v, change }: { of: SessionView; change: Change }) {
 /** Whether the bar is found in the frame at the cursor. */
 function BarState({ of: v }: { of: SessionView }) {
   const last = bar.value;
-  const current = last && last.view === v.id && last.frame === frame.value ? last.found : null;
+  const isCurrent = last?.view === v.id && last.frame === frame.value && !looking.value;
+  const current = isCurrent ? last.found : null;
   return (
     <p class="bar-state" role="status" data-found={current?.found ?? undefined}>
-      {current === null || looking.value
+      {current === null
         ? 'Looking for the bar …'
         : current.found
           ? `Bar found at ${fixedText(current.angle, 1)}${current.unit === 'deg' ? '°' : ' px'}, quality ${fixedText(current.quality, 2)}.`

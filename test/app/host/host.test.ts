@@ -293,7 +293,9 @@ describe.skipIf(!ready)('the host', () => {
 
     await rename(join(bench, 'evening.mp4'), join(bench, 'renamed.mp4'));
     await start(null, file);
-    expect((await next('document', allReady)).recordings[0]?.name).toBe('renamed.mp4');
+    // Whether it is opened before or after this window came is left open.
+    await expect.poll(async () => allReady(await client.call('getDocument', {}))).toBe(true);
+    expect((await client.call('getDocument', {})).recordings[0]?.name).toBe('renamed.mp4');
     await host.close();
 
     const away = join(home, 'away');

@@ -39,7 +39,7 @@ function open(...args: string[]) {
   child.stderr.on('data', (chunk) => {
     err += String(chunk);
   });
-  const ended = new Promise<number | null>((resolve) => child.once('exit', resolve));
+  const ended = new Promise<number | null>((resolve) => child.once('close', resolve));
   return { child, ended, out: () => out, err: () => err };
 }
 

@@ -50,7 +50,7 @@ describe.skipIf(!existsSync(demo))('the host process', () => {
   afterEach(async () => {
     if (exit.mock.calls.length === 0) {
       toHost({ kind: 'close', number: 999, discard: true });
-      await vi.waitFor(() => expect(exit).toHaveBeenCalled(), 10_000);
+      await vi.waitFor(() => expect(exit).toHaveBeenCalled(), 20_000);
     }
     await rm(home, { recursive: true, force: true });
   });
@@ -81,12 +81,14 @@ describe.skipIf(!existsSync(demo))('the host process', () => {
     const token = await chosen;
     expect(token?.name).toBe('boathouse.needlebeat.json');
     await client.call('openFile', { token: token?.token ?? '' });
-    await vi.waitFor(async () =>
-      expect((await heard('document')).facts).toEqual({
-        dirty: false,
-        name: 'boathouse.needlebeat.json',
-        hasPlace: true,
-      }),
+    await vi.waitFor(
+      async () =>
+        expect((await heard('document')).facts).toEqual({
+          dirty: false,
+          name: 'boathouse.needlebeat.json',
+          hasPlace: true,
+        }),
+      20_000,
     );
 
     toHost({ kind: 'token', number: 7, path: '/videos/dropped.mp4' });
@@ -96,7 +98,7 @@ describe.skipIf(!existsSync(demo))('the host process', () => {
     const commands: string[] = [];
     client.on('command', ({ id }) => commands.push(id));
     toHost({ kind: 'command', id: 'undo' });
-    await vi.waitFor(() => expect(commands).toEqual(['undo']));
+    await vi.waitFor(() => expect(commands).toEqual(['undo']), 20_000);
     client.close();
   });
 
@@ -105,11 +107,13 @@ describe.skipIf(!existsSync(demo))('the host process', () => {
     const client = openWindow();
     await client.call('openDemo', {});
     toHost({ kind: 'save', number: 1, path: null });
-    await vi.waitFor(async () =>
-      expect(await heard('reply')).toMatchObject({ number: 1, problem: expect.stringContaining('no file yet') }),
+    await vi.waitFor(
+      async () =>
+        expect(await heard('reply')).toMatchObject({ number: 1, problem: expect.stringContaining('no file yet') }),
+      20_000,
     );
     toHost({ kind: 'save', number: 2, path: join(home, 'out/s.needlebeat.json') });
-    await vi.waitFor(async () => expect(await heard('reply')).toMatchObject({ number: 2, problem: null }));
+    await vi.waitFor(async () => expect(await heard('reply')).toMatchObject({ number: 2, problem: null }), 20_000);
     expect(JSON.parse(await readFile(join(home, 'out/s.needlebeat.json'), 'utf8')).format).toBe('needlebeat/session');
     client.close();
   });
@@ -119,7 +123,7 @@ describe.skipIf(!existsSync(demo))('the host process', () => {
     const { problem } = await heard('started');
     expect(problem).toBe('nothing.mp4: there is no such file; a recording or a session file was expected.');
     toHost({ kind: 'close', number: 3, discard: false });
-    await vi.waitFor(() => expect(exit).toHaveBeenCalledWith(0), 10_000);
+    await vi.waitFor(() => expect(exit).toHaveBeenCalledWith(0), 20_000);
     expect(await readdir(join(home, 'work'))).toEqual([]);
   });
 });

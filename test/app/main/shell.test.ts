@@ -14,7 +14,7 @@ async function start(change: (fake: Fake) => void = () => undefined): Promise<Fa
   change(fake);
   vi.doMock('electron', () => fake);
   await import('../../../app/main/main.ts');
-  await vi.waitFor(() => expect(fake.processes.length + fake.app.quit.mock.calls.length).toBeGreaterThan(0));
+  await vi.waitFor(() => expect(fake.processes.length + fake.app.quit.mock.calls.length).toBeGreaterThan(0), 20_000);
   return fake;
 }
 
@@ -129,10 +129,10 @@ describe('the desktop shell', () => {
     host().emit('message', { kind: 'document', facts: { dirty: false, name: 'a.needlebeat.json', hasPlace: true } });
     expect(window().title).toBe('a.needlebeat.json – Needlebeat');
     window().close();
-    await vi.waitFor(() => expect(host().posted.at(-1)).toMatchObject({ kind: 'close', discard: false }));
+    await vi.waitFor(() => expect(host().posted.at(-1)).toMatchObject({ kind: 'close', discard: false }), 20_000);
     expect(fake.dialog.showMessageBox).not.toHaveBeenCalled();
     host().emit('exit', 0);
-    await vi.waitFor(() => expect(window().destroy).toHaveBeenCalled());
+    await vi.waitFor(() => expect(window().destroy).toHaveBeenCalled(), 20_000);
     expect(fake.app.quit).toHaveBeenCalled();
   });
 
@@ -153,12 +153,12 @@ describe('the desktop shell', () => {
     fake.dialog.showMessageBox.mockResolvedValueOnce({ response });
     const before = host().posted.length;
     window().close();
-    await vi.waitFor(() => expect(fake.dialog.showMessageBox).toHaveBeenCalledTimes(1));
+    await vi.waitFor(() => expect(fake.dialog.showMessageBox).toHaveBeenCalledTimes(1), 20_000);
     if (response === 0) {
-      await vi.waitFor(() => expect(host().posted.length).toBe(before + 1));
+      await vi.waitFor(() => expect(host().posted.length).toBe(before + 1), 20_000);
       host().emit('message', { kind: 'reply', number: host().posted.at(-1)?.number, token: null, problem: null });
     }
-    await vi.waitFor(() => expect(host().posted.length).toBe(before + expected.length));
+    await vi.waitFor(() => expect(host().posted.length).toBe(before + expected.length), 20_000);
     await new Promise((resolve) => setTimeout(resolve, 20));
     expect(host().posted.slice(before)).toMatchObject(expected);
   });
@@ -167,10 +167,10 @@ describe('the desktop shell', () => {
     host().emit('message', { kind: 'document', facts: { dirty: true, name: 'a.needlebeat.json', hasPlace: true } });
     fake.dialog.showMessageBox.mockResolvedValueOnce({ response: 0 });
     window().close();
-    await vi.waitFor(() => expect(host().posted.at(-1)?.kind).toBe('save'));
+    await vi.waitFor(() => expect(host().posted.at(-1)?.kind).toBe('save'), 20_000);
     const problem = 'a.needlebeat.json: it can’t be written here.';
     host().emit('message', { kind: 'reply', number: host().posted.at(-1)?.number, token: null, problem });
-    await vi.waitFor(() => expect(fake.dialog.showMessageBox).toHaveBeenCalledTimes(2));
+    await vi.waitFor(() => expect(fake.dialog.showMessageBox).toHaveBeenCalledTimes(2), 20_000);
     expect(host().posted.at(-1)?.kind).toBe('save');
     expect(window().destroy).not.toHaveBeenCalled();
   });
@@ -178,7 +178,7 @@ describe('the desktop shell', () => {
   it('offers to start the host again when it dies', async () => {
     fake.dialog.showMessageBox.mockResolvedValueOnce({ response: 0 });
     host().emit('exit', 5);
-    await vi.waitFor(() => expect(fake.processes).toHaveLength(2));
+    await vi.waitFor(() => expect(fake.processes).toHaveLength(2), 20_000);
     expect(host().posted[0]).toMatchObject({ kind: 'start', file: null });
     expect(window().webContents.reload).toHaveBeenCalled();
   });

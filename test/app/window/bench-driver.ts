@@ -9,6 +9,9 @@ interface Region {
   readonly height: number;
 }
 
+/** Nothing that the tests wait for takes so long even where the processor has much else to do. */
+const LONGEST_WAIT_MS = 100_000;
+
 /** What one user does at the bench, in a real browser: the tests speak only through this. */
 export class BenchDriver {
   readonly page: Page;
@@ -25,6 +28,7 @@ export class BenchDriver {
   static async enter(browser: Browser, address: string, size = { width: 1440, height: 900 }): Promise<BenchDriver> {
     const context = await browser.newContext({ viewport: size, colorScheme: 'light', acceptDownloads: true });
     const page = await context.newPage();
+    page.setDefaultTimeout(LONGEST_WAIT_MS);
     const complaints: string[] = [];
     page.on('console', (message) => {
       if (message.type() === 'error' || message.type() === 'warning') complaints.push(message.text());
@@ -65,18 +69,19 @@ export class BenchDriver {
     await this.#drag(at(region.x, region.y), at(region.x + region.width, region.y + region.height));
   }
 
-  /** The sentence about the bar in the frame shown. */
+  /** Waits for the sentence about the bar in the frame shown. */
   async barFound(): Promise<string> {
-    const state = this.page.locator('.bar-state[data-found]');
-    await state.waitFor({ timeout: 60_000 });
-    return state.innerText();
+    const words = await this.page.waitForFunction(
+      () => document.querySelector<HTMLElement>('.bar-state[data-found]')?.innerText,
+    );
+    return (await words.jsonValue()) ?? '';
   }
 
   /** Follows the stretch that the board shows, to its end; gives the words of the progress line seen on the way. */
   async followStretch(): Promise<string[]> {
     const seen = new Set<string>();
     await this.page.getByRole('button', { name: 'Stretch on the board' }).click();
-    await this.page.locator('.work-line').waitFor();
+    await this.page.locator('.progress-words').waitFor();
     for (;;) {
       const words = await this.page.locator('.progress-words').allInnerTexts();
       if (words.length === 0) break;
@@ -90,9 +95,11 @@ export class BenchDriver {
   async showStretch(end_s: number): Promise<void> {
     const lanes = await this.#box('.lanes');
     await this.page.mouse.move(lanes.x + 1, lanes.y + 80);
-    for (let i = 0; i < 60 && (await this.span()).end_s > end_s; i++) {
+    for (let now = await this.span(); now.end_s > end_s; ) {
       await this.page.mouse.wheel(0, -60);
-      await this.page.waitForTimeout(20);
+      const before = now.end_s;
+      await expect.poll(async () => (await this.span()).end_s).toBeLessThan(before);
+      now = await this.span();
     }
   }
 
@@ -113,8 +120,20 @@ export class BenchDriver {
     await this.#drag(await this.#onBoard(from_s), await this.#onBoard(to_s));
   }
 
-  /** Names of the segments on the board with what a screen reader says of them. */
-  segments(): Promise<string[]> {
+  /** What a screen reader says of the segments on the board, once there are so many; what is to be in their names is waited for with a poll. */
+  async segments(count: number): Promise<string[]> {
+    await expect
+      .poll(async () => (await this.#segmentNames()).length, { message: 'segments on the board' })
+      .toBe(count);
+    return this.#segmentNames();
+  }
+
+  /** Waits until the sheet of a segment lies open. */
+  async atSegment(id: string): Promise<void> {
+    await this.page.getByRole('heading', { name: `Segment ${id}`, exact: true }).waitFor();
+  }
+
+  #segmentNames(): Promise<string[]> {
     return this.page
       .locator('.bracket-name')
       .evaluateAll((all) => all.map((one) => one.getAttribute('aria-label') ?? ''));
@@ -123,6 +142,7 @@ export class BenchDriver {
   /** Selects a segment on the board. */
   async selectSegment(id: string): Promise<void> {
     await this.page.locator(`.bracket[data-segment="${id}"] .bracket-name`).click();
+    await this.page.locator(`.bracket[data-segment="${id}"][data-chosen]`).waitFor();
   }
 
   /** Types into an entry of the open sheet and takes it with Enter. */
@@ -136,14 +156,14 @@ export class BenchDriver {
     return this.page.locator(`[data-entry="${entry}"]`).inputValue();
   }
 
-  /** Waits until every segment on the board has been measured. */
-  async measured(timeout = 110_000): Promise<void> {
+  /** Waits until every one of so many segments on the board has been measured. */
+  async measured(count: number, timeout = LONGEST_WAIT_MS): Promise<void> {
     await this.page.waitForFunction(
-      () => {
+      (wanted) => {
         const marks = [...document.querySelectorAll('.bracket .standing')];
-        return marks.length > 0 && marks.every((mark) => (mark as HTMLElement).dataset.standing !== 'waiting');
+        return marks.length === wanted && marks.every((mark) => (mark as HTMLElement).dataset.standing !== 'waiting');
       },
-      null,
+      count,
       { timeout },
     );
   }
@@ -158,6 +178,14 @@ export class BenchDriver {
   /** The cells of a row of the results table. */
   row(id: string): Promise<string[]> {
     return this.page.locator(`tr[data-row="${id}"] > *`).allInnerTexts();
+  }
+
+  /** What has the keyboard: the name of its entry field, else its words. */
+  focused(): Promise<string> {
+    return this.page.evaluate(() => {
+      const one = document.activeElement as HTMLElement | null;
+      return one?.dataset.entry ?? (one instanceof HTMLInputElement ? 'a field' : (one?.textContent ?? ''));
+    });
   }
 
   /** Gives a command by its shortcut. */
@@ -177,7 +205,7 @@ export class BenchDriver {
     const take = (download: Download) => arrived.push(download);
     this.page.on('download', take);
     await action();
-    await expect.poll(() => arrived.length, { timeout: 60_000 }).toBeGreaterThanOrEqual(count);
+    await expect.poll(() => arrived.length, { timeout: LONGEST_WAIT_MS }).toBeGreaterThanOrEqual(count);
     await this.page.waitForTimeout(300);
     this.page.off('download', take);
     const files = new Map<string, Buffer>();
@@ -191,7 +219,7 @@ export class BenchDriver {
 
   /** Sentences about mistakes that are on the window. */
   async mistakes(): Promise<string[]> {
-    await this.page.locator('[role=alert]').first().waitFor({ timeout: 60_000 });
+    await this.page.locator('[role=alert]').first().waitFor();
     return this.page.locator('[role=alert]').allInnerTexts();
   }
 

@@ -36,7 +36,7 @@ describe.skipIf(!named || !hasChromium())('pictures of the window with the sampl
   };
 
   test('following the bar, dark', { timeout: 600_000 }, async () => {
-    await bench.measured(500_000);
+    await bench.measured(11, 500_000);
     await bench.page.emulateMedia({ colorScheme: 'dark' });
     await bench.seeSheet('View');
     await bench.barFound();
@@ -48,7 +48,7 @@ describe.skipIf(!named || !hasChromium())('pictures of the window with the sampl
     );
     await picture('follow');
     await bench.page.locator('.work-line').waitFor({ state: 'detached', timeout: 300_000 });
-    expect(await bench.segments()).toHaveLength(11);
+    await bench.segments(11);
   });
 
   test('a segment, and the field', { timeout: 600_000 }, async () => {
@@ -58,7 +58,7 @@ describe.skipIf(!named || !hasChromium())('pictures of the window with the sampl
     await bench.page.getByRole('img', { name: /with the fit/ }).waitFor();
     await picture('segment');
     await bench.seeSheet('Field');
-    expect(await bench.page.locator('tr[data-row]').count()).toBe(11);
+    await expect.poll(() => bench.page.locator('tr[data-row]').count()).toBe(11);
     await picture('field');
   });
 });

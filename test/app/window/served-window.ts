@@ -58,7 +58,7 @@ export function runProgram(...args: string[]): Promise<{ status: number | null; 
     child.stdout.on('data', (data) => (stdout += data));
     child.stderr.on('data', (data) => (stderr += data));
     child.once('error', fail);
-    child.once('exit', (status) => done({ status, stdout, stderr }));
+    child.once('close', (status) => done({ status, stdout, stderr }));
   });
 }
 
