@@ -16,7 +16,7 @@ interface Truth {
   readonly segments: readonly { readonly id: string; readonly f0_Hz: number }[];
 }
 
-describe.skipIf(!hasChromium())('the job in the window, on the sample', () => {
+describe.skipIf(!hasChromium())('the job in the window, on the sample', { timeout: 300_000 }, () => {
   let browser: Browser;
   let served: ServedWindow;
   let bench: BenchDriver;

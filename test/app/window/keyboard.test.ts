@@ -8,7 +8,7 @@ import { BenchDriver } from './bench-driver.ts';
 import { hasChromium, startChromium } from './chromium.ts';
 import { SAMPLE, type ServedWindow, serveWindow } from './served-window.ts';
 
-describe.skipIf(!hasChromium())('the window without a pointer', () => {
+describe.skipIf(!hasChromium())('the window without a pointer', { timeout: 300_000 }, () => {
   let browser: Browser;
   let served: ServedWindow;
   let bench: BenchDriver;
