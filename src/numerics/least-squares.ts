@@ -1,3 +1,4 @@
+import { dot } from './dot.ts';
 import { invertUpper, solveUpper, triangularise } from './qr.ts';
 
 /** A nonlinear least-squares problem: minimise the sum of squares of `rows` residuals over the parameters. */
@@ -24,12 +25,14 @@ export interface LeastSquaresOptions {
   /** Which parameters stay as they start; absent: none. */
   readonly fixed?: readonly boolean[];
   readonly priors?: readonly Prior[];
-  /** Stops when actual and predicted reduction of the sum of squares are both below this share of it (default 1e-12). */
+  /** Stops when actual and predicted reduction of the sum of squares are both below this share of it, or the next step promises hardly any (default 1e-12). */
   readonly sumTolerance?: number;
   /** Stops when every free parameter's step, in units of its own column scale, is below this share (default 1e-10). */
   readonly stepTolerance?: number;
   /** Most evaluations of the problem (default 200). */
   readonly maxEvaluations?: number;
+  /** Damping of the first step (default 1e-3); next to none suits a start close to the minimum. */
+  readonly damping?: number;
 }
 
 /**
@@ -58,6 +61,9 @@ export interface LeastSquaresFit {
   readonly evaluations: number;
 }
 
+/** A step that promises less than this times what `sumTolerance` asks for is not taken. */
+const NEGLIGIBLE = 0.1;
+
 /**
  * Levenberg-Marquardt: QR of the Jacobian, damping scaled by the largest norm each column has had (Moré 1978, The
  * Levenberg-Marquardt algorithm: implementation and theory, LNM 630), damping factor moved as by Nielsen (1999, Damping
@@ -77,18 +83,18 @@ export function leastSquares(
   const sumTolerance = options.sumTolerance ?? 1e-12;
   const stepTolerance = options.stepTolerance ?? 1e-10;
 
-  const blank = () => ({
-    residual: new Float64Array(rows),
-    jacobian: Array.from(start, () => new Float64Array(rows)),
-  });
+  const blank = () => {
+    const all = new Float64Array((start.length + 1) * rows);
+    const column = (k: number) => all.subarray(k * rows, (k + 1) * rows);
+    return { residual: column(start.length), jacobian: Array.from(start, (_, k) => column(k)) };
+  };
   const evaluate = (p: Float64Array, point: ReturnType<typeof blank>): number => {
     if (!problem.evaluate(p, point.residual.subarray(0, problem.rows), point.jacobian)) return Number.POSITIVE_INFINITY;
     priors.forEach((prior, k) => {
       point.residual[problem.rows + k] = (p[prior.parameter]! - prior.value) / prior.u;
       for (const i of free) point.jacobian[i]![problem.rows + k] = i === prior.parameter ? 1 / prior.u : 0;
     });
-    let sum = 0;
-    for (const value of point.residual) sum += value * value;
+    const sum = dot(point.residual, point.residual);
     return Number.isFinite(sum) ? sum : Number.POSITIVE_INFINITY;
   };
 
@@ -99,11 +105,17 @@ export function leastSquares(
   let evaluations = 1;
   let status: LeastSquaresStatus = Number.isFinite(sum) ? 'evaluations' : 'undefined_start';
   const scale = new Float64Array(n);
-  let damping = 1e-3;
+  const space = new Float64Array((n + 1) * rows);
+  let damping = options.damping ?? 1e-3;
   let growth = 2;
-  let triangle = status === 'undefined_start' ? null : factor(here, free, scale);
+  let triangle = status === 'undefined_start' ? null : factor(here, free, scale, space);
   while (triangle !== null && evaluations < maxEvaluations) {
     const step = dampedStep(triangle, scale, damping);
+    // So close that the step isn't worth looking at; a strongly damped one promises little for another reason.
+    if (evaluations > 1 && damping < 1e-2 && step.predicted <= NEGLIGIBLE * sumTolerance * sum) {
+      status = 'converged';
+      break;
+    }
     const trial = p.slice();
     let largest = 0;
     for (let k = 0; k < n; k++) {
@@ -119,7 +131,7 @@ export function leastSquares(
       [here, there] = [there, here];
       p = trial;
       sum = trialSum;
-      triangle = factor(here, free, scale);
+      triangle = factor(here, free, scale, space);
       damping *= Math.max(1 / 9, 1 - (2 * Math.min(gain, 2) - 1) ** 3);
       damping = Math.max(damping, 1e-15);
       growth = 2;
@@ -157,16 +169,16 @@ function factor(
   point: { residual: Float64Array; jacobian: Float64Array[] },
   free: readonly number[],
   scale: Float64Array,
+  space: Float64Array,
 ): Factor {
   free.forEach((i, k) => {
-    let square = 0;
-    for (const value of point.jacobian[i]!) square += value * value;
-    const norm = Math.sqrt(square);
+    const norm = Math.sqrt(dot(point.jacobian[i]!, point.jacobian[i]!));
     scale[k] = Math.max(scale[k]!, norm > 0 ? norm : scale[k]! > 0 ? 0 : 1);
   });
   return triangularise(
     free.map((i) => point.jacobian[i]!),
     point.residual,
+    space,
   );
 }
 

@@ -13,13 +13,18 @@ export interface Triangle {
 /**
  * Factorises the m x n matrix whose columns are `columns` (each of length m >= n) and turns `y` along with it.
  * Neither input is changed. Householder reflections as in Golub and Van Loan, Matrix Computations, algorithm 5.2.1.
+ * `space` is overwritten: who factorises often hands over the same (n + 1) m numbers each time.
  */
-export function triangularise(columns: readonly Float64Array[], y: Float64Array): Triangle {
+export function triangularise(columns: readonly Float64Array[], y: Float64Array, space?: Float64Array): Triangle {
   const n = columns.length;
   const m = y.length;
   if (m < n) throw new RangeError(`triangularise: expected at least ${n} rows for ${n} columns, got ${m}`);
-  const work = columns.map((column) => column.slice());
-  const rhs = y.slice();
+  const all = space ?? new Float64Array((n + 1) * m);
+  const [rhs, ...work] = [y, ...columns].map((column, k) => {
+    const copy = all.subarray(k * m, (k + 1) * m);
+    copy.set(column);
+    return copy;
+  }) as [Float64Array, ...Float64Array[]];
   const r = new Float64Array(n * n);
   for (let k = 0; k < n; k++) {
     const v = work[k]!;

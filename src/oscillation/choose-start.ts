@@ -23,13 +23,14 @@ export function chooseStart(series: Series, trace: Trace, side: boolean): StartV
   if (side || half === null || !(half > 0) || rival === undefined) return best;
   const x = spectrum(series.time_s, trace.x_px);
   const y = spectrum(series.time_s, trace.y_px);
-  const angle = spectrum(series.time_s, series.value);
-  if (x === null || y === null || angle === null) return best;
+  if (x === null || y === null) return best;
   const middleOverEnd = (c: StartValues) => {
     const k = Math.max(1, Math.min(x.amplitude.length - 1, Math.round(c.frequency_Hz / x.step_Hz)));
     return Math.hypot(x.amplitude[k]!, y.amplitude[k]!) / (half * Math.hypot(c.cosine, c.sine));
   };
   if (middleOverEnd(best) <= SWING_SHARE) return best;
+  const angle = spectrum(series.time_s, series.value);
+  if (angle === null) return best;
   const floor = median(angle.amplitude);
   const twist = candidates.find(
     (c) => apart(c) && middleOverEnd(c) < 0.3 * middleOverEnd(best) && Math.hypot(c.cosine, c.sine) > 8 * floor,

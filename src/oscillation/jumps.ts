@@ -1,4 +1,5 @@
-import { dot, orthonormalBasis, subtract } from './basis.ts';
+import { dot, subtract } from '../numerics/dot.ts';
+import { orthonormalBasis } from './basis.ts';
 import { OMEGA } from './model.ts';
 import { fitResidualNoise, noiseLevel } from './residual-noise.ts';
 import type { TwistFit } from './twist-fit.ts';
@@ -69,7 +70,7 @@ export function findJump(fit: TwistFit, twist: Float64Array, later: Float64Array
       after[i] = after[i]! + (b0 * best.q0[k]! + b1 * best.q1[k]!) * basis.q[k]![i]!;
     }
   const from = (column: Float64Array) => column.map((value, i) => (i < at ? 0 : value));
-  const spanned = orthonormalBasis([...basis.q, from(c0), from(c1)], [...basis.q.keys(), p, p + 1]).q;
+  const spanned = orthonormalBasis([from(c0), from(c1)], [0, 1], basis.q).q;
   const noise = fitResidualNoise(samples.time_s, after, spanned, fit.noise.step_s);
   const level = Math.max(noiseLevel(noise, omega / (2 * Math.PI)), 1e-300);
   // What the jump would do to a fit that does not know of it.

@@ -89,15 +89,29 @@ function addLine(
   }
 }
 
-/** The least-squares problem of a model on a series, residuals (observed less model) divided by `sigma`. */
-export function problemOf(model: Model, series: Series, sigma: number): LeastSquaresProblem {
+/** A model at given samples: residuals (observed less model) and the model's derivatives by its parameters, one column each. */
+export interface Evaluation {
+  readonly parameters: Float64Array;
+  readonly residual: Float64Array;
+  readonly jacobian: readonly Float64Array[];
+}
+
+/** The least-squares problem of a model on a series; what is `known` of it already at some parameters is not worked out again. */
+export function problemOf(model: Model, series: Series, known: Evaluation | null): LeastSquaresProblem {
   const { time_s, value } = series;
   return {
     rows: time_s.length,
     evaluate(p, residual, jacobian) {
+      if (known?.parameters.length === p.length && p.every((v, k) => v === known.parameters[k])) {
+        residual.set(known.residual);
+        known.jacobian.forEach((column, k) => {
+          for (let i = 0; i < time_s.length; i++) jacobian[k]![i] = -column[i]!;
+        });
+        return true;
+      }
       if (!evaluateModel(model, p, time_s, residual, jacobian)) return false;
-      for (let i = 0; i < time_s.length; i++) residual[i] = (value[i]! - residual[i]!) / sigma;
-      for (const column of jacobian) for (let i = 0; i < time_s.length; i++) column[i] = -column[i]! / sigma;
+      for (let i = 0; i < time_s.length; i++) residual[i] = value[i]! - residual[i]!;
+      for (const column of jacobian) for (let i = 0; i < time_s.length; i++) column[i] = -column[i]!;
       return true;
     },
   };

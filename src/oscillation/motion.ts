@@ -22,11 +22,23 @@ export const MOTION_PARAMETERS = ['omega', 'gamma', 'drag', 'share', 'skew', 'x0
 /** Largest phase step of the integration in radians; halving it moves no frequency by more than 1e-8 up to 25 degrees. */
 const LARGEST_STEP_rad = 0.3;
 
+/** A linear map of angle and rate: (x, v) -> (a x + b v, c x + d v). */
+interface Propagator {
+  readonly a: number;
+  readonly b: number;
+  readonly c: number;
+  readonly d: number;
+}
+
+/** Derivatives that are integrated: by gamma, drag, share and skew, and by the state across its own motion, which no force drives. */
+const FOLLOWED = 5;
+
 /**
  * Integrates the motion from time zero through all of `time_s` (ascending, none negative): fills `x` and, where `columns` holds seven
  * arrays, the derivatives of x by MOTION_PARAMETERS. The linear part is propagated exactly and the small rest by the classical
  * Runge-Kutta scheme (integrating factor method, Lawson 1967, SIAM J. Numer. Anal. 4, 372), so that a step may span a good part of a cycle.
- * Returns false where there is no oscillation to follow: omega <= |gamma|, or an angle beyond a half turn.
+ * Two derivatives follow from the others: the same motion may begin later, and time may be counted in units of 1 / omega.
+ * Returns false where there is no oscillation to follow: omega <= |gamma|, no motion at all, or an angle beyond a half turn.
  */
 export function integrate(
   motion: Motion,
@@ -34,51 +46,53 @@ export function integrate(
   x: Float64Array,
   columns: readonly Float64Array[] | null,
 ): boolean {
-  const { omega, gamma, drag, share, skew } = motion;
+  const { omega, gamma, drag, share, skew, x0, v0 } = motion;
   const damped2 = omega * omega - gamma * gamma;
   if (!(damped2 > 0)) return false;
   const damped = Math.sqrt(damped2);
   const omega2 = omega * omega;
-  const pairs = columns === null ? 1 : 8;
-  // Pair 0 is (x, x'); pair 1 + k its derivative by parameter k.
-  const y = new Float64Array(2 * pairs);
-  const trial = new Float64Array(2 * pairs);
-  const k1 = new Float64Array(pairs);
-  const k2 = new Float64Array(pairs);
-  const k3 = new Float64Array(pairs);
-  const k4 = new Float64Array(pairs);
-  y[0] = motion.x0;
-  y[1] = motion.v0;
-  if (pairs > 1) {
-    y[12] = 1;
-    y[15] = 1;
-  }
+  const followed = columns === null ? 0 : FOLLOWED;
+  // What the derivatives need of each stage: stiffness, resistance, and a force for each of the four that have one.
+  const stiffness = new Float64Array(4);
+  const resistance = new Float64Array(4);
+  const force = new Float64Array(4 * FOLLOWED);
 
-  /** Accelerations beyond the linear ones, for every pair. */
-  const rest = (at: Float64Array, out: Float64Array): void => {
-    const angle = at[0]!;
-    const rate = at[1]!;
-    const speed = Math.abs(rate);
+  /** Acceleration beyond the linear one at one stage of a step. */
+  const stage = (s: number, angle: number, rate: number): number => {
     const sine = Math.sin(angle);
-    const cosine = Math.cos(angle);
-    const excess = share * (sine - angle) + skew * (cosine - 1);
-    out[0] = -omega2 * excess - drag * speed * rate;
-    if (pairs === 1) return;
-    const stiffness = -omega2 * (share * (cosine - 1) - skew * sine);
-    const resistance = -2 * drag * speed;
-    for (let k = 1; k < 8; k++) out[k] = stiffness * at[2 * k]! + resistance * at[2 * k + 1]!;
-    out[1] = out[1]! - 2 * omega * (angle + excess);
-    out[2] = out[2]! - 2 * rate;
-    out[3] = out[3]! - speed * rate;
-    out[4] = out[4]! - omega2 * (sine - angle);
-    out[5] = out[5]! - omega2 * (cosine - 1);
+    // Cheaper than another cosine; a motion beyond a half turn is given up anyway.
+    const cosine = Math.sqrt(1 - sine * sine) * (Math.abs(angle) < Math.PI / 2 ? 1 : -1);
+    const magnetic = omega2 * (angle - sine);
+    const asymmetric = omega2 * (1 - cosine);
+    const resisted = -Math.abs(rate) * rate;
+    if (followed > 0) {
+      stiffness[s] = omega2 * (share * (1 - cosine) + skew * sine);
+      resistance[s] = -2 * drag * Math.abs(rate);
+      force[s * FOLLOWED] = -2 * rate;
+      force[s * FOLLOWED + 1] = resisted;
+      force[s * FOLLOWED + 2] = magnetic;
+      force[s * FOLLOWED + 3] = asymmetric;
+    }
+    return share * magnetic + skew * asymmetric + drag * resisted;
   };
 
-  // Propagators over h/2 and h of the linear part: (x, v) -> (a x + b v, c x + d v).
+  // The state (x, x' / omega) moves along this direction as time goes by; only the derivative across it has to be followed.
+  const acceleration0 = stage(0, x0, v0) - 2 * gamma * v0 - omega2 * x0;
+  const speed = Math.hypot(v0, acceleration0 / omega);
+  if (!(speed > 0)) return false;
+  const along = [v0 / speed, acceleration0 / (omega * speed)] as const;
+  const y = new Float64Array(2 * (followed + 1));
+  y[0] = x0;
+  y[1] = v0;
+  if (followed > 0) {
+    y[2 * FOLLOWED] = -along[1];
+    y[2 * FOLLOWED + 1] = along[0] * omega;
+  }
+
   let h = Number.NaN;
-  let half = { a: 1, b: 0, c: 0, d: 1 };
+  let half: Propagator = { a: 1, b: 0, c: 0, d: 1 };
   let full = half;
-  const propagator = (dt: number) => {
+  const propagator = (dt: number): Propagator => {
     const decay = Math.exp(-gamma * dt);
     const cosine = decay * Math.cos(damped * dt);
     const sine = (decay * Math.sin(damped * dt)) / damped;
@@ -86,34 +100,27 @@ export function integrate(
   };
 
   const step = (): void => {
-    rest(y, k1);
-    for (let k = 0; k < pairs; k++) {
-      const position = y[2 * k]!;
-      const rate = y[2 * k + 1]! + (h / 2) * k1[k]!;
-      trial[2 * k] = half.a * position + half.b * rate;
-      trial[2 * k + 1] = half.c * position + half.d * rate;
-    }
-    rest(trial, k2);
-    for (let k = 0; k < pairs; k++) {
-      const position = y[2 * k]!;
-      const rate = y[2 * k + 1]!;
-      trial[2 * k] = half.a * position + half.b * rate;
-      trial[2 * k + 1] = half.c * position + half.d * rate + (h / 2) * k2[k]!;
-    }
-    rest(trial, k3);
-    for (let k = 0; k < pairs; k++) {
-      const position = y[2 * k]!;
-      const rate = y[2 * k + 1]!;
-      trial[2 * k] = full.a * position + full.b * rate + h * half.b * k3[k]!;
-      trial[2 * k + 1] = full.c * position + full.d * rate + h * half.d * k3[k]!;
-    }
-    rest(trial, k4);
-    for (let k = 0; k < pairs; k++) {
-      const position = y[2 * k]!;
-      const rate = y[2 * k + 1]! + (h / 6) * k1[k]!;
-      const middle = (h / 3) * (k2[k]! + k3[k]!);
-      y[2 * k] = full.a * position + full.b * rate + half.b * middle;
-      y[2 * k + 1] = full.c * position + full.d * rate + half.d * middle + (h / 6) * k4[k]!;
+    const { a: ha, b: hb, c: hc, d: hd } = half;
+    const { a: fa, b: fb, c: fc, d: fd } = full;
+    for (let pair = 0; pair <= followed; pair++) {
+      const p = y[2 * pair]!;
+      const q = y[2 * pair + 1]!;
+      const own = pair - 1;
+      const k1 = pair === 0 ? stage(0, p, q) : stiffness[0]! * p + resistance[0]! * q + force[own]!;
+      const pushed = q + (h / 2) * k1;
+      const p2 = ha * p + hb * pushed;
+      const q2 = hc * p + hd * pushed;
+      const k2 = pair === 0 ? stage(1, p2, q2) : stiffness[1]! * p2 + resistance[1]! * q2 + force[FOLLOWED + own]!;
+      const p3 = ha * p + hb * q;
+      const q3 = hc * p + hd * q + (h / 2) * k2;
+      const k3 = pair === 0 ? stage(2, p3, q3) : stiffness[2]! * p3 + resistance[2]! * q3 + force[2 * FOLLOWED + own]!;
+      const p4 = fa * p + fb * q + h * hb * k3;
+      const q4 = fc * p + fd * q + h * hd * k3;
+      const k4 = pair === 0 ? stage(3, p4, q4) : stiffness[3]! * p4 + resistance[3]! * q4 + force[3 * FOLLOWED + own]!;
+      const late = q + (h / 6) * k1;
+      const middle = (h / 3) * (k2 + k3);
+      y[2 * pair] = fa * p + fb * late + hb * middle;
+      y[2 * pair + 1] = fc * p + fd * late + hd * middle + (h / 6) * k4;
     }
   };
 
@@ -122,16 +129,29 @@ export function integrate(
     if (interval > 0) {
       const steps = Math.ceil((omega * interval) / LARGEST_STEP_rad);
       if (!(steps < 1e6)) return false;
-      if (interval / steps !== h) {
+      // Times in floating point: even ones differ in their last digits.
+      if (!(Math.abs(interval / steps - h) < 1e-12 * h)) {
         h = interval / steps;
         half = propagator(h / 2);
-        full = propagator(h);
+        full = twice(half);
       }
       for (let s = 0; s < steps; s++) step();
       if (!(Math.abs(y[0]!) < Math.PI)) return false;
     }
     x[i] = y[0]!;
-    if (columns !== null) for (let k = 0; k < 7; k++) columns[k]![i] = y[2 * k + 2]!;
+    if (columns === null) continue;
+    const later = y[1]! / speed;
+    const across = y[2 * FOLLOWED]!;
+    const byRate = (along[1] * later + along[0] * across) / omega;
+    columns[0]![i] = (time_s[i]! * y[1]! - gamma * y[2]! - v0 * byRate) / omega;
+    for (let k = 1; k < FOLLOWED; k++) columns[k]![i] = y[2 * k]!;
+    columns[5]![i] = along[0] * later - along[1] * across;
+    columns[6]![i] = byRate;
   }
   return true;
+}
+
+/** The map done twice. */
+function twice({ a, b, c, d }: Propagator): Propagator {
+  return { a: a * a + b * c, b: (a + d) * b, c: (a + d) * c, d: d * d + b * c };
 }

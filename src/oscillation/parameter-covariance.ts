@@ -2,15 +2,14 @@ import type { LeastSquaresFit, Prior } from '../numerics/least-squares.ts';
 import { combinationCovariance, type ResidualNoise } from './residual-noise.ts';
 
 /**
- * Covariance of a fit's parameters where the residuals are correlated: C (J' R J / scale⁴ + P) C, with C the fit's inverse of
- * J'J / scale² + P, R the covariance of the residuals, P the priors' weights.
- * `fit` has residuals and derivatives divided by `scale`; rows and columns of held parameters are zero.
+ * Covariance of a fit's parameters where the residuals are correlated: C (J' R J + level² P) C, with C the fit's inverse of
+ * J'J + level P, R the covariance of the residuals, P the priors' weights. Rows and columns of held parameters are zero.
  */
 export function parameterCovariance(
   fit: LeastSquaresFit,
   noise: ResidualNoise,
   priors: readonly Prior[],
-  scale: number,
+  level: number,
 ): Float64Array {
   const size = fit.parameters.length;
   const inverse = fit.covariance!;
@@ -18,17 +17,18 @@ export function parameterCovariance(
   const weights = Array.from({ length: size }, (_, k) => {
     const column = new Float64Array(rows);
     for (let j = 0; j < size; j++) {
-      const c = inverse[k * size + j]! / scale;
+      const c = inverse[k * size + j]!;
       if (c !== 0) for (let i = 0; i < rows; i++) column[i] = column[i]! + c * fit.jacobian[j]![i]!;
     }
     return column;
   });
   const covariance = combinationCovariance(noise, weights);
   for (const { parameter, u } of priors) {
+    const weight = (level / u) ** 2;
     for (let a = 0; a < size; a++) {
       for (let b = 0; b < size; b++) {
         const at = a * size + b;
-        covariance[at] = covariance[at]! + (inverse[a * size + parameter]! * inverse[b * size + parameter]!) / (u * u);
+        covariance[at] = covariance[at]! + weight * inverse[a * size + parameter]! * inverse[b * size + parameter]!;
       }
     }
   }

@@ -1,4 +1,4 @@
-import { dot } from './basis.ts';
+import { dot } from '../numerics/dot.ts';
 
 /**
  * Residuals as an autoregressive process on the grid of frames: e[k] = sum of coefficient j times e[k - j] + innovation.

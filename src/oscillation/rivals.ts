@@ -1,4 +1,5 @@
-import { OMEGA } from './model.ts';
+import { startAmplitude } from './amplitude.ts';
+import { motionOf, OMEGA } from './model.ts';
 import { type Series, sampling } from './series.ts';
 import { startAt } from './start-values.ts';
 import type { TwistFit } from './twist-fit.ts';
@@ -44,9 +45,12 @@ export function foldedFrom(fit: TwistFit): number | null {
   const { samples } = fit;
   const rate = 1 / sampling(samples).medianInterval_s;
   const frequency = fit.parameters[OMEGA]! / (2 * Math.PI);
-  // A slow motion followed to within its noise needs no second thought.
-  const plain = startAt(samples, frequency);
-  if (frequency * 8 < rate && plain !== null && plain.sumOfSquares < 4 * fit.sumOfSquares) return null;
+  if (frequency * 8 < rate) {
+    // What a slow curve would miss of a folded motion, since the frames don't come evenly: if it misses far less there is none, and where
+    // that is next to nothing the two can't be told apart.
+    const missed = (unevenness(samples) * samples.time_s.length * startAmplitude(motionOf(fit.parameters)) ** 2) / 4;
+    if (fit.sumOfSquares < 0.1 * missed || missed < 0.2 * fit.sumOfSquares) return null;
+  }
   const here = search(samples, frequency);
   if (here === null) return null;
   for (const f of [rate - frequency, rate + frequency]) {
@@ -54,6 +58,17 @@ export function foldedFrom(fit: TwistFit): number | null {
     if (there !== null && there.sum < FAR_BETTER * here.sum) return there.frequency;
   }
   return null;
+}
+
+/** Mean square by which the phase of a motion at the frame rate jumps from frame to frame, halved; at most 1. */
+function unevenness(series: Series): number {
+  const { medianInterval_s } = sampling(series);
+  let sum = 0;
+  for (let i = 1; i < series.time_s.length; i++) {
+    const frames = (series.time_s[i]! - series.time_s[i - 1]!) / medianInterval_s;
+    sum += (2 * Math.PI * (frames - Math.round(frames))) ** 2;
+  }
+  return Math.min(1, sum / (2 * (series.time_s.length - 1)));
 }
 
 /** From this share of the frame rate on a motion folded about half of it is as likely as one that isn't (common practice). */

@@ -28,17 +28,26 @@ export function spectrum(time_s: Float64Array, value: Float64Array): Spectrum | 
   const even = resample(time_s, value, duration / size, size);
   let sum = 0;
   for (const sample of even) sum += sample;
-  const fft = new FFT(size);
+  const fft = transformOf(size);
   const out = fft.createComplexArray();
-  fft.realTransform(
-    out,
-    Array.from(even, (sample) => sample - sum / size),
-  );
+  for (let k = 0; k < size; k++) even[k] = even[k]! - sum / size;
+  fft.realTransform(out, even);
   const lines = Math.floor(n / 2);
   const re = Float64Array.from({ length: lines }, (_, k) => out[2 * k]!);
   const im = Float64Array.from({ length: lines }, (_, k) => out[2 * k + 1]!);
   const amplitude = re.map((x, k) => (2 * Math.hypot(x, im[k]!)) / size);
   return { step_Hz: 1 / duration, amplitude, re, im };
+}
+
+/** Transforms by their size: each has tables of its own, and a fit asks for the same size again and again. */
+const transforms = new Map<number, FFT>();
+
+function transformOf(size: number): FFT {
+  const known = transforms.get(size);
+  if (known !== undefined) return known;
+  const made = new FFT(size);
+  transforms.set(size, made);
+  return made;
 }
 
 function resample(time_s: Float64Array, value: Float64Array, step_s: number, size: number): Float64Array {

@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
+import { dot, subtract } from '../../src/numerics/dot.ts';
 import { seededRandom } from '../../src/numerics/random.ts';
 import { mean } from '../../src/numerics/statistics.ts';
-import { dot, orthonormalBasis, subtract } from '../../src/oscillation/basis.ts';
+import { orthonormalBasis } from '../../src/oscillation/basis.ts';
 import { combinationCovariance, fitResidualNoise, noiseLevel } from '../../src/oscillation/residual-noise.ts';
 
 const n = 900;

@@ -105,7 +105,7 @@ describe('bias where the amplitude decays', () => {
     start[SHARE] = 0;
     start[DRIFT] = 0;
     const fixed = model.fixed.map((_, k) => [SHARE, SKEW, DRAG, DRIFT].includes(k));
-    const fit = leastSquares(problemOf({ ...model, fixed, priors: [] }, series, 1), start, { fixed });
+    const fit = leastSquares(problemOf({ ...model, fixed, priors: [] }, series, null), start, { fixed });
     const damped = Math.sqrt(fit.parameters[OMEGA]! ** 2 - fit.parameters[1]! ** 2) / (2 * Math.PI);
     const truth = Math.sqrt(1 - (gamma / (2 * Math.PI)) ** 2);
     expect(Math.abs(damped / truth - 1 - bias)).toBeLessThan(3e-6);
