@@ -6,7 +6,7 @@ export default defineConfig({
     testTimeout: 120_000,
     hookTimeout: 120_000,
     // What is waited for comes within a moment here, but not on every machine.
-    expect: { poll: { timeout: 30_000 } },
+    expect: { poll: { timeout: 60_000 } },
     // Files run two at a time: the machine that has to pass this has two cores, and ffmpeg is a process of its own.
     maxWorkers: 2,
     pool: 'forks',

@@ -69,6 +69,7 @@ export const commands = [
   { id: 'segment-end', menu: 'segment', label: 'Segment ends here', accelerator: 'E', needs: ['view'] },
   { id: 'segment-previous', menu: 'segment', label: 'Previous segment', accelerator: 'PageUp', needs: ['recording'] },
   { id: 'segment-next', menu: 'segment', label: 'Next segment', accelerator: 'PageDown', needs: ['recording'] },
+  { id: 'play-segment', menu: 'segment', label: 'Play it', accelerator: 'Shift+Space', needs: ['segment'] },
   { id: 'edit-current', menu: 'segment', label: 'Type its current', accelerator: 'C', needs: ['segment'] },
   { id: 'leave-out', menu: 'segment', label: 'Leave out or take in…', accelerator: 'L', needs: ['segment'] },
   { id: 'delete-segment', menu: 'segment', label: 'Delete segment', accelerator: 'Delete', needs: ['segment'] },

@@ -14,7 +14,17 @@ import {
   zoomNow,
 } from '../state/picture-tools.ts';
 import { recording, sheet, showView, view } from '../state/selection.ts';
-import { pannedBy, rectangleOnPanel, toPicture } from './picture-zoom.ts';
+import {
+  drawnHalfLength_px,
+  elevationOf,
+  facingWithEndAt,
+  type ObliqueView,
+  ovalOf,
+  restingEnd_px,
+  type SideView,
+  sideLineY_px,
+} from './guide-places.ts';
+import { pannedBy, rectangleOnPanel, toPanel, toPicture } from './picture-zoom.ts';
 import {
   between,
   type Handle,
@@ -29,9 +39,9 @@ import {
 /** What a press on the picture takes hold of. */
 export type Grip =
   | { readonly kind: 'draw' | 'lens' | 'lens-corner' | 'picture' }
-  | { readonly kind: 'region' | 'axis' }
+  | { readonly kind: 'region' | 'axis' | 'facing' }
   | { readonly kind: 'region-handle'; readonly handle: Handle }
-  | { readonly kind: 'half-length'; readonly side: 1 | -1 };
+  | { readonly kind: 'half-length' | 'elevation'; readonly side: 1 | -1 };
 
 /** A drag that has begun; points are panel coordinates. */
 export interface Drag {
@@ -57,16 +67,31 @@ export function gripAt(at: Point, push: boolean): Grip {
     if (handleAt(lens, at, REACH_PX) === 'se') return { kind: 'lens-corner' };
     if (isInside(lens, at) && !isInside(region, at)) return { kind: 'lens' };
   }
-  if (v.kind === 'side') {
-    const axis_x = v.axis_x_px * now.scale + now.x;
-    const half = (v.half_length_px ?? v.region.width / 3) * now.scale;
-    const inside = at.y >= region.y && at.y <= region.y + region.height;
+  const guide = v.kind === 'side' ? sideGripAt(v, at) : v.kind === 'oblique' ? obliqueGripAt(v, at) : null;
+  return guide ?? (isInside(region, at) ? { kind: 'region' } : { kind: 'picture' });
+}
+
+function sideGripAt(v: SideView, at: Point): Grip | null {
+  const now = zoomNow();
+  const region = rectangleOnPanel(now, v.region);
+  const near = (x_px: number) => Math.abs(at.x - (x_px * now.scale + now.x)) <= REACH_PX;
+  const line_y = sideLineY_px(region, toPanel(now, { x: 0, y: pictureSize().height }).y);
+  if (Math.abs(at.y - line_y) <= REACH_PX) {
+    if (near(restingEnd_px(v))) return { kind: 'facing' };
     for (const side of [1, -1] as const) {
-      if (inside && Math.abs(at.x - axis_x - side * half) <= REACH_PX) return { kind: 'half-length', side };
+      if (near(v.axis_x_px + side * drawnHalfLength_px(v))) return { kind: 'half-length', side };
     }
-    if (inside && Math.abs(at.x - axis_x) <= REACH_PX) return { kind: 'axis' };
   }
-  return isInside(region, at) ? { kind: 'region' } : { kind: 'picture' };
+  return near(v.axis_x_px) && at.y >= region.y && at.y <= line_y ? { kind: 'axis' } : null;
+}
+
+function obliqueGripAt(v: ObliqueView, at: Point): Grip | null {
+  const { middle, upright_px } = ovalOf(v, pictureSize());
+  for (const side of [1, -1] as const) {
+    const handle = toPanel(zoomNow(), { x: middle.x, y: middle.y + side * upright_px });
+    if (Math.hypot(at.x - handle.x, at.y - handle.y) <= REACH_PX) return { kind: 'elevation', side };
+  }
+  return null;
 }
 
 /** Begins a drag; null where there is nothing to drag. */
@@ -83,7 +108,9 @@ export function dragFrom(grip: Grip, from: Point): Drag | null {
     case 'region':
     case 'region-handle':
     case 'axis':
+    case 'facing':
     case 'half-length':
+    case 'elevation':
       return v ? viewDrag(v, grip, from) : null;
     default:
       return grip satisfies never;
@@ -180,7 +207,9 @@ const LABELS = {
   region: 'Move the region',
   'region-handle': 'Resize the region',
   axis: 'Move the fibre line',
+  facing: 'Set the facing',
   'half-length': 'Set the half length',
+  elevation: 'Set the elevation',
 };
 
 function viewDrag(start: SessionView, grip: ViewGrip, from: Point): Drag {
@@ -207,14 +236,17 @@ export function draggedView(start: SessionView, grip: Grip, dx: number, dy: numb
   const size = pictureSize();
   if (grip.kind === 'region') return viewWithRegion(start, moved(start.region, dx, dy, size));
   if (grip.kind === 'region-handle') {
-    const region = withHandleMoved(start.region, grip.handle, dx, dy, size, SMALLEST_REGION_PX);
-    return start.kind === 'side' ? { ...start, region } : { ...start, region };
+    return { ...start, region: withHandleMoved(start.region, grip.handle, dx, dy, size, SMALLEST_REGION_PX) };
+  }
+  if (start.kind === 'oblique' && grip.kind === 'elevation') {
+    const { across_px, upright_px } = ovalOf(start, size);
+    return { ...start, elevation_deg: elevationOf(across_px, upright_px + grip.side * dy) };
   }
   if (start.kind !== 'side') return start;
+  if (grip.kind === 'facing') return { ...start, facing_deg: facingWithEndAt(start, restingEnd_px(start) + dx) };
   if (grip.kind === 'axis') return { ...start, axis_x_px: Math.round(start.axis_x_px + dx) };
   if (grip.kind === 'half-length') {
-    const before = start.half_length_px ?? start.region.width / 3;
-    return { ...start, half_length_px: Math.max(2, Math.round(before + grip.side * dx)) };
+    return { ...start, half_length_px: Math.max(2, Math.round(drawnHalfLength_px(start) + grip.side * dx)) };
   }
   return start;
 }

@@ -6,6 +6,7 @@ import { frame, recording, view } from '../state/selection.ts';
 import { BarOutline } from './bar-outline.tsx';
 import { type Drag, dragFrom, type Grip, gripAt } from './drags.ts';
 import { LensFrame } from './lens-frame.tsx';
+import { ObliqueGuide } from './oblique-guide.tsx';
 import { zoomedAbout } from './picture-zoom.ts';
 import { RegionFrame } from './region-frame.tsx';
 import { SideGuides } from './side-guides.tsx';
@@ -105,6 +106,7 @@ export function PictureStage() {
       <svg class="overlay" width={size.width} height={size.height}>
         <RegionFrame view={viewDraft.value ?? view.value} />
         <SideGuides view={viewDraft.value ?? view.value} />
+        <ObliqueGuide view={viewDraft.value ?? view.value} />
         <BarOutline />
         <LensFrame />
       </svg>
@@ -129,8 +131,11 @@ function cursorOf(grip: Grip): string {
     case 'lens-corner':
       return 'nwse-resize';
     case 'axis':
+    case 'facing':
     case 'half-length':
       return 'ew-resize';
+    case 'elevation':
+      return 'ns-resize';
     case 'picture':
       return zoom.value ? 'grab' : 'default';
     default:

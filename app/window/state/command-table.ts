@@ -12,6 +12,7 @@ import { ask, hello } from './host.ts';
 import { markStart } from './mark.ts';
 import { tell } from './notices.ts';
 import { drawing, zoomPicture } from './picture-tools.ts';
+import { playing } from './pictures.ts';
 import { playOrPause } from './player.ts';
 import { resultsState } from './results.ts';
 import {
@@ -79,6 +80,7 @@ const handlers: Readonly<Record<CommandId, () => unknown>> = {
   'segment-end': endHere,
   'segment-previous': () => selectNeighbour(-1),
   'segment-next': () => selectNeighbour(1),
+  'play-segment': playSegment,
   'edit-current': () => {
     sheet.value = 'segment';
     requestAnimationFrame(() => focusEntry('current'));
@@ -176,6 +178,14 @@ export function focusEntry(name: string): void {
 /** Zooms the board to the selected segment. */
 export function showSegment(): void {
   if (segment.value) showAround(segment.value);
+}
+
+/** Plays the selected segment from its start to its end, or stops. */
+async function playSegment(): Promise<void> {
+  const s = segment.value;
+  if (!s) return;
+  if (playing.value === null) moveCursor(s.start_s);
+  await playOrPause(s.end_s);
 }
 
 function openSheet(name: 'view' | 'segment' | 'field' | 'apparatus'): void {

@@ -1,4 +1,4 @@
-import { signal } from '@preact/signals';
+import { effect, signal } from '@preact/signals';
 import { CallError } from '../../contract/client.ts';
 import type { ExportItem, FileToken, Saved } from '../../contract.ts';
 import { tokenOfFile } from '../transport.ts';
@@ -19,21 +19,40 @@ export async function chooseAndOpen(add = false): Promise<void> {
   if (chosen) await openToken(chosen, add);
 }
 
-/** Opens files that were dropped or picked: a session first, then recordings that it misses. */
+/** Opens files that were dropped: a session first, then recordings that it misses. What the open session misses is no new session. */
 export async function openFiles(files: readonly File[]): Promise<void> {
+  const missed = (file: File) => recordings.value.some((r) => r.state === 'missing' && r.name === file.name);
+  if (files.length > 0 && files.every(missed)) return joinSession(files);
   if (files.length === 0 || !(await mayReplace())) return;
   const sessions = files.filter((f) => SESSION_NAME.test(f.name));
   const others = files.filter((f) => !SESSION_NAME.test(f.name));
   const first = sessions[0] ?? others.shift();
   if (!first) return;
   const token = await handOver(first);
-  if (!token || !(await openToken(token, false))) return;
-  for (const file of others) {
-    const missing = recordings.value.find((r) => r.state === 'missing' && r.name === file.name);
+  if (token && (await openToken(token, false))) await joinSession(others);
+}
+
+/** Gives recordings to the session that is open: those it misses find their place, others are added. */
+async function joinSession(files: readonly File[]): Promise<void> {
+  for (const file of files) {
+    await recordingsLookedFor();
+    const known = recordings.value.find((r) => r.name === file.name);
+    if (known?.state === 'ready' && known.facts?.bytes === file.size) continue;
     const next = await handOver(file);
-    if (next && missing) await locate(missing.id, next);
+    if (next && known?.state === 'missing') await locate(known.id, next);
     else if (next) await openToken(next, true);
   }
+}
+
+/** Resolves once it is known of every recording of the session whether it is where the session says. */
+function recordingsLookedFor(): Promise<void> {
+  return new Promise((resolve) => {
+    const stop = effect(() => {
+      if (recordings.value.some((r) => r.state === 'opening')) return;
+      resolve();
+      queueMicrotask(() => stop());
+    });
+  });
 }
 
 /** Opens what a token stands for. */

@@ -3,7 +3,7 @@ import type { JobProgress } from '../../contract.ts';
 import { editsSettled } from './document.ts';
 import { ask, tellFailure } from './host.ts';
 import { tell } from './notices.ts';
-import { readOverview } from './traces.ts';
+import { readOverview, traces } from './traces.ts';
 
 /** A bar being followed. */
 export interface Following {
@@ -49,10 +49,17 @@ export function takeJobEnd(job: string, error: { reason: string; message: string
   const now = following.value;
   if (now?.job !== job) return;
   following.value = null;
-  void readOverview(now.view);
+  void readOverview(now.view).then(() => {
+    if (error?.reason === 'cancelled') tell(`View ${now.view}: stopped; ${keptOf(now.view)}.`);
+  });
   if (!error) tell(`View ${now.view}: the bar has been followed.`);
-  else if (error.reason === 'cancelled') tell(`View ${now.view}: stopped; what was followed so far is kept.`);
-  else tellFailure(new Error(error.message));
+  else if (error.reason !== 'cancelled') tellFailure(new Error(error.message));
+}
+
+/** Only stretches of some 15 s that were finished are kept: the poses within one are not settled before its end. */
+function keptOf(viewId: string): string {
+  const poses = traces.value.get(viewId)?.length ?? 0;
+  return poses === 0 ? 'no stretch was finished yet' : `the ${poses} poses of finished stretches are kept`;
 }
 
 /** Takes up a job that went on while the window was being loaded anew. */

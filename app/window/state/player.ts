@@ -2,7 +2,7 @@ import type { Picture } from '../../contract.ts';
 import { revealCursor } from './board.ts';
 import { ask, host } from './host.ts';
 import { playing, showPicture, wantedWidth_px } from './pictures.ts';
-import { cursor_s, moveCursor, recording, whole_s } from './selection.ts';
+import { cursor_s, frameTimes, moveCursor, recording, whole_s } from './selection.ts';
 
 interface Run {
   readonly job: string;
@@ -20,7 +20,8 @@ export async function playOrPause(end_s = whole_s.value): Promise<void> {
   if (run) return pause();
   const r = recording.value;
   if (r?.state !== 'ready') return;
-  const start_s = cursor_s.value >= end_s - 0.05 ? 0 : cursor_s.value;
+  const last_s = frameTimes.value?.at(-1) ?? 0;
+  const start_s = cursor_s.value >= Math.min(end_s, last_s) - 1e-6 ? 0 : cursor_s.value;
   const width = Math.min(wantedWidth_px.value, 960);
   const job = await ask('play', { recording: r.id, start_s, end_s, maxWidth_px: width });
   if (!job) return;

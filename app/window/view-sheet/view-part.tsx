@@ -83,6 +83,9 @@ function ObliqueFields({ of: v, change }: { of: Extract<SessionView, { kind: 'ob
           change('Elevation', { ...v, elevation_deg: Number(event.currentTarget.value) }, 'elevation')
         }
       />
+      <p class="quiet">
+        Or drag the oval on the picture until it looks as a level circle does there, such as a round card below the bar.
+      </p>
     </>
   );
 }
@@ -136,6 +139,7 @@ function SideFields({ of: v, change }: { of: Extract<SessionView, { kind: 'side'
         value={v.facing_deg ?? 0}
         onInput={(event) => change('Facing', { ...v, facing_deg: Number(event.currentTarget.value) }, 'facing')}
       />
+      <p class="quiet">All three can be dragged on the picture as well.</p>
     </>
   );
 }

@@ -58,15 +58,54 @@ export class BenchDriver {
     return this.page.locator('.facts-list dt', { hasText: name }).locator('+ dd').innerText();
   }
 
+  /** Drops files on the window as a file manager does. */
+  async drop(...paths: string[]): Promise<void> {
+    const devtools = await this.#context.newCDPSession(this.page);
+    const data = { items: [], files: paths, dragOperationsMask: 1 };
+    const send = (type: 'dragEnter' | 'dragOver' | 'drop') =>
+      devtools.send('Input.dispatchDragEvent', { type, x: 400, y: 300, data });
+    await send('dragEnter');
+    await send('dragOver');
+    await this.page.locator('.drop-veil').waitFor();
+    await send('drop');
+    await this.page.locator('.drop-veil').waitFor({ state: 'detached' });
+    await devtools.detach();
+  }
+
   /** Waits until a frame is shown, and drags a rectangle over the picture. */
   async drawRegion(region: Region, picture: { width: number; height: number }): Promise<void> {
+    await this.framed();
+    const { x, y, width, height } = region;
+    await this.dragOnPicture([x, y], [x + width, y + height], picture);
+  }
+
+  /** Waits until a frame is on the panel. */
+  async framed(): Promise<void> {
     await this.page.locator('.picture-stage canvas[aria-label^="Frame"]').waitFor();
+  }
+
+  /** Drags over the picture, which lies whole on its panel, between two places in displayed pixels. */
+  async dragOnPicture(
+    from: readonly [number, number],
+    to: readonly [number, number],
+    picture: { width: number; height: number },
+  ): Promise<void> {
     const stage = await this.#box('.picture-stage');
     const scale = Math.min(stage.width / picture.width, stage.height / picture.height);
     const left = stage.x + (stage.width - picture.width * scale) / 2;
     const top = stage.y + (stage.height - picture.height * scale) / 2;
-    const at = (x: number, y: number) => [left + x * scale, top + y * scale] as const;
-    await this.#drag(at(region.x, region.y), at(region.x + region.width, region.y + region.height));
+    const at = ([x, y]: readonly [number, number]) => [left + x * scale, top + y * scale] as const;
+    await this.#drag(at(from), at(to));
+  }
+
+  /** Number of an entry of the open sheet. */
+  async numberIn(entry: string): Promise<number> {
+    return plainNumber(await this.entry(entry));
+  }
+
+  /** Where the cursor stands, seconds. */
+  async cursor(): Promise<number> {
+    return Number.parseFloat(await this.page.locator('.picture-tools .where b').innerText());
   }
 
   /** Waits for the sentence about the bar in the frame shown. */
