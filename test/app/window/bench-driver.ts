@@ -256,6 +256,20 @@ export class BenchDriver {
     return files;
   }
 
+  /** What the clipboard holds, pasted into a field as a user would. */
+  async pasted(): Promise<string> {
+    await this.page.evaluate(() =>
+      document.body.append(Object.assign(document.createElement('textarea'), { id: 'paste' })),
+    );
+    const field = this.page.locator('#paste');
+    await field.focus();
+    await this.page.keyboard.press('Control+v');
+    await expect.poll(() => field.inputValue()).not.toBe('');
+    const text = await field.inputValue();
+    await field.evaluate((one) => one.remove());
+    return text;
+  }
+
   /** Sentences about mistakes that are on the window. */
   async mistakes(): Promise<string[]> {
     await this.page.locator('[role=alert]').first().waitFor();

@@ -3,7 +3,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
-import type { Results, Session } from '../../../app/contract.ts';
+import type { Results, SegmentResult, Session } from '../../../app/contract.ts';
 import { BenchDriver } from './bench-driver.ts';
 import { hasChromium, startChromium } from './chromium.ts';
 import { runProgram, SAMPLE, type ServedWindow, serveWindow } from './served-window.ts';
@@ -23,6 +23,7 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', { timeou
   let truth: Truth;
   let sample: Session;
   let folder: string;
+  let exported: { csv: string; results: Results };
 
   beforeAll(async () => {
     truth = JSON.parse(await readFile(SAMPLE.truth, 'utf8'));
@@ -171,27 +172,33 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', { timeou
     expect(files.get('results.json')!.toString()).toBe(await readFile(join(folder, 'out/results.json'), 'utf8'));
     const results = JSON.parse(files.get('results.json')!.toString()) as Results;
     expect(results.segments.map((s) => s.id)).toEqual(['s01', 's02', 's03']);
+    exported = { csv: files.get('results.csv')!.toString(), results };
   });
 
-  test('the plot is exported as SVG and as PNG, the table goes to the clipboard', async () => {
+  test('the plot is exported as SVG and as PNG', async () => {
     const svg = await bench.downloads(() => bench.choose('File', 'Export plot (SVG)…'), 1);
     expect([...svg.values()][0]!.toString()).toMatch(/^<svg [\s\S]*<\/svg>\s*$/);
     const png = await bench.downloads(() => bench.choose('File', 'Export plot (PNG)…'), 1);
     expect([...png.values()][0]!.subarray(1, 4).toString()).toBe('PNG');
-    const copied = bench.page.evaluate(
-      () =>
-        new Promise<string>((done) => {
-          document.addEventListener(
-            'copy',
-            // The program's own listener comes after this one.
-            (event) => setTimeout(() => done(event.clipboardData?.getData('text/plain') ?? '')),
-            { once: true },
-          );
-        }),
-    );
+  });
+
+  test('the table that is copied holds the results of the same session, cell by cell', async () => {
     await bench.choose('Edit', 'Copy table');
     await bench.page.locator('.notice', { hasText: 'clipboard: 3 rows' }).waitFor();
-    console.log(await copied);
+    const [head = [], ...rows] = (await bench.pasted()).split('\n').map((line) => line.split('\t'));
+    expect(head).toEqual(exported.csv.split(/\r?\n/)[0]?.split(','));
+    expect(rows).toHaveLength(exported.results.segments.length);
+    for (const [i, segment] of exported.results.segments.entries()) {
+      const cells = new Map(head.map((name, column) => [name, rows[i]?.[column]]));
+      expect(cells.size).toBe(rows[i]?.length);
+      for (const name of head as (keyof SegmentResult)[]) {
+        const value = segment[name];
+        const cell = cells.get(name);
+        if (typeof value === 'number') expect(Number(cell), `${segment.id} ${name}`).toBe(value);
+        else if (Array.isArray(value)) expect(cell).toBe(value.map((check) => check.code).join(';'));
+        else expect(cell, `${segment.id} ${name}`).toBe(value ?? '');
+      }
+    }
   });
 
   test('nothing was complained about in the browser’s console, and every control has a name', async () => {
