@@ -1,7 +1,8 @@
 import { createHash } from 'node:crypto';
 import type { OpenRecording } from '../../src/measuring/open-recordings.ts';
+import type { Apparatus } from '../../src/reduction/apparatus.ts';
 import { programName } from '../../src/report/program.ts';
-import type { Apparatus, SessionSegment, SessionView } from '../../src/session/session.ts';
+import type { SessionSegment, SessionView } from '../../src/session/session.ts';
 
 /** Hash of everything that the poses of a segment depend on. */
 export function followKey(segment: SessionSegment, view: SessionView, opened: OpenRecording, ffmpeg: string): string {

@@ -1,4 +1,9 @@
-import { followSegment, type MeasuredSegment, ringDownOptions } from '../../src/measuring/measure-segment.ts';
+import {
+  apparatusOf,
+  followSegment,
+  type MeasuredSegment,
+  ringDownOptions,
+} from '../../src/measuring/measure-segment.ts';
 import { segmentResult } from '../../src/measuring/segment-result.ts';
 import type { FfmpegTools } from '../../src/recording/find-ffmpeg.ts';
 import type { Apparatus } from '../../src/reduction/apparatus.ts';
@@ -264,8 +269,8 @@ export class Measuring {
 }
 
 function wanted(task: MeasuringTask, ffmpeg: string): Wanted[] {
-  const { apparatus } = task.file.session;
   return task.inputs.inputs.map((input) => {
+    const apparatus = apparatusOf(task.file.session, input.segment);
     const follow = followKey(input.segment, input.view, input.opened, ffmpeg);
     const fit = fitKey(follow, input.view, input.opened, apparatus);
     return { ...input, apparatus, follow, fit };

@@ -4,6 +4,7 @@ import { decodeFrames } from '../recording/decode-frames.ts';
 import type { FfmpegTools } from '../recording/find-ffmpeg.ts';
 import type { DecodeAccount, Frame } from '../recording/recording.ts';
 import type { Apparatus } from '../reduction/apparatus.ts';
+import { fibreFindings, fibreSegments } from '../reduction/fibre-sources.ts';
 import { inertia } from '../reduction/inertia.ts';
 import type { SegmentResult } from '../report/results.ts';
 import type { Session, SessionSegment, SessionView } from '../session/session.ts';
@@ -39,7 +40,7 @@ export async function measureSegment(
   const view = session.views.find((v) => v.id === segment.view);
   if (!opened || !view) throw new RangeError(`segment ${segment.id}: its recording or view is not among those opened`);
   const { outcome, account } = await followSegment(segment, view, opened, kit);
-  const fit = fitTrace(outcome, ringDownOptions(view, opened), session.apparatus);
+  const fit = fitTrace(outcome, ringDownOptions(view, opened), apparatusOf(session, segment));
   return segmentResult({ segment, view, opened, outcome, account, ...fit });
 }
 
@@ -91,15 +92,23 @@ export function fitTrace(
   return { ringDown: fit.ok ? fit.ringDown : null, checks: fit.checks };
 }
 
-/** kappa / (4 pi² J f0²): the fibre's share of the restoring torque, where the rig's description gives kappa and J. */
+/**
+ * The rig as a segment has it: in one that was made to find the fibre's stiffness, with another body or another length of fibre,
+ * what the session says of the fibre in the sweep doesn't hold.
+ */
+export function apparatusOf({ apparatus }: Session, { id }: SessionSegment): Apparatus | undefined {
+  if (!fibreSegments(apparatus).has(id)) return apparatus;
+  const { fibre: _otherwise, ...rest } = apparatus ?? {};
+  return rest;
+}
+
+/** kappa / (4 pi² J f0²): the fibre's share of the restoring torque, where the rig's description alone gives kappa and J. */
 function fibreShare(f0_Hz: number, apparatus: Apparatus | undefined): { value: number; u: number } | null {
-  const fibre = apparatus?.fibre;
   const J = apparatus?.magnet ? inertia(apparatus.magnet) : null;
-  if (!fibre || !J) return null;
-  const value = fibre.stiffness_N_m_per_rad / (4 * Math.PI ** 2 * J.value * f0_Hz ** 2);
-  const relative = Math.hypot((fibre.u_stiffness_N_m_per_rad ?? 0) / (fibre.stiffness_N_m_per_rad || 1), J.u / J.value);
+  const part = J && fibreFindings(apparatus, [], J).part;
+  if (!part) return null;
   // The field may still be pulled off the fibre's rest direction, which a share alone doesn't tell: never quite certain.
-  return { value, u: Math.max(0.005, value * relative) };
+  return { value: part.value / f0_Hz ** 2, u: Math.max(0.005, part.u / f0_Hz ** 2) };
 }
 
 /** What the fit is told of a view and its recording. */

@@ -16,6 +16,7 @@ export function pointOf(row: SegmentResult): Point {
     sweep: row.sweep,
     status: row.status,
     f0_Hz: estimate(row.f0_Hz, row.u_f0_Hz, row.dof_f0, 1),
+    torsion_Hz: estimate(undamped(row.fd_Hz, row.gamma_per_s), row.u_fd_Hz, row.dof_f0, 1),
     // Rest directions of views that the file doesn't describe have no zero in common.
     equilibrium_rad:
       row.view_kind === null ? null : estimate(row.equilibrium_deg, row.u_equilibrium_deg, row.dof_f0, RAD),
@@ -23,6 +24,11 @@ export function pointOf(row: SegmentResult): Point {
     viewFrame: `${row.recording} ${row.view_kind}`,
     ...(row.left_out !== null && { leftOut: row.left_out }),
   };
+}
+
+/** f0 from the observed frequency and the damping: f0² = fd² + (γ/2π)². */
+function undamped(fd_Hz: number | null, gamma_per_s: number | null): number | null {
+  return fd_Hz === null || gamma_per_s === null ? null : Math.hypot(fd_Hz, gamma_per_s / (2 * Math.PI));
 }
 
 function estimate(value: number | null, u: number | null, dof: number | null, unit: number): Estimate | null {

@@ -64,11 +64,30 @@ export interface KnownInertia {
   readonly u_length_m?: number | undefined;
 }
 
-/** The fibre’s stiffness where it is known from elsewhere; 0 for one that has none worth mention. */
+/** What is known of the fibre: its stiffness (0 for one that has none worth mention), or runs that tell it. */
 export interface Fibre {
-  readonly stiffness_N_m_per_rad: number;
+  readonly stiffness_N_m_per_rad?: number | undefined;
   readonly u_stiffness_N_m_per_rad?: number | undefined;
+  /** From the clamp to the bar, in the sweep; needed with `runs_at_lengths`. */
+  readonly length_m?: number | undefined;
+  readonly u_length_m?: number | undefined;
+  readonly run_without_field?: RunWithoutField | undefined;
+  readonly runs_at_lengths?: readonly RunAtLength[] | undefined;
 }
+
+/** A frequency as typed (undamped, at small amplitude), or the id of the segment that shows it. */
+export type RunFrequency =
+  | { readonly f0_Hz: number; readonly u_f0_Hz?: number | undefined }
+  | { readonly segment: string };
+
+/** The fibre alone turns a body back: another one that is not magnetic, or (left out) the magnet itself where coils cancel the field. */
+export type RunWithoutField = RunFrequency & { readonly body?: Body | undefined };
+
+/** The magnet in one and the same field on this fibre cut, or clamped, to some length. */
+export type RunAtLength = RunFrequency & { readonly length_m: number; readonly u_length_m?: number | undefined };
+
+/** A body that is not magnetic, whose moment of inertia about the fibre is known. */
+export type Body = Cylinder | Bar | Omit<KnownInertia, 'length_m' | 'u_length_m'>;
 
 /** The current meter: what all steps have in common, and its last digit. */
 export interface Meter {

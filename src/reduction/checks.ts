@@ -45,7 +45,9 @@ export function checksOf(findings: Findings): Check[] {
 
 /** Rows that stand for something a user types, and would know the uncertainty of. */
 function typed(row: string): boolean {
-  return /radius|spacing|mass|length|diameter|width|inertia|coil constant|stiffness|meter’s scale/.test(row);
+  return /radius|spacing|mass|length|diameter|width|inertia|coil constant|stiffness|without field|meter’s scale/.test(
+    row,
+  );
 }
 
 function missing({ selection, choice, context, data }: Findings): Check[] {
@@ -55,7 +57,6 @@ function missing({ selection, choice, context, data }: Findings): Check[] {
   else if (choice === null) checks.push(say.noFit());
   if (context.coil === null) checks.push(say.noCoil());
   if (context.inertia === null) checks.push(say.noMagnet());
-  if (context.stiffness !== null && context.inertia === null) checks.push(say.stiffnessNeedsInertia());
   if (choice !== null && selection.doubtfulUsed) {
     checks.push(say.doubtfulUsed(selection.used.filter(({ status }) => status === 'doubtful').map(({ id }) => id)));
   }
@@ -123,26 +124,18 @@ function sidesDiffer(data: Observations, one: number | null, other: number | nul
   return data.ids.filter((_, i) => side(one, i) !== side(other, i));
 }
 
-/** Where the data separate the fibre by themselves, a typed stiffness can be held against them. */
-function givenAgainstFound(chosen: ModelChoice['chosen'], context: SourceContext): Check | null {
-  if (chosen.fibre !== 'given' || context.stiffness === null || context.inertia === null) return null;
+/** Where the data separate the fibre by themselves, what is known beforehand can be held against them. */
+function givenAgainstFound(chosen: ModelChoice['chosen'], { fibre }: SourceContext): Check | null {
+  if (chosen.fibre !== 'given' || fibre === null || chosen.reversal_A === null) return null;
   const model = {
     ...chosen.fit.model,
     priors: chosen.fit.model.priors.filter(({ parameter }) => parameter !== at.fibre),
   };
-  if (chosen.reversal_A === null) return null;
   const free = fitSweep(chosen.data, model, chosen.fit.parameters);
   if (free === null) return null;
-  const factor = 4 * Math.PI ** 2 * context.inertia.value;
-  const found = free.parameters[at.fibre]! * factor;
-  const u = Math.hypot(
-    Math.sqrt(free.covariance[at.fibre * free.parameters.length + at.fibre]!) * factor,
-    context.stiffness.u,
-    found * (context.inertia.u / context.inertia.value),
-  );
-  return Math.abs(found - context.stiffness.value) > 3 * u
-    ? say.fibreDisagrees(found, context.stiffness.value, u)
-    : null;
+  const found = free.parameters[at.fibre]!;
+  const u = Math.hypot(Math.sqrt(free.covariance[at.fibre * free.parameters.length + at.fibre]!), fibre.u);
+  return Math.abs(found - fibre.value) > 3 * u ? say.fibreDisagrees(found, fibre.value, u) : null;
 }
 
 /** Does the answer hang on one step? */

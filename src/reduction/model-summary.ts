@@ -10,14 +10,14 @@ export function turnOf({ proposal, reversal_A }: ScaledCandidate): Model['turn']
   return proposal.turn === 'free' ? 'set back' : proposal.turn;
 }
 
-/** The chosen model and what it was chosen from, best first. */
-export function modelOf({ chosen, candidates }: ModelChoice): Model {
+/** The chosen model and what it was chosen from, best first; `fibreKnownFrom` names the sources of a known stiffness. */
+export function modelOf({ chosen, candidates }: ModelChoice, fibreKnownFrom: string): Model {
   const turn = turnOf(chosen);
   return {
     kind: chosen.proposal.kind,
     fibre: chosen.fibre,
     turn,
-    sentence: modelSentence(chosen.proposal.kind, chosen.fibre, turn),
+    sentence: modelSentence(chosen.proposal.kind, chosen.fibre, turn, fibreKnownFrom),
     candidates: [...candidates]
       .sort((a, b) => a.criterion - b.criterion)
       .map((candidate) => summary(candidate, candidate === chosen)),

@@ -60,7 +60,7 @@ function near(name: ResultName, value: number, base: number): number {
 }
 
 function drawInputs(context: SourceContext, gaussian: () => number): ResultInputs | null {
-  const { inputs, coil, inertia, candidate, meter, stiffness } = context;
+  const { inputs, coil, inertia, candidate, meter, fibre } = context;
   const drawn = new Map<string, number>();
   const draw = (derived: Derived) =>
     derived.of(
@@ -80,12 +80,10 @@ function drawInputs(context: SourceContext, gaussian: () => number): ResultInput
   const scale = 1 + (meter?.u_gain ?? 0) * gaussian();
   const zero = (meter?.u_zero_A ?? 0) * gaussian();
   const bend = fit.model.fixed.across ? acrossShifts(fit, data.current_A, u_misalignment_rad * gaussian()) : null;
-  const typed = stiffness === null ? 0 : stiffness.value + stiffness.u * gaussian();
+  const known = fibre === null ? null : draw(fibre) + fibre.byClock * (clock - 1);
   const priors = fit.model.priors.map((prior) => {
-    if (prior.parameter !== at.fibre || candidate.fibre !== 'given' || j === null) {
-      return { ...prior, value: prior.value + prior.u * gaussian() };
-    }
-    return { ...prior, value: typed / (4 * Math.PI ** 2 * j) };
+    const value = prior.parameter === at.fibre && candidate.fibre === 'given' ? known : null;
+    return { ...prior, value: value ?? prior.value + prior.u * gaussian() };
   });
   const moved = {
     ...data,

@@ -44,7 +44,7 @@ export function observe(points: readonly UsablePoint[], meter?: Meter): Observat
     current_A: column((point) => point.current_A),
     u_current_A: column((point) => Math.hypot(point.u_current_A, (meter?.resolution_A ?? 0) / Math.sqrt(12))),
     y: column((point) => point.f0_Hz.value ** 2),
-    u_y: Float64Array.from({ length: n }, (_, i) => ownUncertainty(points[i]!, clock[i]!)),
+    u_y: Float64Array.from({ length: n }, (_, i) => ownSquareUncertainty(points[i]!, clock[i]!)),
     dof_y: column((point) => point.f0_Hz.dof),
     u_clock: clock,
     angle: column((point) => point.equilibrium_rad?.value ?? 0),
@@ -56,10 +56,16 @@ export function observe(points: readonly UsablePoint[], meter?: Meter): Observat
   };
 }
 
-/** u of f0² without the clock; at least a tenth of the whole, since the two can't be told apart better than that. */
-function ownUncertainty({ f0_Hz }: UsablePoint, clock: number): number {
-  const own = Math.sqrt(Math.max(f0_Hz.u ** 2 - (clock * f0_Hz.value) ** 2, (0.1 * f0_Hz.u) ** 2));
-  return Math.max(2 * f0_Hz.value * own, leastShare * f0_Hz.value ** 2);
+/**
+ * u of a frequency without what the clock (its relative u) has in common; at least a tenth of the whole, since the two can't be
+ * told apart better than that.
+ */
+export function ownUncertainty(f0_Hz: { readonly value: number; readonly u: number }, clock = usualClock): number {
+  return Math.sqrt(Math.max(f0_Hz.u ** 2 - (clock * f0_Hz.value) ** 2, (0.1 * f0_Hz.u) ** 2));
+}
+
+function ownSquareUncertainty({ f0_Hz }: UsablePoint, clock: number): number {
+  return Math.max(2 * f0_Hz.value * ownUncertainty(f0_Hz, clock), leastShare * f0_Hz.value ** 2);
 }
 
 /** Names of the zeros of direction that at least two different currents share: one alone says nothing. */

@@ -1,19 +1,29 @@
 import { chiSquareProbability } from '../numerics/distributions.ts';
 import type { Check } from '../oscillation/ring-down.ts';
 import { budgetOf, correlationOf, uncertaintyOf } from './budget.ts';
-import type { KnownFibre, ScaledCandidate } from './candidates.ts';
+import type { ScaledCandidate } from './candidates.ts';
 import { checksOf } from './checks.ts';
 import { chooseModel, type ModelChoice, rivals } from './choose-model.ts';
 import { coilConstant } from './coil-constant.ts';
 import { curveOf } from './curve.ts';
 import { expectedField, u_modelHorizontal_T } from './expected-field.ts';
+import { knownFrom } from './fibre-sentences.ts';
+import { fibreFindings, fibreSegments } from './fibre-sources.ts';
 import { fittedPoints } from './fitted-points.ts';
 import { inertia as inertiaOf } from './inertia.ts';
 import { leaveOneOut } from './leave-one-out.ts';
 import { modelOf } from './model-summary.ts';
 import { monteCarlo } from './monte-carlo.ts';
 import { observe } from './observations.ts';
-import type { Budget, FitSummary, Reduction, ReductionInput, ResultName } from './reduction.ts';
+import type {
+  Budget,
+  FibreOrigin,
+  FibreSource,
+  FitSummary,
+  Reduction,
+  ReductionInput,
+  ResultName,
+} from './reduction.ts';
 import { type ResultInputs, type ResultValues, resultNames, results } from './results.ts';
 import { noModelField } from './sentences.ts';
 import { rivalSources, type Source, type SourceContext, sources } from './sources.ts';
@@ -27,14 +37,12 @@ import { distinctCurrents, selectPoints } from './used-points.ts';
  */
 export function reduce(input: ReductionInput): Reduction {
   const { apparatus, place } = input;
-  const selection = selectPoints(input.points);
+  const selection = selectPoints(input.points, fibreSegments(apparatus));
   const data = observe(selection.used, apparatus?.meter);
   const coil = apparatus?.coil === undefined ? null : coilConstant(apparatus.coil, apparatus.magnet);
   const inertia = apparatus?.magnet === undefined ? null : inertiaOf(apparatus.magnet);
-  const fibre = apparatus?.fibre;
-  const stiffness =
-    fibre === undefined ? null : { value: fibre.stiffness_N_m_per_rad, u: fibre.u_stiffness_N_m_per_rad ?? 0 };
-  const choice = distinctCurrents(selection.used) < 2 ? null : chooseModel(data, knownFibre(stiffness, inertia?.value));
+  const fibre = fibreFindings(apparatus, input.points, inertia);
+  const choice = distinctCurrents(selection.used) < 2 ? null : chooseModel(data, fibre.part);
   const candidate = choice?.chosen ?? null;
   const context: SourceContext = {
     inputs: resultInputs(candidate, coil?.value ?? null, inertia?.value ?? null),
@@ -42,7 +50,7 @@ export function reduce(input: ReductionInput): Reduction {
     coil,
     inertia,
     meter: apparatus?.meter,
-    stiffness,
+    fibre: fibre.part,
   };
   const values = results(context.inputs);
   const from = [...sources(context), ...rivalSources(context, values, choice === null ? [] : rivals(choice))];
@@ -51,11 +59,13 @@ export function reduce(input: ReductionInput): Reduction {
   const expectedChecks: Check[] =
     expected !== null && !expected.ok ? [noModelField(expected.reason, place?.date ?? '')] : [];
   const details = {
+    fibre_sources: fibre.sources,
+    fibre_lengths: fibre.lengths,
     points: fittedPoints(input.points, data, candidate, apparatus?.meter),
     leave_one_out: candidate === null ? [] : leaveOneOut(candidate, context.inputs, values, u),
     sweeps: candidate === null ? null : compareSweeps(selection.used, candidate, coil?.value ?? null),
     repeats: candidate === null ? [] : repeatedCurrents(candidate),
-    model: choice === null ? null : modelOf(choice),
+    model: choice === null ? null : modelOf(choice, knownFrom(usedOrigins(fibre.sources))),
     expected_field:
       expected?.ok !== true
         ? null
@@ -70,7 +80,11 @@ export function reduce(input: ReductionInput): Reduction {
     ...withUncertainties(values, from),
     points_used: candidate === null ? [] : selection.used.map(({ id }) => id),
     points_left_out: selection.leftOut,
-    checks: [...checksOf({ selection, data, choice, context, values, sources: from, ...details }), ...expectedChecks],
+    checks: [
+      ...checksOf({ selection, data, choice, context, values, sources: from, ...details }),
+      ...fibre.checks,
+      ...expectedChecks,
+    ],
     fit: candidate === null ? null : fitSummary(candidate, choice),
     ...details,
     budget: budgets(values, from),
@@ -83,11 +97,9 @@ export function reduce(input: ReductionInput): Reduction {
   };
 }
 
-/** The fibre's part of f0² from its stiffness; its own uncertainty only, the inertia's is common with other things. */
-function knownFibre(stiffness: { value: number; u: number } | null, inertia: number | undefined): KnownFibre | null {
-  if (stiffness === null || inertia === undefined) return null;
-  const four = 4 * Math.PI ** 2 * inertia;
-  return { value: stiffness.value / four, u: stiffness.u / four };
+/** Where the stiffness that was used is known from. */
+function usedOrigins(sources: readonly FibreSource[]): FibreOrigin[] {
+  return sources.filter(({ weight }) => weight > 0).map(({ origin }) => origin);
 }
 
 function resultInputs(candidate: ScaledCandidate | null, coil: number | null, inertia: number | null): ResultInputs {

@@ -12,6 +12,8 @@ export interface Point {
   readonly sweep: 'rising' | 'falling' | null;
   readonly status: 'measured' | 'doubtful' | 'unmeasured';
   readonly f0_Hz: Estimate | null;
+  /** Undamped frequency with no allowance for the amplitude: that of a bar which the fibre alone turns back. */
+  readonly torsion_Hz?: Estimate | null | undefined;
   /** Relative standard uncertainty of the clock, contained in `f0_Hz.u` and common to all points (default 2e-5). */
   readonly u_time_scale?: number;
   /** Rest direction in the horizontal plane, anticlockwise from above; null where unknown. Only differences within one `viewFrame` mean anything. */
@@ -75,6 +77,10 @@ export interface ReductionDetails {
   readonly fit: FitSummary | null;
   /** One row for every point with a current and a frequency, used or not, in the order given. */
   readonly points: readonly FittedPoint[];
+  /** What was known of the fibre beforehand; empty: nothing. */
+  readonly fibre_sources: readonly FibreSource[];
+  /** The line through the runs at several fibre lengths; null: none. */
+  readonly fibre_lengths: FibreLengths | null;
   readonly leave_one_out: readonly LeaveOneOut[];
   readonly sweeps: SweepComparison | null;
   readonly repeats: readonly RepeatedCurrent[];
@@ -85,6 +91,42 @@ export interface ReductionDetails {
   readonly monte_carlo: MonteCarlo | null;
   readonly expected_field: ExpectedField | null;
   readonly curve: Curve | null;
+}
+
+/** How the fibre's stiffness is known: as typed, from a run that no field turns, from the magnet on several lengths of fibre. */
+export type FibreOrigin = 'typed' | 'run without field' | 'runs at lengths';
+
+/** One way in which the fibre's stiffness is known; `weight`: its share where several are combined, 0 where it is not used. */
+export interface FibreSource {
+  readonly origin: FibreOrigin;
+  /** Segments it was measured in. */
+  readonly segments: readonly string[];
+  /** The fibre's part of f0². */
+  readonly fibre_Hz2: number;
+  readonly u_fibre_Hz2: number;
+  /** null without the magnet's inertia. */
+  readonly stiffness_N_m_per_rad: number | null;
+  readonly u_stiffness_N_m_per_rad: number | null;
+  readonly weight: number;
+}
+
+/** f0² = magnetic part + slope / length, through the runs at several fibre lengths. */
+export interface FibreLengths {
+  readonly magnetic_Hz2: number;
+  readonly u_magnetic_Hz2: number;
+  readonly slope_Hz2_m: number;
+  readonly u_slope_Hz2_m: number;
+  /** Standard deviation of f0² about the line; null for two lengths. */
+  readonly scatter_Hz2: number | null;
+  readonly runs: readonly {
+    readonly length_m: number;
+    readonly u_length_m: number;
+    readonly f0_Hz: number;
+    readonly u_f0_Hz: number;
+    readonly segment: string | null;
+    readonly fitted_f0_squared_Hz2: number;
+    readonly residual_Hz2: number;
+  }[];
 }
 
 /** A point that did not enter the fit, and why. */

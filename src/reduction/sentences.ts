@@ -49,13 +49,6 @@ export function noMagnet(): Check {
   return check('no_magnet', 'fault', message);
 }
 
-/** The fibre's stiffness was typed but can't be used without the inertia. */
-export function stiffnessNeedsInertia(): Check {
-  const message =
-    'The fibre’s stiffness is given but not used: its share of the frequency follows only with the magnet’s moment of inertia.';
-  return check('stiffness_needs_inertia', 'doubt', message);
-}
-
 /** Doubtful segments had to be used. */
 export function doubtfulUsed(ids: readonly string[]): Check {
   const message = `Doubtful segments (${list(ids)}) had to be used, since fewer than two currents were measured without doubt.`;
@@ -131,9 +124,9 @@ export function fibreNotSeparated(ambient_T: number | null): Check {
   return check('fibre_not_separated', 'note', message);
 }
 
-/** A typed stiffness against that of the data, N m/rad. */
+/** The fibre's part of f0² as known beforehand against that of the sweep itself, Hz². */
 export function fibreDisagrees(found: number, given: number, u: number): Check {
-  const message = `The stiffness given for the fibre (${given.toExponential(3)} N m/rad) and that in the frequencies (${found.toExponential(3)} N m/rad) differ by ${short(Math.abs(found - given) / u)} standard uncertainties.`;
+  const message = `The stiffness known for the fibre and that in the frequencies of the sweep differ by ${short(Math.abs(found - given) / u)} standard uncertainties (parts of f0²: ${short(given, 3)} Hz² and ${short(found, 3)} Hz²).`;
   return check('fibre_disagrees', 'doubt', message);
 }
 
@@ -218,7 +211,12 @@ export function noModelField(reason: 'date' | 'place', date: string): Check {
 }
 
 /** Why the chosen model, for people. */
-export function modelSentence(kind: ModelKind, fibre: Model['fibre'], turn: Model['turn']): string {
+export function modelSentence(
+  kind: ModelKind,
+  fibre: Model['fibre'],
+  turn: Model['turn'],
+  fibreKnownFrom: string,
+): string {
   const shape = {
     line: 'One straight line of f0² against current, with uncertainties in both: all points lie on one side of the reversal, and frequencies show no bend.',
     'two branches':
@@ -230,7 +228,7 @@ export function modelSentence(kind: ModelKind, fibre: Model['fibre'], turn: Mode
   }[kind];
   const share = {
     separated: 'The data separate the fibre’s stiffness from the field.',
-    given: 'The fibre’s stiffness is given.',
+    given: `The fibre’s stiffness is known from ${fibreKnownFrom}.`,
     assumed: 'The fibre’s stiffness can’t be separated from the field; none is assumed, with an uncertainty for it.',
   }[fibre];
   const followed = {

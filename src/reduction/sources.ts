@@ -3,6 +3,7 @@ import type { Meter } from './apparatus.ts';
 import { u_fibreShare, u_misalignment_rad, u_twist_rad } from './assumptions.ts';
 import type { ScaledCandidate } from './candidates.ts';
 import type { CoilConstant } from './coil-constant.ts';
+import type { FibrePart } from './fibre-sources.ts';
 import type { ResultName } from './reduction.ts';
 import { type ResultInputs, type ResultValues, resultNames, results } from './results.ts';
 import type { Derived } from './sensitivity.ts';
@@ -30,8 +31,8 @@ export interface SourceContext {
   readonly coil: CoilConstant | null;
   readonly inertia: Derived | null;
   readonly meter: Meter | undefined;
-  /** Stiffness typed in the apparatus, N m/rad; null: none. */
-  readonly stiffness: { readonly value: number; readonly u: number } | null;
+  /** The fibre's part of f0² as known beforehand; null: not known. */
+  readonly fibre: FibrePart | null;
 }
 
 /**
@@ -185,9 +186,10 @@ function fitSources(context: SourceContext, candidate: ScaledCandidate, gradient
       unit: '1',
       dof: Number.POSITIVE_INFINITY,
       pool: null,
+      // A stiffness found with the same clock moves with it too.
       sensitivity: through(
         gradient,
-        sum(gain.y, (i) => 2 * data.y[i]!),
+        (k) => sum(gain.y, (i) => 2 * data.y[i]!)(k) + fibreGain(candidate)(k) * (context.fibre?.byClock ?? 0),
       ),
     },
     {
@@ -215,10 +217,16 @@ function fitSources(context: SourceContext, candidate: ScaledCandidate, gradient
       ),
     },
   ];
-  return [...many, ...common, ...priorSources(context, candidate, gradient), ...unseenAcross(candidate, gradient)];
+  return [...many, ...common, ...priorSources(candidate, gradient), ...unseenAcross(candidate, gradient)];
 }
 
-function priorSources(context: SourceContext, candidate: ScaledCandidate, gradient: Gradients): Source[] {
+/** Change of each parameter per change of the fibre's part as known beforehand; 0 where it is not known. */
+function fibreGain({ fibre, fit }: ScaledCandidate): (parameter: number) => number {
+  const prior = fibre === 'given' ? fit.model.priors.findIndex(({ parameter }) => parameter === at.fibre) : -1;
+  return (k) => (prior < 0 ? 0 : fit.gain.prior[k]![prior]!);
+}
+
+function priorSources(candidate: ScaledCandidate, gradient: Gradients): Source[] {
   const { fit, fibre } = candidate;
   const p = fit.parameters;
   const dof = Number.POSITIVE_INFINITY;
@@ -248,10 +256,6 @@ function priorSources(context: SourceContext, candidate: ScaledCandidate, gradie
         pool,
         sensitivity: by(torque),
       });
-    } else if (context.stiffness !== null && context.inertia !== null) {
-      const { value, u } = context.stiffness;
-      const perStiffness = 1 / (4 * Math.PI ** 2 * context.inertia.value);
-      out.push({ row: 'fibre stiffness', value, u, unit: 'N m/rad', dof, pool, sensitivity: by(perStiffness) });
     }
   });
   // Neither share nor untwisted direction is known: their product turns the rest directions, and is no first-order effect of either.
@@ -295,8 +299,8 @@ function unseenAcross(candidate: ScaledCandidate, gradient: Gradients): Source[]
   ];
 }
 
-/** Dimensions of coil and bar; one that enters both (the bar's length) is one source. */
-function dimensionSources({ inputs, coil, inertia, candidate }: SourceContext, gradient: Gradients): Source[] {
+/** Inputs of coil, bar and fibre; one that enters several (the bar's length) is one source. */
+function dimensionSources({ inputs, coil, inertia, fibre, candidate }: SourceContext, gradient: Gradients): Source[] {
   const byName = new Map<string, Source>();
   const add = (source: Source) => {
     const other = byName.get(source.row);
@@ -318,17 +322,16 @@ function dimensionSources({ inputs, coil, inertia, candidate }: SourceContext, g
       sensitivity: plus({}, gradient.felt, inputs.felt_T_per_A ?? 0),
     });
   }
-  const given = candidate?.fibre === 'given' ? candidate : null;
-  const prior = given === null ? -1 : given.fit.model.priors.findIndex(({ parameter }) => parameter === at.fibre);
   for (const row of inertia?.rows ?? []) {
-    let sensitivity = plus({}, gradient.inertia, row.sensitivity);
-    if (given !== null && prior >= 0 && inertia !== null) {
-      // A typed stiffness becomes a part of f0² through the inertia.
-      const perInertia = -given.fit.model.priors[prior]!.value / inertia.value;
-      const shift = (k: number) => given.fit.gain.prior[k]![prior]! * perInertia * row.sensitivity;
-      sensitivity = joined(sensitivity, through(gradient, shift));
-    }
-    add({ row: row.name, value: row.value, u: row.u, unit: row.unit, dof: row.dof, pool: null, sensitivity });
+    const { name, value, u, unit, dof, sensitivity } = row;
+    add({ row: name, value, u, unit, dof, pool: null, sensitivity: plus({}, gradient.inertia, sensitivity) });
+  }
+  // What is known of the fibre may hold the bar's dimensions as well.
+  const gain = candidate?.fibre === 'given' ? fibreGain(candidate) : null;
+  for (const row of gain === null ? [] : (fibre?.rows ?? [])) {
+    const { name, value, u, unit, dof } = row;
+    const sensitivity = through(gradient, (k) => gain!(k) * row.sensitivity);
+    add({ row: name, value, u, unit, dof, pool: null, sensitivity });
   }
   return [...byName.values()];
 }

@@ -30,19 +30,21 @@ export function isUsable(point: Point): point is UsablePoint {
 
 /**
  * Chooses the points: measured ones with a current. Doubtful ones stay out (they are shown against the fit) unless fewer
- * than two currents would be left without them.
+ * than two currents would be left without them. Those in `fibreRuns` tell the fibre's stiffness and are no steps.
  */
-export function selectPoints(points: readonly Point[]): PointSelection {
-  const candidates = points.filter(isUsable).filter((point) => point.leftOut === undefined);
+export function selectPoints(points: readonly Point[], fibreRuns: ReadonlySet<string> = new Set()): PointSelection {
+  const candidates = points.filter(isUsable).filter(({ leftOut, id }) => leftOut === undefined && !fibreRuns.has(id));
   const sure = candidates.filter((point) => point.status === 'measured');
   const doubtfulUsed = distinctCurrents(sure) < 2 && candidates.length > sure.length;
   const used = (doubtfulUsed ? candidates : sure).filter((point) => point.status !== 'unmeasured');
   const kept = new Set(used.map((point) => point.id));
   const leftOut = points
     .filter((point) => !kept.has(point.id))
-    .map((point) => ({ id: point.id, reason: reason(point) }));
+    .map((point) => ({ id: point.id, reason: fibreRuns.has(point.id) ? fibreRun : reason(point) }));
   return { used, leftOut, doubtfulUsed };
 }
+
+const fibreRun = 'made to find the fibre’s stiffness, no step of the sweep';
 
 /** Number of different currents. */
 export function distinctCurrents(points: readonly { readonly current_A: number }[]): number {

@@ -167,6 +167,37 @@ const expectedField = z.object({
   measured_less_expected_share: maybe,
 });
 
+const fibreSource = z.object({
+  origin: z.enum(['typed', 'run without field', 'runs at lengths']),
+  segments: z.array(name).max(1000),
+  fibre_Hz2: value,
+  u_fibre_Hz2: value,
+  stiffness_N_m_per_rad: maybe,
+  u_stiffness_N_m_per_rad: maybe,
+  weight: value,
+});
+
+const fibreLengths = z.object({
+  magnetic_Hz2: value,
+  u_magnetic_Hz2: value,
+  slope_Hz2_m: value,
+  u_slope_Hz2_m: value,
+  scatter_Hz2: maybe,
+  runs: z
+    .array(
+      z.object({
+        length_m: value,
+        u_length_m: value,
+        f0_Hz: value,
+        u_f0_Hz: value,
+        segment: name.nullable(),
+        fitted_f0_squared_Hz2: value,
+        residual_Hz2: value,
+      }),
+    )
+    .max(1000),
+});
+
 const column = z.array(value).max(100_000);
 const curve = z.object({
   current_A: column,
@@ -187,6 +218,8 @@ export const reductionSchema = z.object({
   model: model.nullable().default(null),
   fit: fit.nullable().default(null),
   points: z.array(point).max(10_000).default([]),
+  fibre_sources: z.array(fibreSource).max(10).default([]),
+  fibre_lengths: fibreLengths.nullable().default(null),
   leave_one_out: z.array(leaveOneOut).max(10_000).default([]),
   sweeps: sweeps.nullable().default(null),
   repeats: z.array(repeat).max(10_000).default([]),

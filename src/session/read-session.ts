@@ -52,6 +52,7 @@ export function parseSession(text: string, name: string): Session {
   if (!result.success) throw new InputError(`${name}: ${firstIssue(result.error, value)}`);
   checkNames(result.data, name);
   checkTimes(result.data, name);
+  checkFibre(result.data, name);
   return result.data;
 }
 
@@ -122,6 +123,33 @@ function checkTimes(session: Session, name: string): void {
         );
       }
     }
+  }
+}
+
+function checkFibre(session: Session, name: string): void {
+  const fibre = session.apparatus?.fibre;
+  if (!fibre) return;
+  const where = `${name}: apparatus.fibre`;
+  const ids = new Set(session.segments.map((s) => s.id));
+  const runs = [
+    ...(fibre.run_without_field ? [['run_without_field', fibre.run_without_field] as const] : []),
+    ...(fibre.runs_at_lengths ?? []).map((run, i) => [`runs_at_lengths[${i}]`, run] as const),
+  ];
+  const seen = new Set<string>();
+  for (const [key, run] of runs) {
+    if (!('segment' in run)) continue;
+    if (!ids.has(run.segment)) {
+      throw new InputError(`${where}.${key}.segment: there is no segment with the id "${run.segment}".`);
+    }
+    if (seen.has(run.segment)) {
+      throw new InputError(
+        `${where}.${key}.segment: segment ${run.segment} stands for two runs; each must have its own.`,
+      );
+    }
+    seen.add(run.segment);
+  }
+  if (fibre.runs_at_lengths !== undefined && fibre.length_m === undefined) {
+    throw new InputError(`${where}.length_m must be a number above 0 where runs_at_lengths is given; it is missing.`);
   }
 }
 

@@ -70,9 +70,32 @@ const inertia = z.strictObject({
   u_length_m: uncertainty.optional(),
 });
 
+/** A frequency that tells the fibre's stiffness: typed, or that of a segment of this session. */
+const typedFrequency = { f0_Hz: positive, u_f0_Hz: uncertainty.optional() };
+const ofSegment = { segment: id };
+
+/** Another body on the fibre that no field turns. */
+const body = z.union([
+  z.discriminatedUnion('shape', [cylinder, bar]),
+  z.strictObject({ inertia_kg_m2: positive, u_inertia_kg_m2: uncertainty.optional() }),
+]);
+const atLength = { length_m: positive, u_length_m: uncertainty.optional() };
+
 const fibre = z.strictObject({
-  stiffness_N_m_per_rad: z.number().nonnegative(),
+  stiffness_N_m_per_rad: z.number().nonnegative().optional(),
   u_stiffness_N_m_per_rad: uncertainty.optional(),
+  length_m: positive.optional(),
+  u_length_m: uncertainty.optional(),
+  run_without_field: z
+    .union([
+      z.strictObject({ ...typedFrequency, body: body.optional() }),
+      z.strictObject({ ...ofSegment, body: body.optional() }),
+    ])
+    .optional(),
+  runs_at_lengths: z
+    .array(z.union([z.strictObject({ ...atLength, ...typedFrequency }), z.strictObject({ ...atLength, ...ofSegment })]))
+    .max(1000)
+    .optional(),
 });
 
 /** The current meter: what is common to all steps (gain, zero) and what one reading can resolve. */
@@ -155,4 +178,5 @@ export type SessionSegment = Session['segments'][number];
 export type Apparatus = z.infer<typeof apparatusSchema>;
 export type Coil = NonNullable<Apparatus['coil']>;
 export type Magnet = NonNullable<Apparatus['magnet']>;
+export type Fibre = NonNullable<Apparatus['fibre']>;
 export type Place = z.infer<typeof placeSchema>;

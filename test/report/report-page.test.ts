@@ -60,6 +60,38 @@ describe('the report page', () => {
     expect(elements.find((e) => e.name === 'html')?.attributes.lang).toBe('en');
   });
 
+  it('shows what was known of the fibre, from which segments, with what weight', () => {
+    const results = exampleResults();
+    const source = {
+      origin: 'run without field',
+      segments: ['s09'],
+      fibre_Hz2: 0.0123,
+      u_fibre_Hz2: 0.0002,
+      stiffness_N_m_per_rad: 2.1e-6,
+      u_stiffness_N_m_per_rad: 4e-8,
+      weight: 1,
+    } as const;
+    const run = { length_m: 0.25, u_length_m: 1e-3, f0_Hz: 0.9, u_f0_Hz: 1e-4, segment: null };
+    const fibre_lengths = {
+      magnetic_Hz2: 0.8,
+      u_magnetic_Hz2: 0.001,
+      slope_Hz2_m: 0.0025,
+      u_slope_Hz2_m: 0.0002,
+      scatter_Hz2: null,
+      runs: [{ ...run, fitted_f0_squared_Hz2: 0.81, residual_Hz2: 0.00021 }],
+    };
+    const apparatus = {
+      fibre: { length_m: 0.3, run_without_field: { segment: 's09', body: { inertia_kg_m2: 1e-6 } } },
+    };
+    const reduction = { ...results.reduction, fibre_sources: [source], fibre_lengths };
+    const shown = reportPage({ ...results, apparatus, reduction });
+    elementsOf(shown);
+    const text = shown.replace(/<[^>]*>/g, ' ').replace(/\s+/g, ' ');
+    expect(text).toContain('run without field s09 0.01230 ± 0.00020 (2.100 ± 0.040) × 10⁻⁶ 100.0 %');
+    expect(text).toContain('0.25 – 0.81000 ± 0.00018 0.810000 2.1 × 10⁻⁴');
+    expect(text).toContain('Fibre, run without field, body Moment of inertia 1 × 10⁻⁶');
+  });
+
   it('forbids everything but its own style sheet', () => {
     const [style = ''] = page.match(/(?<=<style>)[\s\S]*?(?=<\/style>)/) ?? [];
     const hash = createHash('sha256').update(style).digest('base64');

@@ -123,6 +123,34 @@ describe('a session file', () => {
       'place.date must be a date as YYYY-MM-DD; not "1.2.2026".',
     ],
     [
+      'a fibre’s run without a frequency',
+      (s) => (s.apparatus.fibre = { run_without_field: { u_f0_Hz: 1e-4 } }),
+      'apparatus.fibre.run_without_field.f0_Hz must be a number; it is missing.',
+    ],
+    [
+      'a fibre’s run of an unknown segment',
+      (s) => (s.apparatus.fibre = { run_without_field: { segment: 's09', body: { inertia_kg_m2: 1e-6 } } }),
+      'apparatus.fibre.run_without_field.segment: there is no segment with the id "s09".',
+    ],
+    [
+      'two runs of one segment',
+      (s) => {
+        const runs = [0.1, 0.2].map((length_m) => ({ length_m, segment: 's01' }));
+        s.apparatus.fibre = { length_m: 0.3, runs_at_lengths: runs };
+      },
+      'apparatus.fibre.runs_at_lengths[1].segment: segment s01 stands for two runs; each must have its own.',
+    ],
+    [
+      'fibre lengths without that of the sweep',
+      (s) => (s.apparatus.fibre = { runs_at_lengths: [{ length_m: 0.1, f0_Hz: 1 }] }),
+      'apparatus.fibre.length_m must be a number above 0 where runs_at_lengths is given; it is missing.',
+    ],
+    [
+      'a fibre of no length',
+      (s) => (s.apparatus.fibre = { length_m: 0.3, runs_at_lengths: [{ length_m: 0, f0_Hz: 1 }] }),
+      'apparatus.fibre.runs_at_lengths[0].length_m must be a number above 0; not 0.',
+    ],
+    [
       'a list instead of a number',
       (s) => (s.segments[0].current_A = [0]),
       'segments[0] (s01).current_A must be a number; not [0].',

@@ -39,13 +39,15 @@ const NAMES: Readonly<Record<string, readonly [string, string]>> = {
   radius_second_coil_m: ['Radius of the second coil', 'm'],
   spacing_m: ['Coil spacing', 'm'],
   constant_T_per_A: ['Coil constant', 'T/A'],
-  shape: ['Shape of the magnet', ''],
+  shape: ['Shape', ''],
   mass_kg: ['Mass', 'kg'],
   length_m: ['Length', 'm'],
   diameter_m: ['Diameter', 'm'],
   width_m: ['Width', 'm'],
   inertia_kg_m2: ['Moment of inertia', 'kg m²'],
   stiffness_N_m_per_rad: ['Fibre stiffness', 'N m/rad'],
+  f0_Hz: ['Frequency', 'Hz'],
+  segment: ['Segment', ''],
   u_gain: ['Standard uncertainty of the scale', ''],
   u_zero_A: ['Standard uncertainty of the zero', 'A'],
   resolution_A: ['Step of the last digit', 'A'],
@@ -56,27 +58,39 @@ const NAMES: Readonly<Record<string, readonly [string, string]>> = {
 };
 
 function rig({ apparatus, place }: Results): Markup | null {
-  const rows: Piece[][] = [];
-  const groupsOfFacts: readonly (readonly [string, object | undefined])[] = [
-    ['Coils', apparatus?.coil],
+  const parts = [
+    ...partsOf('Coils', apparatus?.coil),
     ...Object.entries(apparatus ?? {})
       .filter(([name]) => name !== 'coil')
-      .map(([name, facts]): [string, object | undefined] => [titleCase(name), facts as object | undefined]),
-    ['Place', place],
+      .flatMap(([name, facts]) => partsOf(titleCase(name), facts)),
+    ...partsOf('Place', place),
   ];
-  for (const [part, facts] of groupsOfFacts) {
-    const entries = new Map<string, unknown>(Object.entries(facts ?? {}));
-    let first = true;
-    for (const [key, value] of entries) {
-      if (key.startsWith('u_') && entries.has(key.slice(2))) continue;
-      const [name, unit] = NAMES[key] ?? [key.replaceAll('_', ' '), ''];
-      rows.push([first ? part : '', name, shown(value), shown(entries.get(`u_${key}`)), unit]);
-      first = false;
-    }
-  }
+  const rows = parts.flatMap(([part, facts]) => {
+    const entries = new Map(facts);
+    return facts
+      .filter(([key]) => !(key.startsWith('u_') && entries.has(key.slice(2))))
+      .map(([key, value], i): Piece[] => {
+        const [name, unit] = NAMES[key] ?? [key.replaceAll('_', ' '), ''];
+        return [i === 0 ? part : '', name, shown(value), shown(entries.get(`u_${key}`)), unit];
+      });
+  });
   if (rows.length === 0) return null;
   return html`<h3>Apparatus as described in the session</h3>
 ${table({ heads: ['Part', 'Quantity', 'Value', 'Standard uncertainty', 'Unit'], rows, numbers: [2, 3] })}`;
+}
+
+type Facts = readonly (readonly [key: string, value: unknown])[];
+
+/** A part of the rig and, after it, the parts within it (runs, bodies), each with its plain values. */
+function partsOf(part: string, facts: object | undefined): (readonly [string, Facts])[] {
+  const entries = Object.entries(facts ?? {}) as [string, unknown][];
+  const isPart = (value: unknown): value is object => typeof value === 'object' && value !== null;
+  const within = entries.flatMap(([key, value]) => {
+    const name = `${part}, ${key.replaceAll('_', ' ')}`;
+    if (!Array.isArray(value)) return isPart(value) ? partsOf(name, value) : [];
+    return value.filter(isPart).flatMap((one, i) => partsOf(`${name}, ${i + 1}.`, one));
+  });
+  return [[part, entries.filter(([, value]) => !isPart(value))], ...within];
 }
 
 function titleCase(name: string): string {

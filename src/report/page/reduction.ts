@@ -2,6 +2,7 @@ import type { ModelKind, Reduction } from '../../reduction/reduction.ts';
 import { dofText, estimateText, NOTHING, numberText, percentText, typedText, uncertaintyText } from '../number-text.ts';
 import { type Quantity, quantities } from '../quantities.ts';
 import type { Results } from '../results.ts';
+import { fibreSection } from './fibre.ts';
 import { severityMark } from './findings.ts';
 import { html, type Markup, type Piece, symbolMarkup, table } from './html.ts';
 
@@ -23,6 +24,7 @@ ${
 `,
       )}</ul>`
 }
+${fibreSection(reduction)}
 ${expectedField(reduction)}
 </section>`;
 }

@@ -239,6 +239,8 @@ function exampleReduction(rows: readonly SegmentResult[]): Reduction {
       ],
     },
     points: known.map((row) => fittedPoint(row, used.includes(row.id))),
+    fibre_sources: [],
+    fibre_lengths: null,
     leave_one_out: used.map((id, i) => ({
       id,
       ambient_change_T: 4e-8 * jitter(i),
