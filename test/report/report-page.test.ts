@@ -89,7 +89,7 @@ describe('the report page', () => {
     const text = shown.replace(/<[^>]*>/g, ' ').replace(/\s+/g, ' ');
     expect(text).toContain('run without field s09 0.01230 ± 0.00020 (2.100 ± 0.040) × 10⁻⁶ 100.0 %');
     expect(text).toContain('0.25 – 0.81000 ± 0.00018 0.810000 2.1 × 10⁻⁴');
-    expect(text).toContain('Fibre, run without field, body Moment of inertia 1 × 10⁻⁶');
+    expect(text).toContain('Fibre, run without field, body Moment of inertia 0.000001');
   });
 
   it('forbids everything but its own style sheet', () => {
