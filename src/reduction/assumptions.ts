@@ -15,8 +15,15 @@ export const u_fibreShare = fibreShareLimit / Math.sqrt(3);
 /** How well the fibre's untwisted direction is brought onto the rest direction without current, rad. */
 export const u_twist_rad = (15 * Math.PI) / 180;
 
-/** How well the coil axis is laid along the ambient field with a compass needle, rad. */
-export const u_misalignment_rad = (3 * Math.PI) / 180;
+/** How well the coil axis is laid along the ambient field by eye, rad: a scale with wide tails, see below. */
+export const u_misalignment_rad = (7 * Math.PI) / 180;
+const misalignmentDof = 4;
+
+/** Relative probability of a misalignment: Student's with that scale and few degrees of freedom, since some benches are far off. */
+export function misalignmentDensity(angle_rad: number): number {
+  const square = (angle_rad / u_misalignment_rad) ** 2;
+  return (1 + square / misalignmentDof) ** (-(misalignmentDof + 1) / 2);
+}
 
 /** A fibre's share counts as separated from the field where its standard uncertainty is below this. */
 export const separatedShare = 0.03;

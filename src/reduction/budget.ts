@@ -1,5 +1,6 @@
 import { studentQuantile } from '../numerics/distributions.ts';
 import { type Contribution, combinedUncertainty, effectiveDof } from '../numerics/welch-satterthwaite.ts';
+import { type ErrorParts, expandedUncertainty } from './coverage-factor.ts';
 import type { Budget, BudgetRow, ResultName } from './reduction.ts';
 import { type ResultValues, resultNames, resultUnits } from './results.ts';
 import type { Source } from './sources.ts';
@@ -14,7 +15,7 @@ export function budgetOf(name: ResultName, value: number, sources: readonly Sour
   const relevant = sources.filter((source) => source.sensitivity[name] !== undefined);
   const u = uncertaintyOf(name, relevant);
   const dof = effectiveDof(contributions(name, relevant));
-  const factor = studentQuantile(0.975, Math.max(dof, 1));
+  const expanded_u = expandedUncertainty(partsOf(name, relevant));
   const rows = new Map<string, Source[]>();
   for (const source of relevant) rows.set(source.row, [...(rows.get(source.row) ?? []), source]);
   return {
@@ -23,8 +24,24 @@ export function budgetOf(name: ResultName, value: number, sources: readonly Sour
     unit: resultUnits[name],
     rows: [...rows].map(([row, members]) => rowOf(name, row, members)).sort((a, b) => b.contribution - a.contribution),
     effective_dof: finite(dof),
-    coverage_factor: factor,
-    expanded_u: factor * u,
+    coverage_factor: u > 0 ? expanded_u / u : studentQuantile(0.975, Math.max(dof, 1)),
+    expanded_u,
+  };
+}
+
+/** What is known of the distribution of one result's error. */
+function partsOf(name: ResultName, sources: readonly Source[]): ErrorParts {
+  const of = (law: Source['law']) => sources.filter((source) => source.law === law);
+  const normal = contributions(name, of('normal'));
+  const groups = new Map<string, { shift: number; weight: number }[]>();
+  for (const { row, u, sensitivity } of of('either')) {
+    groups.set(row, [...(groups.get(row) ?? []), { shift: sensitivity[name] ?? 0, weight: u * u }]);
+  }
+  return {
+    u: combinedUncertainty(normal),
+    dof: effectiveDof(normal),
+    halfWidths: of('even').map(({ u, sensitivity }) => Math.sqrt(3) * u * Math.abs(sensitivity[name] ?? 0)),
+    alternatives: [...groups.values()],
   };
 }
 

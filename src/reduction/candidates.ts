@@ -30,6 +30,16 @@ export interface Candidate {
   readonly reversal_A: number | null;
 }
 
+/** One way the bench may have been, with the fit that goes with it. */
+export interface Scenario {
+  readonly turn: Turn;
+  /** The field across the axis over the coil constant that this fit was made with, A. */
+  readonly across_A: number;
+  readonly fit: SweepFit;
+  /** Its probability given the data; all of a candidate's add up to 1. */
+  readonly weight: number;
+}
+
 /** A model with its fit, ready to be compared. */
 export interface ScaledCandidate extends Candidate {
   /** The observations with the uncertainties that the scatter asks for; those that `fit` was made with. */
@@ -40,6 +50,8 @@ export interface ScaledCandidate extends Candidate {
   readonly statedChiSquare: number;
   /** Akaike's criterion (lower is better), see `criterionOf`. */
   readonly criterion: number;
+  /** What else the bench may have been like, with the fit itself among it; empty: nothing else was looked at. */
+  readonly scenarios: readonly Scenario[];
 }
 
 /**
@@ -97,6 +109,18 @@ function fitAssumed(data: Observations, proposal: Proposal): SweepFit | null {
     torque = found;
     start = fit.parameters;
   }
+}
+
+/** The same model with the vector sum of the fields, the one across held at `across_A`; null where no fit ends. */
+export function fitHeld(candidate: ScaledCandidate, turn: Turn, across_A: number): SweepFit | null {
+  const { data, fit, fibre } = candidate;
+  const start = fit.parameters.slice();
+  start[at.across] = across_A;
+  start[at.twist] = 0;
+  const proposal: Proposal = { kind: 'two branches', turn, signs: null, start };
+  const priors = fit.model.priors.filter(({ parameter }) => parameter === at.fibre);
+  const held = fitSweep(data, modelOf(proposal, priors), start);
+  return held !== null && fibre === 'assumed' ? withoutPush(data, proposal, held) : held;
 }
 
 /** A fibre can't push: where the fit makes it do so a little, the values are those without fibre, the uncertainties stay. */
@@ -179,6 +203,7 @@ export function scaleToScatter(data: Observations, candidate: Candidate): Scaled
     data: used,
     scaleFrequencies,
     scaleDirections,
+    scenarios: [],
     statedChiSquare: candidate.fit.chiSquare,
     criterion: criterionOf(fit, handicapOf(candidate), data.y.length, scaleFrequencies, scaleDirections),
   };

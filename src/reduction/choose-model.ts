@@ -8,6 +8,7 @@ import {
   type ScaledCandidate,
   scaleToScatter,
 } from './candidates.ts';
+import { withScenarios } from './misalignment-scenarios.ts';
 import type { Observations } from './observations.ts';
 import { at, predict, type SweepModel } from './sweep-model.ts';
 
@@ -56,10 +57,31 @@ export function chooseModel(data: Observations, known: KnownFibre | null): Model
     ),
     ...fitAll(data, bent.flatMap(hyperbolaProposals), known),
   ];
-  const chosen = lowest(fromFrequencies);
-  return chosen === null
-    ? null
-    : { chosen, candidates: [...fromFrequencies, ...turning], directionsIgnored: hasDirections };
+  const best = lowest(fromFrequencies);
+  if (best === null) return null;
+  const isBent = isPlainlyBent(best);
+  const base = isBent ? best : (lowest(fromFrequencies.filter((other) => isStraight(other, best))) ?? best);
+  const chosen = withScenarios(base, isBent);
+  const candidates = [...fromFrequencies.map((one) => (one === base ? chosen : one)), ...turning];
+  return { chosen, candidates, directionsIgnored: hasDirections };
+}
+
+/** A field across the axis that frequencies show beyond doubt: its square is known to half its size at least. */
+function isPlainlyBent({ proposal, fit }: ScaledCandidate): boolean {
+  const across = fit.parameters[at.across]!;
+  const u = Math.sqrt(fit.covariance[at.across * fit.parameters.length + at.across]!);
+  return proposal.kind === 'hyperbola' && Math.abs(across) > 4 * u;
+}
+
+/** Lines or branches with the points on the same sides of the reversal. */
+function isStraight(other: ScaledCandidate, than: ScaledCandidate): boolean {
+  return other.proposal.kind !== 'hyperbola' && hasSameSides(other, than);
+}
+
+function hasSameSides(one: ScaledCandidate, other: ScaledCandidate): boolean {
+  const below = ({ data, reversal_A }: ScaledCandidate) =>
+    data.current_A.filter((current) => reversal_A !== null && current < reversal_A).length;
+  return below(one) === below(other);
 }
 
 /**
@@ -92,17 +114,14 @@ function isAdequate(candidate: Candidate | ScaledCandidate): boolean {
 }
 
 /**
- * Candidates fitted to the same data as the chosen one: with rest directions, or with frequencies alone. Beside a straight line
- * the slightly bent one is no rival, since the budget has a row for a misalignment that is not seen.
+ * Candidates fitted to the same data as the chosen one: with rest directions, or with frequencies alone. Where misalignments are
+ * averaged those with the points on the same sides of the reversal are in the average already.
  */
 export function rivals({ chosen, candidates }: ModelChoice): ScaledCandidate[] {
   const { directions } = chosen.fit.model;
-  const isBent = (other: ScaledCandidate) => other.proposal.kind === 'hyperbola' && other.reversal_A === null;
+  const isWithin = (other: ScaledCandidate) => chosen.scenarios.length > 0 && hasSameSides(other, chosen);
   return candidates.filter(
-    (other) =>
-      other !== chosen &&
-      other.fit.model.directions === directions &&
-      !(chosen.proposal.kind === 'line' && isBent(other)),
+    (other) => other !== chosen && other.fit.model.directions === directions && !isWithin(other),
   );
 }
 

@@ -1,16 +1,17 @@
-import { seededRandom } from '../numerics/random.ts';
+import { type Random, seededRandom } from '../numerics/random.ts';
 import { mean, quantile, standardDeviation } from '../numerics/statistics.ts';
 import { acrossShifts } from './across-shift.ts';
 import { u_fibreShare, u_misalignment_rad, u_twist_rad } from './assumptions.ts';
+import type { Scenario } from './candidates.ts';
 import type { MonteCarlo, ResultName } from './reduction.ts';
 import { type ResultInputs, resultNames, results } from './results.ts';
 import type { Derived } from './sensitivity.ts';
 import type { SourceContext } from './sources.ts';
-import { fitSweep } from './sweep-fit.ts';
+import { fitSweep, type SweepFit } from './sweep-fit.ts';
 import { at } from './sweep-model.ts';
 
 /**
- * Draws every input from its distribution (normal; the inputs of coil and bar through the full formulas), fits again and
+ * Draws every input from its distribution (normal; even for a share that is assumed; the inputs of coil and bar through the full formulas), fits again and
  * collects the results: propagation of distributions, JCGM 101:2008, clause 7, as a check of the budget's linear
  * sensitivities. `u` gives the budget's standard uncertainties.
  */
@@ -26,7 +27,7 @@ export function monteCarlo(
   const samples = new Map(names.map((name) => [name, [] as number[]]));
   let failed = 0;
   for (let draw = 0; draw < draws; draw++) {
-    const inputs = drawInputs(context, () => random.gaussian());
+    const inputs = drawInputs(context, random);
     if (inputs === null) {
       failed++;
       continue;
@@ -59,7 +60,17 @@ function near(name: ResultName, value: number, base: number): number {
   return name === 'misalignment_deg' ? value - 180 * Math.round((value - base) / 180) : value;
 }
 
-function drawInputs(context: SourceContext, gaussian: () => number): ResultInputs | null {
+/** The scenario in which a running sum of the weights passes `share`. */
+function oneOf(scenarios: readonly Scenario[], share: number): SweepFit {
+  let rest = share;
+  const found = scenarios.find(({ weight }) => {
+    rest -= weight;
+    return rest <= 0;
+  });
+  return (found ?? scenarios[scenarios.length - 1]!).fit;
+}
+
+function drawInputs(context: SourceContext, { gaussian, uniform }: Random): ResultInputs | null {
   const { inputs, coil, inertia, candidate, meter, fibre } = context;
   const drawn = new Map<string, number>();
   const draw = (derived: Derived) =>
@@ -75,15 +86,20 @@ function drawInputs(context: SourceContext, gaussian: () => number): ResultInput
   const j = inertia === null ? null : draw(inertia);
   const apart = { coil_T_per_A: k, felt_T_per_A: k === null ? null : k * (1 + uneven), inertia_kg_m2: j };
   if (candidate === null) return { ...inputs, ...apart };
-  const { data, fit } = candidate;
+  const { data, scenarios } = candidate;
+  const fit = scenarios.length > 0 ? oneOf(scenarios, uniform()) : candidate.fit;
   const clock = 1 + Math.max(...data.u_clock) * gaussian();
   const scale = 1 + (meter?.u_gain ?? 0) * gaussian();
   const zero = (meter?.u_zero_A ?? 0) * gaussian();
-  const bend = fit.model.fixed.across ? acrossShifts(fit, data.current_A, u_misalignment_rad * gaussian()) : null;
-  const known = fibre === null ? null : draw(fibre) + fibre.byClock * (clock - 1);
+  const bend =
+    fit.model.fixed.across && scenarios.length === 0
+      ? acrossShifts(fit, data.current_A, u_misalignment_rad * gaussian())
+      : null;
+  const known = fibre === null || candidate.fibre !== 'given' ? null : draw(fibre) + fibre.byClock * (clock - 1);
   const priors = fit.model.priors.map((prior) => {
-    const value = prior.parameter === at.fibre && candidate.fibre === 'given' ? known : null;
-    return { ...prior, value: value ?? prior.value + prior.u * gaussian() };
+    if (prior.parameter !== at.fibre) return { ...prior, value: prior.value + prior.u * gaussian() };
+    // A share that is only assumed lies anywhere within its limit.
+    return { ...prior, value: known ?? prior.value + prior.u * Math.sqrt(3) * (2 * uniform() - 1) };
   });
   const moved = {
     ...data,

@@ -12,6 +12,7 @@ import { fibreFindings, fibreSegments } from './fibre-sources.ts';
 import { fittedPoints } from './fitted-points.ts';
 import { inertia as inertiaOf } from './inertia.ts';
 import { leaveOneOut } from './leave-one-out.ts';
+import { rivalSources, scenarioSources } from './model-sources.ts';
 import { modelOf } from './model-summary.ts';
 import { monteCarlo } from './monte-carlo.ts';
 import { observe } from './observations.ts';
@@ -26,7 +27,7 @@ import type {
 } from './reduction.ts';
 import { type ResultInputs, type ResultValues, resultNames, results } from './results.ts';
 import { noModelField } from './sentences.ts';
-import { rivalSources, type Source, type SourceContext, sources } from './sources.ts';
+import { type Source, type SourceContext, sources } from './sources.ts';
 import { compareSweeps, repeatedCurrents } from './sweep-comparison.ts';
 import { at } from './sweep-model.ts';
 import { distinctCurrents, selectPoints } from './used-points.ts';
@@ -53,7 +54,11 @@ export function reduce(input: ReductionInput): Reduction {
     fibre: fibre.part,
   };
   const values = results(context.inputs);
-  const from = [...sources(context), ...rivalSources(context, values, choice === null ? [] : rivals(choice))];
+  const from = [
+    ...sources(context),
+    ...scenarioSources(context, values),
+    ...rivalSources(context, values, choice === null ? [] : rivals(choice)),
+  ];
   const u = (name: ResultName) => uncertaintyOf(name, from);
   const expected = place === undefined ? null : expectedField(place);
   const expectedChecks: Check[] =

@@ -20,6 +20,11 @@ export interface Source {
   readonly dof: number;
   /** Sources whose uncertainties were raised by one factor have its degrees of freedom together; null: this one alone. */
   readonly pool: string | null;
+  /**
+   * `normal`: a normal distribution, or Student's where `dof` is finite; `even`: all values within √3 u equally likely; `either`:
+   * the sources of this row exclude each other, and each shifts the result by its sensitivity with the probability u².
+   */
+  readonly law: 'normal' | 'even' | 'either';
   /** Change of each result per change of the source. */
   readonly sensitivity: { readonly [name in ResultName]?: number };
 }
@@ -33,34 +38,6 @@ export interface SourceContext {
   readonly meter: Meter | undefined;
   /** The fibre's part of f0² as known beforehand; null: not known. */
   readonly fibre: FibrePart | null;
-}
-
-/**
- * Other models that explain the same data nearly as well: what the results would be with them, at their Akaike weight. About
- * the chosen model's values the root mean square of the difference is its size times the root of the weight.
- */
-export function rivalSources(
-  { inputs, candidate }: SourceContext,
-  values: ResultValues,
-  rivals: readonly ScaledCandidate[],
-): Source[] {
-  if (candidate === null) return [];
-  const weights = rivals.map((rival) => Math.exp(-(rival.criterion - candidate.criterion) / 2));
-  const total = 1 + weights.reduce((sum, weight) => sum + weight, 0);
-  return rivals.flatMap((rival, i) => {
-    const weight = weights[i]! / total;
-    if (weight < 1e-4) return [];
-    const others = results({ ...inputs, parameters: rival.fit.parameters });
-    const sensitivity: { [name in ResultName]?: number } = {};
-    for (const name of resultNames) {
-      const [here, there] = [values[name], others[name]];
-      if (here !== null && there !== null && here !== there) sensitivity[name] = there - here;
-    }
-    const row = 'choice of model';
-    return [
-      { row, value: null, u: Math.sqrt(weight), unit: '1', dof: Number.POSITIVE_INFINITY, pool: null, sensitivity },
-    ];
-  });
 }
 
 /** Everything that makes the results uncertain, each source independent of the others. */
@@ -155,6 +132,7 @@ function fitSources(context: SourceContext, candidate: ScaledCandidate, gradient
         unit: 'Hz²',
         dof: scatter(data.dof_y[i]!),
         pool: raised,
+        law: 'normal',
         sensitivity: one(gain.y),
       },
       {
@@ -164,6 +142,7 @@ function fitSources(context: SourceContext, candidate: ScaledCandidate, gradient
         unit: 'A',
         dof: scatter(Number.POSITIVE_INFINITY),
         pool: raised,
+        law: 'normal',
         sensitivity: one(gain.current),
       },
     );
@@ -175,6 +154,7 @@ function fitSources(context: SourceContext, candidate: ScaledCandidate, gradient
       unit: 'rad',
       dof: dof(candidate.scaleDirections, data.dof_angle[i]!, fit.parts.directions),
       pool: pool(candidate.scaleDirections, 'directions'),
+      law: 'normal',
       sensitivity: one(gain.angle),
     });
   }
@@ -186,6 +166,7 @@ function fitSources(context: SourceContext, candidate: ScaledCandidate, gradient
       unit: '1',
       dof: Number.POSITIVE_INFINITY,
       pool: null,
+      law: 'normal',
       // A stiffness found with the same clock moves with it too.
       sensitivity: through(
         gradient,
@@ -199,6 +180,7 @@ function fitSources(context: SourceContext, candidate: ScaledCandidate, gradient
       unit: '1',
       dof: Number.POSITIVE_INFINITY,
       pool: null,
+      law: 'normal',
       sensitivity: through(
         gradient,
         sum(gain.current, (i) => data.current_A[i]!),
@@ -211,6 +193,7 @@ function fitSources(context: SourceContext, candidate: ScaledCandidate, gradient
       unit: 'A',
       dof: Number.POSITIVE_INFINITY,
       pool: null,
+      law: 'normal',
       sensitivity: through(
         gradient,
         sum(gain.current, () => 1),
@@ -243,6 +226,7 @@ function priorSources(candidate: ScaledCandidate, gradient: Gradients): Source[]
         unit: '°',
         dof,
         pool,
+        law: 'normal',
         sensitivity: by(degree),
       });
     } else if (fibre === 'assumed') {
@@ -254,6 +238,7 @@ function priorSources(candidate: ScaledCandidate, gradient: Gradients): Source[]
         unit: '1',
         dof,
         pool,
+        law: 'even',
         sensitivity: by(torque),
       });
     }
@@ -270,6 +255,7 @@ function priorSources(candidate: ScaledCandidate, gradient: Gradients): Source[]
       unit: '1',
       dof,
       pool,
+      law: 'normal',
       sensitivity: turn,
     });
   }
@@ -281,8 +267,8 @@ function priorSources(candidate: ScaledCandidate, gradient: Gradients): Source[]
  * effect goes with the square of the angle, so that its root mean square for a normal angle is √3 times that at one u.
  */
 function unseenAcross(candidate: ScaledCandidate, gradient: Gradients): Source[] {
-  const { data, fit } = candidate;
-  if (!fit.model.fixed.across) return [];
+  const { data, fit, scenarios } = candidate;
+  if (!fit.model.fixed.across || scenarios.length > 0) return [];
   const shifts = acrossShifts(fit, data.current_A, u_misalignment_rad);
   const effect = (k: number) => fit.gain.y[k]!.reduce((total, value, i) => total + value * shifts[i]!, 0);
   const u = (u_misalignment_rad * 180) / Math.PI;
@@ -294,6 +280,7 @@ function unseenAcross(candidate: ScaledCandidate, gradient: Gradients): Source[]
       unit: '°',
       dof: Number.POSITIVE_INFINITY,
       pool: null,
+      law: 'normal',
       sensitivity: through(gradient, (k) => (Math.sqrt(3) * effect(k)) / u),
     },
   ];
@@ -309,7 +296,16 @@ function dimensionSources({ inputs, coil, inertia, fibre, candidate }: SourceCon
   };
   for (const row of coil?.rows ?? []) {
     const both = plus(plus({}, gradient.coil, row.sensitivity), gradient.felt, row.sensitivity);
-    add({ row: row.name, value: row.value, u: row.u, unit: row.unit, dof: row.dof, pool: null, sensitivity: both });
+    add({
+      row: row.name,
+      value: row.value,
+      u: row.u,
+      unit: row.unit,
+      dof: row.dof,
+      pool: null,
+      law: 'normal',
+      sensitivity: both,
+    });
   }
   if (coil !== null && coil.turningShift !== 0) {
     add({
@@ -319,19 +315,29 @@ function dimensionSources({ inputs, coil, inertia, fibre, candidate }: SourceCon
       unit: '1',
       dof: Number.POSITIVE_INFINITY,
       pool: null,
+      law: 'normal',
       sensitivity: plus({}, gradient.felt, inputs.felt_T_per_A ?? 0),
     });
   }
   for (const row of inertia?.rows ?? []) {
     const { name, value, u, unit, dof, sensitivity } = row;
-    add({ row: name, value, u, unit, dof, pool: null, sensitivity: plus({}, gradient.inertia, sensitivity) });
+    add({
+      row: name,
+      value,
+      u,
+      unit,
+      dof,
+      pool: null,
+      law: 'normal',
+      sensitivity: plus({}, gradient.inertia, sensitivity),
+    });
   }
   // What is known of the fibre may hold the bar's dimensions as well.
   const gain = candidate?.fibre === 'given' ? fibreGain(candidate) : null;
   for (const row of gain === null ? [] : (fibre?.rows ?? [])) {
     const { name, value, u, unit, dof } = row;
     const sensitivity = through(gradient, (k) => gain!(k) * row.sensitivity);
-    add({ row: name, value, u, unit, dof, pool: null, sensitivity });
+    add({ row: name, value, u, unit, dof, pool: null, law: 'normal', sensitivity });
   }
   return [...byName.values()];
 }
