@@ -9,6 +9,8 @@ import { findFfmpeg } from './recording/find-ffmpeg.ts';
 import { InputError } from './recording/input-error.ts';
 import { openRecording } from './recording/open-recording.ts';
 import { reduceResults } from './reduce-results.ts';
+import { findBrowser } from './report/pdf/find-browser.ts';
+import { printPage } from './report/pdf/print-page.ts';
 import { programVersion } from './report/program.ts';
 import { readResults } from './report/read-results.ts';
 import { reportFromFiles } from './report/report-files.ts';
@@ -79,9 +81,11 @@ function buildCommand(signal: AbortSignal, finish: (status: number) => void): Co
     .description('write a page to print (report.html) from a results file')
     .argument('<results>', 'results.json')
     .option('--out <dir>', 'folder for the page (default: beside the results file)')
-    .action(async (path: string, flags: { out?: string }) => {
-      const written = await reportFromFiles(resolve(path), resolve(flags.out ?? dirname(resolve(path))));
-      stdout.write(`${written}\n`);
+    .option('--pdf', 'print it as report.pdf too, by a Chromium, Chrome or Edge of this machine')
+    .action(async (path: string, flags: { out?: string; pdf?: boolean }) => {
+      const print = flags.pdf ? await printer(signal) : undefined;
+      const written = await reportFromFiles(resolve(path), resolve(flags.out ?? dirname(resolve(path))), { print });
+      stdout.write(written.map((file) => `${file}\n`).join(''));
       finish(EXIT.measured);
     });
 
@@ -99,6 +103,19 @@ function buildCommand(signal: AbortSignal, finish: (status: number) => void): Co
       finish(EXIT.measured);
     });
   return command;
+}
+
+/** What makes a PDF of a page. @throws InputError where no browser is found that could. */
+async function printer(signal: AbortSignal): Promise<(page: string) => Promise<Uint8Array>> {
+  const browser = await findBrowser(process.env, process.platform);
+  if (browser === null) {
+    const named = process.env.CHROMIUM_PATH;
+    const why = named ? `CHROMIUM_PATH (${named}) can't be run` : 'neither CHROMIUM_PATH nor PATH names one';
+    throw new InputError(
+      `report.pdf needs a Chromium, Chrome or Edge to print it, and ${why}; without --pdf the page report.html is written, which any browser prints.`,
+    );
+  }
+  return (page) => printPage(page, { browser, signal });
 }
 
 /** Runs the command line and returns the exit status. Nothing is left half-written: files are put in place whole. */

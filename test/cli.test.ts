@@ -3,6 +3,7 @@ import { cpSync, mkdirSync, mkdtempSync, readdirSync, readFileSync, rmSync, writ
 import { tmpdir } from 'node:os';
 import { join, resolve } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { findBrowser } from '../src/report/pdf/find-browser.ts';
 import type { Session } from '../src/session/session.ts';
 
 const CLI = resolve('dist/src/cli.js');
@@ -14,8 +15,8 @@ interface Ended {
   readonly stderr: string;
 }
 
-function start(args: readonly string[]): { child: ChildProcess; ended: Promise<Ended> } {
-  const child = spawn(process.execPath, [CLI, ...args], { stdio: ['ignore', 'pipe', 'pipe'] });
+function start(args: readonly string[], env = process.env): { child: ChildProcess; ended: Promise<Ended> } {
+  const child = spawn(process.execPath, [CLI, ...args], { stdio: ['ignore', 'pipe', 'pipe'], env });
   let stdout = '';
   let stderr = '';
   child.stdout.setEncoding('utf8').on('data', (text) => {
@@ -194,6 +195,28 @@ describe('needlebeat inspect, reduce and report', () => {
     expect(JSON.parse(readFileSync(join(again, 'results.json'), 'utf8'))).toEqual(first);
     expect((await needlebeat('report', join(out, 'results.json'), '--out', again)).status).toBe(0);
     expect(readFileSync(join(again, 'report.html'), 'utf8')).toMatch(/^<!doctype html>/i);
+  });
+
+  it('prints the page as PDF where there is a browser, else says what is missing and writes nothing', async () => {
+    const path = session('first', onlyFirst);
+    const out = join(dir, 'out-first');
+    await needlebeat('measure', path, '--out', out, '--quiet');
+    const report = (folder: string, env: NodeJS.ProcessEnv) =>
+      start(['report', join(out, 'results.json'), '--out', join(dir, folder), '--pdf'], { ...process.env, ...env })
+        .ended;
+    const none = await report('never', { CHROMIUM_PATH: join(dir, 'no-browser') });
+    expect(none.status).toBe(2);
+    expect(none.stderr).toMatch(
+      /^needlebeat: report\.pdf needs a Chromium.*; without --pdf the page report\.html is written.*\n$/,
+    );
+    expect(readdirSync(dir)).not.toContain('never');
+    if ((await findBrowser(process.env, process.platform)) === null) {
+      console.warn('Printing left out: no Chromium found (set CHROMIUM_PATH, or install Debian’s chromium).');
+      return;
+    }
+    const printed = await report('printed', {});
+    expect(printed).toMatchObject({ status: 0, stderr: '' });
+    expect(readdirSync(join(dir, 'printed')).sort()).toEqual(['report.html', 'report.pdf']);
   });
 
   it('refuses what is no results file', async () => {

@@ -10,18 +10,30 @@ import { writeFiles } from './write-results.ts';
 
 const LARGEST_TRACE_BYTES = 256 * 1024 * 1024;
 
+/** What may be passed to `reportFromFiles`. */
+export interface ReportOptions {
+  /** Makes report.pdf of the page; left out: there is none. */
+  readonly print?: ((page: string) => Promise<Uint8Array>) | undefined;
+  /** When the page is made (default: now). */
+  readonly now?: Date;
+}
+
 /**
- * Makes report.html in `outDir` from a results file. Ring-downs are plotted where trace files stand beside the results file
- * and belong to it.
- * @returns the path of the page.
- * @throws InputError where the results file can't be used or the page can't be written.
+ * Makes report.html in `outDir` from a results file, and report.pdf where it is asked for: both or neither. Ring-downs are
+ * plotted where trace files stand beside the results file and belong to it.
+ * @returns the paths written.
+ * @throws InputError where the results file can't be used, or a file can't be made or written.
  */
-export async function reportFromFiles(resultsPath: string, outDir: string, now = new Date()): Promise<string> {
+export async function reportFromFiles(
+  resultsPath: string,
+  outDir: string,
+  { print, now = new Date() }: ReportOptions = {},
+): Promise<readonly string[]> {
   const results = await readResults(resultsPath);
   const { traces, strangers } = await tracesBeside(resultsPath, results.segments);
   const page = reportPage(results, { traces, strangers, madeOn: localDate(now) });
-  const [path] = await writeFiles(outDir, [['report.html', page]]);
-  return path ?? join(outDir, 'report.html');
+  const pdf = await print?.(page);
+  return writeFiles(outDir, [['report.html', page], ...(pdf ? [['report.pdf', pdf] as const] : [])]);
 }
 
 /** The day of the user's own clock, as YYYY-MM-DD. */

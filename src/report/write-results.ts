@@ -44,7 +44,7 @@ export async function writeResults(
 /** Writes files one after the other, each whole; after a failure none of those that are new stays. @throws InputError */
 export async function writeFiles(
   dir: string,
-  files: readonly (readonly [name: string, content: string])[],
+  files: readonly (readonly [name: string, content: string | Uint8Array])[],
 ): Promise<readonly string[]> {
   const written: string[] = [];
   const added: string[] = [];

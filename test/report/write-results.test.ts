@@ -82,15 +82,26 @@ describe('writing results', () => {
 
 describe('making a report from files', () => {
   const now = new Date(2026, 11, 1, 23, 30);
-  const report = (out = dir) => reportFromFiles(join(dir, 'results.json'), out, now);
+  const report = (out = dir) => reportFromFiles(join(dir, 'results.json'), out, { now });
 
   it('needs the results file alone', async () => {
     await writeResults(dir, exampleResults());
     const out = join(dir, 'printed');
-    expect(await report(out)).toBe(join(out, 'report.html'));
+    expect(await report(out)).toEqual([join(out, 'report.html')]);
     const page = await readFile(join(out, 'report.html'), 'utf8');
     expect(page).toContain('page made on 2026-12-01');
     expect(page).not.toContain('Ring-downs');
+  });
+
+  it('writes the printed page beside it, or neither', async () => {
+    await writeResults(dir, exampleResults());
+    const printed = (out: string, print: (page: string) => Promise<Uint8Array>) =>
+      reportFromFiles(join(dir, 'results.json'), join(dir, out), { now, print });
+    const written = await printed('both', async (page) => Buffer.from(`printed ${page.slice(0, 15)}`));
+    expect(written).toEqual(['report.html', 'report.pdf'].map((name) => join(dir, 'both', name)));
+    expect(await readFile(join(dir, 'both', 'report.pdf'), 'utf8')).toBe('printed <!DOCTYPE html>');
+    await expect(printed('neither', () => Promise.reject(new Error('no paper')))).rejects.toThrow('no paper');
+    expect(await readdir(dir)).not.toContain('neither');
   });
 
   it('plots the ring-downs of traces that stand beside it', async () => {

@@ -18,6 +18,8 @@ export interface RigField {
   readonly optional?: boolean;
   /** It may be zero. */
   readonly zero?: boolean;
+  /** It has no uncertainty beside it. */
+  readonly alone?: boolean;
 }
 
 const mm = (key: string, label: string, optional = false): RigField => ({
@@ -60,15 +62,16 @@ export const MAGNET_FIELDS: Readonly<Record<MagnetKind, readonly RigField[]>> = 
   ],
 };
 
-/** The fibre's only field. */
-export const FIBRE_FIELD: RigField = {
-  key: 'stiffness_N_m_per_rad',
-  label: 'Torsional stiffness, if known',
-  unit: 'nN m/rad',
-  factor: 1e9,
-  optional: true,
-  zero: true,
-};
+/** The current meter: each of its numbers is an uncertainty itself, or a step. */
+export const METER_FIELDS: readonly RigField[] = [
+  { key: 'u_gain', label: 'Standard uncertainty of its scale', unit: '%', factor: 100, optional: true, ...alone() },
+  { key: 'u_zero_A', label: 'Standard uncertainty of its zero', unit: 'mA', factor: 1e3, optional: true, ...alone() },
+  { key: 'resolution_A', label: 'Step of its last digit', unit: 'mA', factor: 1e3, optional: true, ...alone() },
+];
+
+function alone() {
+  return { alone: true, zero: true } as const;
+}
 
 /** Which way a coil is described. */
 export function coilKind(coil: Coil | undefined): CoilKind {
@@ -90,7 +93,7 @@ export function partOf(
   fixed: Readonly<Record<string, string>> = {},
 ): Record<string, number | string> | null {
   const part: Record<string, number | string> = { ...fixed };
-  for (const { key, optional } of fields) {
+  for (const { key, optional, alone } of fields) {
     const value = values[key] ?? null;
     const u = values[`u_${key}`] ?? null;
     if (value === null) {
@@ -98,7 +101,7 @@ export function partOf(
       continue;
     }
     part[key] = value;
-    if (u !== null) part[`u_${key}`] = u;
+    if (u !== null && !alone) part[`u_${key}`] = u;
   }
   return part;
 }
@@ -110,7 +113,11 @@ export function valuesOf(part: object | undefined): Record<string, number | null
 }
 
 /** A session with one part of the rig replaced; undefined takes it away, and an empty apparatus with it. */
-export function withPart(session: Session, name: 'coil' | 'magnet' | 'fibre', part: object | undefined): Session {
+export function withPart(
+  session: Session,
+  name: 'coil' | 'magnet' | 'fibre' | 'meter',
+  part: object | undefined,
+): Session {
   const { [name]: _before, ...others } = session.apparatus ?? {};
   const apparatus = (part === undefined ? others : { ...others, [name]: part }) as Apparatus;
   const { apparatus: _old, ...rest } = session;

@@ -4,12 +4,14 @@ import {
   COIL_FIELDS,
   type CoilKind,
   coilKind,
-  FIBRE_FIELD,
   MAGNET_FIELDS,
   type MagnetKind,
+  METER_FIELDS,
   magnetKind,
   withPart,
 } from './apparatus-fields.ts';
+import { Choice } from './choice.tsx';
+import { FibrePart } from './fibre-part.tsx';
 import { PlacePart } from './place-part.tsx';
 import { PlanPart } from './plan-part.tsx';
 import { RigPart } from './rig-part.tsx';
@@ -26,7 +28,7 @@ const MAGNETS: readonly (readonly [MagnetKind, string])[] = [
   ['inertia', 'by moment of inertia'],
 ];
 
-/** The rig: coils, magnet, fibre, place. Every number has its standard uncertainty beside it. */
+/** The rig: coils, magnet, fibre, current meter, place. Every number has its standard uncertainty beside it. */
 export function ApparatusSheet() {
   const rig = session.value?.apparatus;
   const [coil, chooseCoil] = useKind<CoilKind>(coilKind(rig?.coil));
@@ -84,7 +86,18 @@ export function ApparatusSheet() {
         <header class="sheet-head">
           <h2>Fibre</h2>
         </header>
-        <RigPart name="fibre" kind="fibre" fields={[FIBRE_FIELD]} part={rig?.fibre} />
+        <p class="quiet">
+          The sweep alone tells fibre and field apart only where currents are reversed far enough to turn the bar round.
+          Else one of these does.
+        </p>
+        <FibrePart fibre={rig?.fibre} />
+      </section>
+      <section>
+        <header class="sheet-head">
+          <h2>Current meter</h2>
+        </header>
+        <p class="quiet">What all steps have in common; what each step adds is typed with its current.</p>
+        <RigPart name="meter" kind="meter" fields={METER_FIELDS} part={rig?.meter} />
       </section>
       <section>
         <header class="sheet-head">
@@ -104,25 +117,4 @@ function useKind<K extends string>(held: K): readonly [K, (kind: K) => void] {
     if (held !== 'none') choose(held);
   }, [held]);
   return [chosen, choose];
-}
-
-function Choice<K extends string>(props: {
-  label: string;
-  options: readonly (readonly [K, string])[];
-  value: K;
-  onChange(kind: K): void;
-}) {
-  return (
-    <select
-      aria-label={props.label}
-      value={props.value}
-      onChange={(event) => props.onChange(event.currentTarget.value as K)}
-    >
-      {props.options.map(([kind, words]) => (
-        <option key={kind} value={kind}>
-          {words}
-        </option>
-      ))}
-    </select>
-  );
 }

@@ -1,4 +1,5 @@
 import { useState } from 'preact/hooks';
+import { agreementText } from '../../../src/reduction/monte-carlo-agreement.ts';
 import { dofText, numberText, typedText } from '../../../src/report/number-text.ts';
 import { quantities } from '../../../src/report/quantities.ts';
 import type { Results } from '../../contract.ts';
@@ -72,10 +73,16 @@ export function BudgetPart({ reduction }: { reduction: Results['reduction'] }) {
         {quantity.title}: {quantityText(budget.value, budget.u, unit, factor).both}; effective degrees of freedom{' '}
         {dofText(budget.effective_dof)}; expanded uncertainty (95 %) {numberText(budget.expanded_u * factor, 2)} {unit},
         factor {numberText(budget.coverage_factor, 3)}.
-        {drawn && reduction.monte_carlo
-          ? ` Monte Carlo with ${reduction.monte_carlo.draws} draws: ${quantityText(drawn.mean, drawn.u, unit, factor).both}, 95 % within ${numberText(drawn.low * factor, 5)} and ${numberText(drawn.high * factor, 5)} ${unit}.`
-          : ''}
       </p>
+      {drawn && reduction.monte_carlo ? (
+        <p class="facts">
+          Drawn instead ({reduction.monte_carlo.draws} draws, Monte Carlo by JCGM 101):{' '}
+          {quantityText(drawn.mean, drawn.u, unit, factor).both}, 95 % within {numberText(drawn.low * factor, 5)} and{' '}
+          {numberText(drawn.high * factor, 5)} {unit}; by the budget within{' '}
+          {numberText((budget.value - budget.expanded_u) * factor, 5)} and{' '}
+          {numberText((budget.value + budget.expanded_u) * factor, 5)} {unit}. {agreementText(drawn, budget)}
+        </p>
+      ) : null}
     </details>
   );
 }

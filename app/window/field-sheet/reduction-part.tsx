@@ -38,6 +38,23 @@ export function ReductionPart({ reduction }: { reduction: Reduction }) {
           </tbody>
         </table>
       )}
+      {reduction.fibre_sources.map((source) => {
+        const [value, u] = [source.stiffness_N_m_per_rad, source.u_stiffness_N_m_per_rad];
+        const unit = shownUnit(value ?? 0, 'N m/rad', 1);
+        const text =
+          value === null
+            ? quantityText(source.fibre_Hz2, source.u_fibre_Hz2, 'Hz² of f₀²', 1)
+            : quantityText(value, u, unit.unit, unit.factor);
+        const from = source.segments.length === 0 ? '' : ` (${source.segments.join(', ')})`;
+        const weight = source.weight > 0 ? `, weight ${Math.round(100 * source.weight)} %` : ', not used';
+        return (
+          <p key={source.origin} class="facts">
+            Fibre, {ORIGINS[source.origin]}
+            {from}: {text.both}
+            {weight}.
+          </p>
+        );
+      })}
       {reduction.fit ? (
         <p class="facts">
           {reduction.points_used.length} points, χ² = {reduction.fit.chi_square.toPrecision(3)} with {reduction.fit.dof}{' '}
@@ -52,6 +69,12 @@ export function ReductionPart({ reduction }: { reduction: Reduction }) {
     </section>
   );
 }
+
+const ORIGINS: Readonly<Record<Reduction['fibre_sources'][number]['origin'], string>> = {
+  typed: 'stiffness as typed',
+  'run without field': 'from the run without field',
+  'runs at lengths': 'from several lengths',
+};
 
 /** Small SI numbers get a prefix so that no power of ten is needed: 2.4e-10 N m/rad as 0.24 nN m/rad. */
 export function shownUnit(

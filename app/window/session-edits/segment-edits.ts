@@ -73,9 +73,21 @@ export function changeSegment(session: Session, id: string, change: SegmentChang
   return { ...session, segments: inOrder(segments, session) };
 }
 
-/** A session without a segment. */
+/** A session without a segment, and without the run of the fibre that it may have stood for. */
 export function removeSegment(session: Session, id: string): Session {
-  return { ...session, segments: session.segments.filter((s) => s.id !== id) };
+  const { apparatus } = session;
+  const isOther = (run: object) => !('segment' in run) || run.segment !== id;
+  const { run_without_field: free, runs_at_lengths: lengths, ...rest } = apparatus?.fibre ?? {};
+  const left = lengths?.filter(isOther) ?? [];
+  const fibre = {
+    ...rest,
+    ...(free && isOther(free) && { run_without_field: free }),
+    ...(left.length > 0 && { runs_at_lengths: left }),
+  };
+  const segments = session.segments.filter((s) => s.id !== id);
+  return apparatus?.fibre === undefined
+    ? { ...session, segments }
+    : { ...session, segments, apparatus: { ...apparatus, fibre } };
 }
 
 /**

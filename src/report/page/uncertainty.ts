@@ -1,5 +1,6 @@
+import { agreementText } from '../../reduction/monte-carlo-agreement.ts';
 import type { Budget, ResultName } from '../../reduction/reduction.ts';
-import { dofText, estimateText, numberText, percentText, shortText, uncertaintyText } from '../number-text.ts';
+import { dofText, estimateText, NOTHING, numberText, percentText, shortText, uncertaintyText } from '../number-text.ts';
 import { type Quantity, quantities } from '../quantities.ts';
 import type { Results } from '../results.ts';
 import { html, type Markup, symbolMarkup, table } from './html.ts';
@@ -20,7 +21,7 @@ ${budgets.length === 0 ? null : html`<p>Budgets by JCGM 100:2008 (GUM). Sensitiv
 ${exact.length === 0 ? null : html`<p>Without a budget, since no uncertainty is given for any of its inputs: ${exact.map(({ q }) => q.title.toLowerCase()).join(', ')}.</p>`}
 ${budgets.map(({ q, budget }) => budgetTable(q, budget))}
 ${correlations(reduction.correlation)}
-${monteCarlo(reduction.monte_carlo)}
+${monteCarlo(reduction)}
 </section>`;
 }
 
@@ -87,22 +88,42 @@ ${table({
 </section>`;
 }
 
-function monteCarlo(drawn: Results['reduction']['monte_carlo']): Markup | null {
+function monteCarlo({ monte_carlo: drawn, budget }: Results['reduction']): Markup | null {
   if (drawn === null || drawn.results.length === 0) return null;
   const rows = drawn.results.flatMap((r) => {
     const q = quantities.find(({ name }) => name === r.name);
     if (!q) return [];
     const end = (value: number) => numberText(value * q.perUnit, 4);
-    return [[q.title, shown(q, r.mean, r.u), html`${end(r.low)} … ${end(r.high)}`, q.unit, r.u_over_budget.toFixed(3)]];
+    const own = budget[r.name];
+    const interval = (low: number, high: number) => html`<span class="nb">${end(low)} … ${end(high)}</span>`;
+    return [
+      [
+        q.title,
+        shown(q, r.mean, r.u),
+        interval(r.low, r.high),
+        own === undefined ? NOTHING : interval(own.value - own.expanded_u, own.value + own.expanded_u),
+        q.unit,
+        r.u_over_budget.toFixed(2),
+        own === undefined ? '' : agreementText(r, own),
+      ],
+    ];
   });
   const failed = drawn.failed > 0 ? ` ${drawn.failed} of them ended without a fit and were left out.` : '';
   return html`<section class="whole">
 <h3>Cross-check by Monte Carlo (JCGM 101:2008)</h3>
 <p>${drawn.draws} draws of all inputs, seed ${drawn.seed}.${failed}</p>
 ${table({
-  heads: ['Quantity', 'Mean ± standard deviation', html`95 % interval`, 'Unit', html`<i>u</i> over that of the budget`],
+  heads: [
+    'Quantity',
+    'Mean ± standard deviation',
+    html`95 % <small>drawn</small>`,
+    html`95 % <small>by the budget</small>`,
+    'Unit',
+    html`<i>u</i> over that of the budget`,
+    'Agreement',
+  ],
   rows,
-  numbers: [1, 2, 4],
+  numbers: [1, 2, 3, 5],
 })}
 </section>`;
 }

@@ -84,6 +84,18 @@ describe('segments', () => {
     });
     expect(removeSegment(next, 's01').segments.map((s) => s.id)).toEqual(['s02', 's03']);
   });
+
+  test('a segment takes the run of the fibre with it that it stood for', () => {
+    const runs_at_lengths = [
+      { length_m: 0.1, segment: 's01' },
+      { length_m: 0.2, f0_Hz: 0.7 },
+    ];
+    const fibre = { length_m: 0.3, run_without_field: { segment: 's02' }, runs_at_lengths };
+    const known = { ...session, apparatus: { fibre } };
+    expect(removeSegment(known, 's02').apparatus).toEqual({ fibre: { length_m: 0.3, runs_at_lengths } });
+    expect(removeSegment(known, 's01').apparatus?.fibre?.runs_at_lengths).toEqual([runs_at_lengths[1]]);
+    expect(removeSegment(known, 's03').apparatus).toEqual(known.apparatus);
+  });
 });
 
 describe('views', () => {
