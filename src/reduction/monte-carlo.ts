@@ -1,7 +1,7 @@
 import { type Random, seededRandom } from '../numerics/random.ts';
 import { mean, quantile, standardDeviation } from '../numerics/statistics.ts';
 import { acrossShifts } from './across-shift.ts';
-import { u_fibreShare, u_misalignment_rad, u_twist_rad } from './assumptions.ts';
+import { u_misalignment_rad } from './assumptions.ts';
 import type { Scenario } from './candidates.ts';
 import type { MonteCarlo, ResultName } from './reduction.ts';
 import { type ResultInputs, resultNames, results } from './results.ts';
@@ -109,12 +109,6 @@ function drawInputs(context: SourceContext, { gaussian, uniform }: Random): Resu
   };
   const again = fitSweep(moved, { ...fit.model, priors }, fit.parameters);
   if (again === null) return null;
-  const parameters = again.parameters.slice();
-  if (candidate.fibre === 'assumed' && fit.model.directions) {
-    const turn = u_fibreShare * gaussian() * u_twist_rad * gaussian();
-    const [a, c] = [parameters[at.along]!, parameters[at.across]!];
-    parameters[at.along] = a * Math.cos(turn) - c * Math.sin(turn);
-    parameters[at.across] = a * Math.sin(turn) + c * Math.cos(turn);
-  }
-  return { ...inputs, ...apart, parameters };
+  // A share and an untwisted direction drawn together turn the rest directions: their product needs no draw of its own.
+  return { ...inputs, ...apart, parameters: again.parameters };
 }

@@ -118,8 +118,7 @@ export function hangsOnOne(id: string, moved: number): Check {
 /** Field and fibre can't be told apart; `ambient_T` null: no coil constant. */
 export function fibreNotSeparated(ambient_T: number | null): Check {
   const share = `${short(100 * fibreShareLimit)} %`;
-  const size =
-    ambient_T === null ? `of it` : `(${microtesla(ambient_T * fibreShareLimit, ambient_T * fibreShareLimit * 0.05)})`;
+  const size = ambient_T === null ? '' : ` (${short(ambient_T * fibreShareLimit * 1e6)} µT)`;
   const message = `The fibre’s share can’t be separated from the field: the ambient field is too high by stiffness / moment. A fibre that carries up to ${share} of the restoring torque without current makes that up to ${share}${size}, which is in the uncertainty. Reversed currents that turn the bar round, or the fibre’s stiffness, would separate it.`;
   return check('fibre_not_separated', 'note', message);
 }

@@ -93,6 +93,8 @@ describe('the budget', () => {
     const draws = 600;
     for (const input of [
       { points: pointsAt(tilted, bothSides, care), apparatus: dimensions },
+      // One side: the fibre's share and its untwisted direction are assumed, and only their product turns the rest directions.
+      { points: pointsAt(tilted, oneSide, care), apparatus: dimensions },
       { points, apparatus: { ...dimensions, fibre: { stiffness_N_m_per_rad: 2.7e-6, u_stiffness_N_m_per_rad: 2e-7 } } },
     ]) {
       const drawn = reduce({ ...input, monteCarloDraws: draws, seed: 3 });

@@ -80,7 +80,7 @@ export function BudgetPart({ reduction }: { reduction: Results['reduction'] }) {
           {quantityText(drawn.mean, drawn.u, unit, factor).both}, 95 % within {numberText(drawn.low * factor, 5)} and{' '}
           {numberText(drawn.high * factor, 5)} {unit}; by the budget within{' '}
           {numberText((budget.value - budget.expanded_u) * factor, 5)} and{' '}
-          {numberText((budget.value + budget.expanded_u) * factor, 5)} {unit}. {agreementText(drawn, budget)}
+          {numberText((budget.value + budget.expanded_u) * factor, 5)} {unit}: {agreementText(drawn, budget)}.
         </p>
       ) : null}
     </details>

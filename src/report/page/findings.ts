@@ -7,7 +7,7 @@ export function findings(results: Results): Markup {
   const { segments, reduction } = results;
   const checks = segments.flatMap((s) => s.checks.map((check) => ({ id: s.id, check })));
   const order = ['fault', 'doubt', 'note'] as const;
-  const sorted = order.flatMap((severity) => checks.filter(({ check }) => check.severity === severity));
+  const sorted = order.flatMap((severity) => gathered(checks.filter(({ check }) => check.severity === severity)));
   const notes = segments.filter((s) => s.note.trim() !== '');
   return html`<section>
 <h2>Checks, points left out, notes</h2>
@@ -33,7 +33,23 @@ export function severityMark(check: Check): Markup {
   return html`<span class="mark ${check.severity}">${sign} ${check.severity}</span>`;
 }
 
-function checkItem({ id, check }: { readonly id: string; readonly check: Check }): Markup {
-  return html`<li>${severityMark(check)}<span>${id}</span><span>${check.message}</span></li>
+interface Finding {
+  readonly ids: readonly string[];
+  readonly check: Check;
+}
+
+/** What is said of several segments in the same words is said once. */
+function gathered(checks: readonly { readonly id: string; readonly check: Check }[]): Finding[] {
+  const found = new Map<string, { ids: string[]; check: Check }>();
+  for (const { id, check } of checks) {
+    const same = found.get(check.message);
+    if (same) same.ids.push(id);
+    else found.set(check.message, { ids: [id], check });
+  }
+  return [...found.values()];
+}
+
+function checkItem({ ids, check }: Finding): Markup {
+  return html`<li>${severityMark(check)}<span>${ids.join(', ')}</span><span>${check.message}</span></li>
 `;
 }

@@ -47,6 +47,9 @@ export function symbolMarkup(symbol: string): Markup {
   return new Markup(text);
 }
 
+/** A table with no more rows than this is kept on one page. */
+const MOST_ROWS_WHOLE = 26;
+
 /** A table: its heads (null: none), rows of cells, and which columns hold numbers. */
 export function table(options: {
   readonly caption?: Piece;
@@ -67,6 +70,7 @@ export function table(options: {
 `;
   });
   const caption = options.caption === undefined ? null : html`<caption>${options.caption}</caption>`;
-  return html`<table>${caption}<thead><tr>${heads}</tr></thead><tbody>
+  const whole = options.rows.length <= MOST_ROWS_WHOLE ? trusted(' class="whole"') : null;
+  return html`<table${whole}>${caption}<thead><tr>${heads}</tr></thead><tbody>
 ${rows}</tbody></table>`;
 }

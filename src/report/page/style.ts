@@ -56,7 +56,7 @@ td:has(.nb), .nb { white-space: nowrap; }
 figure { margin: 4mm 0; break-inside: avoid; }
 figure svg { display: block; width: 100%; height: auto; }
 figcaption { font-size: 8.5pt; color: #414a52; margin-top: 1mm; }
-section.whole { break-inside: avoid; }
+section.whole, table.whole { break-inside: avoid; }
 footer { margin-top: 8mm; padding-top: 2mm; border-top: 0.6pt solid #9aa5ae; color: #5b646d; font-size: 8pt; }
 @media screen { body { box-shadow: 0 0.5mm 4mm rgb(28 33 38 / 18%); } }
 @media screen and (max-width: 180mm) {

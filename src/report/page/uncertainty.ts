@@ -70,8 +70,9 @@ ${exact.length === 0 ? null : html`<p class="small">Taken as exact, or without i
 </section>`;
 }
 
+/** A unit stays on one line. */
 function unitText(unit: string): string {
-  return unit === '1' ? '' : unit;
+  return unit === '1' ? '' : unit.replaceAll(' ', '\u00a0');
 }
 
 function correlations(correlation: Results['reduction']['correlation']): Markup | null {
@@ -102,7 +103,6 @@ function monteCarlo({ monte_carlo: drawn, budget }: Results['reduction']): Marku
         shown(q, r.mean, r.u),
         interval(r.low, r.high),
         own === undefined ? NOTHING : interval(own.value - own.expanded_u, own.value + own.expanded_u),
-        q.unit,
         r.u_over_budget.toFixed(2),
         own === undefined ? '' : agreementText(r, own),
       ],
@@ -118,12 +118,11 @@ ${table({
     'Mean ± standard deviation',
     html`95 % <small>drawn</small>`,
     html`95 % <small>by the budget</small>`,
-    'Unit',
-    html`<i>u</i> over that of the budget`,
-    'Agreement',
+    html`<i>u</i> <small>over the budget’s</small>`,
+    'Intervals',
   ],
   rows,
-  numbers: [1, 2, 3, 5],
+  numbers: [1, 2, 3, 4],
 })}
 </section>`;
 }

@@ -53,7 +53,7 @@ describe.skipIf(process.platform === 'win32')('a browser that fails', () => {
     await expect(printPage('', { browser: missing })).rejects.toThrow(/missing can't be started \(ENOENT\)\.$/);
     const half = await program(
       'half',
-      '#!/bin/sh\nfor a in "$@"; do case "$a" in --print-to-pdf=*) printf "%%PDF-1.4" > "${a#--print-to-pdf=}";; esac; done\n',
+      '#!/bin/sh\nfor a in "$@"; do case "$a" in --print-to-pdf=*) printf "%%PDF-1.4" > "$(echo "$a" | cut -d= -f2)";; esac; done\n',
     );
     await expect(printPage('', { browser: half })).rejects.toThrow(/half made no PDF\.$/);
   });
