@@ -38,7 +38,12 @@ export const STIFFNESS_FIELD: RigField = {
   zero: true,
 };
 /** Length of the fibre in the sweep, and in one of several runs. */
-export const LENGTH_FIELD: RigField = { key: 'length_m', label: 'Length in the sweep', unit: 'mm', factor: 1e3 };
+export const LENGTH_FIELD: RigField = {
+  key: 'length_m',
+  label: 'Fibre’s length in the sweep',
+  unit: 'mm',
+  factor: 1e3,
+};
 export const FREQUENCY_FIELD: RigField = { key: 'f0_Hz', label: 'Frequency', unit: 'Hz', factor: 1 };
 
 const EMPTY_RUN: RunDraft = { origin: 'none', values: {}, segment: '' };

@@ -128,7 +128,6 @@ export function FibrePart({ fibre }: { fibre: Fibre | undefined }) {
       {draft.lengths.length === 0 ? null : (
         <RigRow
           field={LENGTH_FIELD}
-          name="fibre"
           entry="fibre length"
           values={draft.values}
           onValue={(key, value) => set({ ...draft, values: { ...draft.values, [key]: value } }, key)}
