@@ -9,6 +9,7 @@ import { LeaveOutPart } from './leave-out-part.tsx';
 import { NextPart } from './next-part.tsx';
 import { ReductionPart } from './reduction-part.tsx';
 import { ResultsTable } from './results-table.tsx';
+import { SweepsPart } from './sweeps-part.tsx';
 
 /** All segments together: the table, f0² against current, and what follows from it. */
 export function FieldSheet() {
@@ -48,6 +49,7 @@ export function FieldSheet() {
           <ExpectedPart reduction={found} />
           <CheckList checks={found.checks} none="No check found anything wrong with the sweep as a whole." />
           <LeaveOutPart reduction={found} />
+          <SweepsPart reduction={found} />
           <NextPart reduction={found} />
           <BudgetPart reduction={found} />
         </>

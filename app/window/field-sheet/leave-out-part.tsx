@@ -2,7 +2,7 @@ import type { Results } from '../../contract.ts';
 import { fixedText } from '../numbers/quantity-text.ts';
 import { selectSegment } from '../state/selection.ts';
 
-/** How the answer moves when a point is left out, the points that were left out, and rising against falling steps. */
+/** How the answer moves when a point is left out, and the points that were left out. */
 export function LeaveOutPart({ reduction }: { reduction: Results['reduction'] }) {
   const moving = [...reduction.leave_one_out]
     .filter((one) => one.largest_change_in_u !== null)

@@ -5,6 +5,7 @@ import type { Results } from '../results.ts';
 import { fibreSection } from './fibre.ts';
 import { severityMark } from './findings.ts';
 import { html, type Markup, type Piece, symbolMarkup, table } from './html.ts';
+import { nextStepsSection } from './next-steps.ts';
 
 /** The results of the reduction with their uncertainties, the model and why, and what could not be had. */
 export function reductionSection(results: Results): Markup {
@@ -26,6 +27,7 @@ ${
 }
 ${fibreSection(reduction)}
 ${expectedField(reduction)}
+${nextStepsSection(reduction)}
 </section>`;
 }
 

@@ -12,7 +12,7 @@ body {
 header { border-bottom: 1.6pt solid #1c2126; padding-bottom: 3mm; margin-bottom: 4mm; }
 header p { margin: 0; color: #5b646d; }
 h1 { font-size: 19pt; line-height: 1.2; font-weight: 600; margin: 1mm 0 1.5mm; letter-spacing: -0.01em; }
-h2 + p { break-after: avoid; break-inside: avoid; }
+h2 + p, h2 + p + p { break-after: avoid; break-inside: avoid; }
 p, li { orphans: 3; widows: 3; }
 h2 { font-size: 12pt; font-weight: 600; margin: 8mm 0 2mm; padding-bottom: 1mm; border-bottom: 0.6pt solid #9aa5ae; break-after: avoid; }
 h3 { font-size: 9.5pt; font-weight: 600; margin: 4.5mm 0 1mm; break-after: avoid; }
