@@ -1,5 +1,5 @@
 import type { Prior } from '../numerics/least-squares.ts';
-import { DRAG, DRIFT, GAMMA, LINES, type Model, OFFSET, OMEGA, SHARE, SKEW, V0, X0 } from './model.ts';
+import { BEND, DRAG, DRIFT, GAMMA, LINES, type Model, OFFSET, OMEGA, SHARE, SKEW, V0, X0 } from './model.ts';
 import type { RingDownOptions } from './ring-down.ts';
 import type { StartValues } from './start-values.ts';
 
@@ -13,6 +13,7 @@ export interface Setup {
  * Quadratic drag is known to be small unless the record asks for it: for a bar of a few centimetres in air it is of the order of 0.001 to
  * 0.01 per radian (estimated from the drag of a cylinder, no published source).
  */
+const DRAG_per_rad = 0.005;
 const DRAG_u_per_rad = 0.01;
 /**
  * Skew of the torque is the fibre's share times its twist at rest: seldom above this many radians, also where the bar has turned round, and
@@ -21,14 +22,20 @@ const DRAG_u_per_rad = 0.01;
 const TWIST_u_rad = 1.5;
 const SKEW_u = 0.15;
 /** The fibre's share times the squared frequency, see `sharePrior`. */
-const FIBRE_Hz2 = 0.02;
+const FIBRE_Hz2 = 0.015;
+const FIBRE_u_Hz2 = 0.02;
+/**
+ * A cast shadow, a slant of the camera or the texture of the table bend the angle followed, by about a tenth of a degree at ten degrees
+ * (measured on drawn recordings); a slanting view stretches that.
+ */
+const BEND_u_per_rad = { plan: 0.06, oblique: 0.12, side: 0.12 } as const;
 /** Scaling of an oblique or side view to degrees: an error of 3 % in angle is 6 % in the effect of the amplitude, which share takes up. */
 const SCALE_u = 0.06;
 
 /**
- * The share of the restoring torque that follows sin x, as known before the fit. The fibre's share, unless it is given, is 0.03 with u 0.04, and
- * wider at low frequency: the fibre alone gives the bar (kappa / J)^½ / 2 pi, seldom above 0.14 Hz, so that its share is of the order of
- * 0.02 Hz² / f0² whatever the field (common practice of thin fibres; no source).
+ * The share of the restoring torque that follows sin x, as known before the fit. Unless the fibre's share is given: the fibre alone
+ * gives the bar (kappa / J)^½ / 2 pi, about 0.12 Hz and seldom above 0.2 Hz, so that its share is of the order of 0.015 Hz² / f0² whatever the
+ * field (common practice of thin fibres; no source); never known to better than 0.04.
  */
 export function sharePrior(
   options: RingDownOptions,
@@ -37,15 +44,15 @@ export function sharePrior(
 ): { value: number; u: number } {
   if (unit === 'px') return { value: 1, u: 1 };
   const fibre = options.fibreShare ?? {
-    value: 0.03,
-    u: Math.min(0.5, Math.hypot(0.04, FIBRE_Hz2 / frequency_Hz ** 2)),
+    value: Math.min(0.3, FIBRE_Hz2 / frequency_Hz ** 2),
+    u: Math.min(0.5, Math.hypot(0.04, FIBRE_u_Hz2 / frequency_Hz ** 2)),
   };
   return { value: 1 - fibre.value, u: options.view === 'plan' ? fibre.u : Math.hypot(fibre.u, SCALE_u) };
 }
 
 /** Standard uncertainty of the skew about zero. */
 function skewPrior({ fibreShare }: RingDownOptions, frequency_Hz: number): number {
-  const share = fibreShare === undefined ? FIBRE_Hz2 / frequency_Hz ** 2 : fibreShare.value + fibreShare.u;
+  const share = fibreShare === undefined ? FIBRE_u_Hz2 / frequency_Hz ** 2 : fibreShare.value + fibreShare.u;
   return Math.max(1e-6, Math.min(SKEW_u, TWIST_u_rad * Math.abs(share)));
 }
 
@@ -55,7 +62,8 @@ export function setUp(start: StartValues, duration_s: number, options: RingDownO
   const priors: Prior[] = [
     { parameter: SHARE, value: share.value, u: Math.max(share.u, 1e-6) },
     { parameter: SKEW, value: 0, u: skewPrior(options, start.frequency_Hz) },
-    { parameter: DRAG, value: 0, u: DRAG_u_per_rad },
+    { parameter: DRAG, value: DRAG_per_rad, u: DRAG_u_per_rad },
+    { parameter: BEND, value: 0, u: BEND_u_per_rad[options.view] },
   ];
   const swept = Math.PI * start.frequency_Hz * (options.exposure_s ?? 0);
   const blur = swept > 1e-6 && swept < 3 ? Math.sin(swept) / swept : 1;

@@ -1,4 +1,5 @@
 import type { Estimate } from '../numerics/estimate.ts';
+import type { AngleShape } from './angle-shape.ts';
 import type { Jump } from './jumps.ts';
 import type { Check, RingDown, RingDownOptions, Severity } from './ring-down.ts';
 import { type RingDownCode, SENTENCES } from './sentences.ts';
@@ -38,6 +39,9 @@ export interface Facts {
   readonly converged: boolean;
   /** The frequency follows the amplitude otherwise than was assumed, beyond doubt. */
   readonly amplitudeLawOdd: boolean;
+  /** The angle followed is bent far more than usual. */
+  readonly bent: boolean;
+  readonly shape: AngleShape;
 }
 
 function check<C extends RingDownCode>(
@@ -54,6 +58,8 @@ const DEG = Math.PI / 180;
 /** Fewer cycles than this give no frequency; fewer than the second number one to be doubted. */
 const FEWEST_CYCLES = 2.5;
 const FEW_CYCLES = 3.5;
+/** Below this quality factor the amplitude falls to a third in two to three cycles, and what is left of the motion is of the size of the angle's errors. */
+const LOWEST_Q = 8;
 
 /** Faults that leave a segment unmeasured. */
 export const faults = {
@@ -160,6 +166,11 @@ function moved(facts: Facts): Check[] {
       out.push(check('amplitude_large', 'note', { amplitude: amplitudeStart, shift: ringDown.amplitudeShift }));
     }
   }
+  if (facts.bent || (facts.shape.share > 0.008 && facts.shape.evidence > 40)) {
+    out.push(check('angle_distorted', 'doubt', undefined));
+  }
+  const q = (Math.PI * ringDown.f0_Hz.value) / Math.max(ringDown.gamma_per_s.value, 1e-300);
+  if (q < LOWEST_Q) out.push(check('heavily_damped', 'doubt', { q, cycles: q / Math.PI }));
   if (facts.amplitudeLawOdd && unit === 'rad') out.push(check('amplitude_law_odd', 'note', undefined));
   if (ringDown.quadraticDrag > 0) {
     // Loss per second by the drag that grows with speed, averaged over a cycle: 4 drag omega a / (3 pi).

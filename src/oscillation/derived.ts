@@ -21,12 +21,12 @@ export function derived(fit: Fitted, dof: number, f: (p: Float64Array) => number
   return { value: f(parameters), u: Math.sqrt(Math.max(0, variance)), dof };
 }
 
-/** Adds the clock's relative uncertainty, taken as exactly known, to a rate. */
-export function withClock(estimate: Estimate, u_time_scale: number): Estimate {
-  const clock = { u: Math.abs(estimate.value) * u_time_scale, dof: Number.POSITIVE_INFINITY };
+/** Adds relative uncertainties that the fit doesn't know of, the clock's say, each taken as exactly known. */
+export function withRelative(estimate: Estimate, ...relative: readonly number[]): Estimate {
+  const others = { u: Math.abs(estimate.value) * Math.hypot(...relative), dof: Number.POSITIVE_INFINITY };
   return {
     value: estimate.value,
-    u: combinedUncertainty([estimate, clock]),
-    dof: effectiveDof([estimate, clock]),
+    u: combinedUncertainty([estimate, others]),
+    dof: effectiveDof([estimate, others]),
   };
 }

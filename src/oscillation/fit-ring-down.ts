@@ -1,17 +1,19 @@
 import { mean, rootMeanSquare } from '../numerics/statistics.ts';
 import type { Trace } from '../tracking/trace.ts';
 import { amplitudeAt, frequencyRatio, meanSquareAmplitude, startAmplitude } from './amplitude.ts';
+import { angleShape } from './angle-shape.ts';
 import { setUp } from './assumptions.ts';
 import { type Facts, faults, findings } from './checks.ts';
 import { chooseStart } from './choose-start.ts';
-import { derived, withClock } from './derived.ts';
+import { derived, withRelative } from './derived.ts';
 import { findJump } from './jumps.ts';
-import { DRAG, DRIFT, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA, SHARE } from './model.ts';
-import { withoutPrior } from './parameter-covariance.ts';
+import { BEND, DRAG, DRIFT, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA, SHARE, SKEW } from './model.ts';
+import { uncertaintyOf, withoutPrior } from './parameter-covariance.ts';
 import type { RingDown, RingDownOptions, RingDownOutcome } from './ring-down.ts';
 import { foldedFrom, gapRival, mayBeFolded } from './rivals.ts';
 import { angleSeries, type Series, sampling } from './series.ts';
 import { addLines, type FitWithLines, motionAt } from './side-lines.ts';
+import { wanderOfMean } from './slow-wander.ts';
 import { fitTwist, type TwistFit } from './twist-fit.ts';
 import { compareCrossings, crossings } from './zero-crossings.ts';
 
@@ -29,6 +31,14 @@ const AIC_PENALTY = 2;
 const TENSION = 4;
 const SHARE_APART = 0.3;
 const SHARE_KNOWN_u = 0.15;
+/** An angle that is bent is stretched as well, by its bend times about this angle (as seen under hard shadows in drawn recordings). */
+const SCALE_OF_BEND_rad = 0.4;
+/**
+ * The scale of the angle is not the same at large and small amplitudes: gamma is known to no better than this (as seen in drawn
+ * recordings), nor than this many times the share of the third harmonic that the same causes.
+ */
+const UNEVEN_SCALE = 0.01;
+const UNEVEN_BY_CUBIC = 5;
 
 /**
  * Fits the decaying twist of one segment: frequency in the limit of small amplitude, damping, rest direction, each with a standard uncertainty
@@ -51,8 +61,8 @@ export function fitRingDown(trace: Trace, options: RingDownOptions): RingDownOut
   const plain = fitTwist(series, first.model, first.start);
   if (plain === null) return { ok: false, checks: faults.noOscillation() };
   const lined = addLines(series, trace, plain, options.view === 'side');
-  const { fit, amplitudeLawOdd } = withWiderPriors(series, lined.fit);
-  const facts = factsOf({ ...lined, fit }, amplitudeLawOdd, trace, options, 1 / scale);
+  const { fit, widened } = withWiderPriors(series, lined.fit);
+  const facts = factsOf({ ...lined, fit }, widened, trace, options, 1 / scale);
   const fault = faults.ofFacts(facts);
   if (fault.length > 0) return { ok: false, checks: fault };
   return { ok: true, ringDown: facts.ringDown, checks: findings(facts) };
@@ -75,25 +85,30 @@ function asksForDrag(fit: TwistFit): boolean {
   return free !== null && free.value > 0 && (free.value / free.u) ** 2 > AIC_PENALTY + correction;
 }
 
-/** Widens priors to what the data say where the two can't both be right, and says whether that of the amplitude's effect was one. */
-function withWiderPriors(series: Series, fit: TwistFit): { fit: TwistFit; amplitudeLawOdd: boolean } {
+/** Widens priors to what the data say where the two can't both be right, and says which: `SHARE` and `BEND` are told to the user. */
+function withWiderPriors(series: Series, fit: TwistFit): { fit: TwistFit; widened: readonly number[] } {
   const widened: number[] = [];
-  const priors = fit.model.priors.map((prior) => {
-    if (prior.parameter !== SHARE && prior.parameter !== DRAG) return prior;
+  let bend = 0;
+  const wider = fit.model.priors.map((prior) => {
+    if (prior.parameter !== SHARE && prior.parameter !== DRAG && prior.parameter !== BEND) return prior;
     const free = withoutPrior(fit, prior);
     const apart = free === null ? 0 : Math.abs(free.value - prior.value);
     if (free === null || apart < TENSION * Math.hypot(free.u, prior.u)) return prior;
     if (prior.parameter === SHARE && (apart < SHARE_APART || free.u > SHARE_KNOWN_u)) return prior;
+    if (prior.parameter === BEND) bend = apart;
     widened.push(prior.parameter);
     return { ...prior, u: apart };
   });
+  // The effect of the amplitude goes as its square.
+  const scale = 2 * SCALE_OF_BEND_rad * bend;
+  const priors = wider.map((p) => (p.parameter === SHARE ? { ...p, u: Math.hypot(p.u, scale) } : p));
   const again = widened.length > 0 ? fitTwist(series, { ...fit.model, priors }, fit.parameters, fit) : null;
-  return { fit: again ?? fit, amplitudeLawOdd: widened.includes(SHARE) };
+  return { fit: again ?? fit, widened: again === null ? [] : widened };
 }
 
 function factsOf(
   { fit, swings, coherent, angleLine }: FitWithLines,
-  amplitudeLawOdd: boolean,
+  widened: readonly number[],
   trace: Trace,
   options: RingDownOptions,
   unitScale: number,
@@ -107,22 +122,32 @@ function factsOf(
     1,
     (fit.residual.length - fit.model.fixed.filter((held) => !held).length) / (1 + fit.noise.coefficients.length),
   );
-  const clocked = (f: (p: Float64Array) => number) => withClock(derived(fit, dof, f), options.u_time_scale);
+  const { twist, later } = motionAt(fit, samples.time_s);
+  const a0 = startAmplitude(motion);
+  const meanSquare = meanSquareAmplitude(motion, a0, end);
+  const shape = angleShape(fit, twist);
+  const unevenScale = Math.hypot(UNEVEN_SCALE, UNEVEN_BY_CUBIC * shape.cubic);
+  const damped = (motion.gamma / motion.omega) ** 2 * unevenScale;
+  // The frequency falls with the square of the skew, which derivatives at about no skew miss.
+  const skewed = Math.SQRT2 * (5 / 48) * uncertaintyOf(fit, SKEW) ** 2 * meanSquare;
   const seenAt = (p: Float64Array) => {
     const m = motionOf(p);
     return frequencyRatio(m, Math.sqrt(meanSquareAmplitude(m, startAmplitude(m), end)));
   };
-  const f0 = clocked((p) => p[OMEGA]! / (2 * Math.PI));
+  // An angle that is off by some share is stretched by about twice as much, which the effect of the amplitude has squared.
+  const stretched = 4 * shape.share * (1 / seenAt(parameters) - 1);
+  const clocked = (f: (p: Float64Array) => number, ...others: number[]) =>
+    withRelative(derived(fit, dof, f), options.u_time_scale, ...others);
+  const f0 = clocked((p) => p[OMEGA]! / (2 * Math.PI), damped, skewed, stretched);
   const fd = clocked((p) => (Math.sqrt(Math.max(0, p[OMEGA]! ** 2 - p[GAMMA]! ** 2)) / (2 * Math.PI)) * seenAt(p));
-  const gamma = clocked((p) => p[GAMMA]!);
+  const gamma = clocked((p) => p[GAMMA]!, unevenScale);
   const rest = derived(fit, dof, (p) => p[OFFSET]! * unitScale);
-  const a0 = startAmplitude(motion);
+  const wander = wanderOfMean({ time_s: samples.time_s, value: fit.residual }, fit.level);
   const period_s = 1 / fd.value;
 
   const fitted = new Float64Array(raw.time_s.length);
   evaluateModel(fit.model, parameters, raw.time_s, fitted, null);
   for (let i = 0; i < fitted.length; i++) fitted[i] = fitted[i]! * unitScale;
-  const { twist, later } = motionAt(fit, samples.time_s);
   const swung = samples.value.map((_, i) => twist[i]! * fit.model.blur + fit.residual[i]!);
   const size = (t: number) => amplitudeAt(motion, a0, t);
   const counted = compareCrossings(
@@ -138,8 +163,14 @@ function factsOf(
     f0_Hz: f0,
     fd_Hz: fd,
     gamma_per_s: gamma,
-    q: gamma.value > 2 * gamma.u ? derived(fit, dof, (p) => p[OMEGA]! / (2 * p[GAMMA]!)) : null,
-    equilibrium: { ...rest, u: Math.hypot(rest.u, trace.u_common) },
+    q:
+      gamma.value > 2 * gamma.u
+        ? withRelative(
+            derived(fit, dof, (p) => p[OMEGA]! / (2 * p[GAMMA]!)),
+            unevenScale,
+          )
+        : null,
+    equilibrium: { ...rest, u: Math.hypot(rest.u, wander * unitScale, trace.u_common) },
     amplitudeStart: a0 * unitScale,
     amplitudeEnd: size(end) * unitScale,
     cycles: fd.value * end,
@@ -179,6 +210,8 @@ function factsOf(
     mayBeFolded: mayBeFolded(fit),
     signal: (fit.residual.length * rootMeanSquare(twist) ** 2) / fit.level,
     converged: fit.converged,
-    amplitudeLawOdd,
+    amplitudeLawOdd: widened.includes(SHARE),
+    bent: widened.includes(BEND),
+    shape,
   };
 }

@@ -2,7 +2,7 @@ import type { LeastSquaresProblem, Prior } from '../numerics/least-squares.ts';
 import { integrate, type Motion } from './motion.ts';
 import type { Series } from './series.ts';
 
-/** Places of the parameters in the fit's vector: the motion's seven, then the rest direction and its drift; side lines follow from LINES on. */
+/** Places of the parameters in the fit's vector: the motion's seven, then how it is seen; side lines follow from LINES on. */
 export const OMEGA = 0;
 export const GAMMA = 1;
 export const DRAG = 2;
@@ -14,10 +14,12 @@ export const V0 = 6;
 export const OFFSET = 7;
 /** Drift of the rest direction per second. */
 export const DRIFT = 8;
+/** Static bend of the angle seen, per radian: at x from rest the picture shows bend x² more. It moves no phase. */
+export const BEND = 9;
 /** First of the side lines, four parameters each: cosine, sine, angular frequency, decay rate. */
-export const LINES = 9;
+export const LINES = 10;
 
-/** The model fitted: rest direction with drift, the motion times the loss by exposure, and damped sines beside it. */
+/** The model fitted: rest direction with drift, the motion times the loss by exposure, bent, and damped sines beside it. */
 export interface Model {
   /** Middle of the series, where `OFFSET` holds. */
   readonly middle_s: number;
@@ -53,14 +55,17 @@ export function evaluateModel(
 ): boolean {
   if (!integrate(motionOf(p), time_s, value, jacobian === null ? null : jacobian.slice(0, 7))) return false;
   const { middle_s, blur } = model;
-  for (let i = 0; i < time_s.length; i++)
-    value[i] = blur * value[i]! + p[OFFSET]! + p[DRIFT]! * (time_s[i]! - middle_s);
-  if (jacobian !== null) {
-    for (let k = 0; k < 7; k++) for (let i = 0; i < time_s.length; i++) jacobian[k]![i] = blur * jacobian[k]![i]!;
-    for (let i = 0; i < time_s.length; i++) {
-      jacobian[OFFSET]![i] = 1;
-      jacobian[DRIFT]![i] = time_s[i]! - middle_s;
-    }
+  const bend = p[BEND]!;
+  for (let i = 0; i < time_s.length; i++) {
+    const x = blur * value[i]!;
+    const since = time_s[i]! - middle_s;
+    value[i] = x + bend * x * x + p[OFFSET]! + p[DRIFT]! * since;
+    if (jacobian === null) continue;
+    const slope = blur * (1 + 2 * bend * x);
+    for (let k = 0; k < 7; k++) jacobian[k]![i] = slope * jacobian[k]![i]!;
+    jacobian[OFFSET]![i] = 1;
+    jacobian[DRIFT]![i] = since;
+    jacobian[BEND]![i] = x * x;
   }
   for (let line = 0; line < model.lines; line++) addLine(LINES + 4 * line, p, time_s, value, jacobian);
   return true;

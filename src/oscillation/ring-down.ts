@@ -14,7 +14,7 @@ export interface Check {
 export interface RingDownOptions {
   /** Relative standard uncertainty of the recording's clock. */
   readonly u_time_scale: number;
-  /** Fibre's share of the restoring torque where it is known from elsewhere, as value and u; absent: 0.03 with u 0.04 is assumed. */
+  /** Fibre's share of the restoring torque where it is known from elsewhere, as value and u; absent: a thin fibre's is assumed. */
   readonly fibreShare?: { readonly value: number; readonly u: number };
   /** Exposure of a frame in seconds where known; it lowers the amplitude seen. */
   readonly exposure_s?: number;

@@ -59,6 +59,10 @@ export const SENTENCES = {
     `The amplitude of ${excursion(f.amplitude, 'rad')} is beyond what the correction for it is good for; let the bar calm down to below 40° before the segment begins.`,
   amplitude_law_odd: () =>
     'The frequency changes with the amplitude otherwise than the fibre share assumed would have it; the data are believed. Check the scale of the view (elevation, half length), or give the stiffness of the fibre.',
+  angle_distorted: () =>
+    'The curve misses the trace by an amount that depends on where the bar stands, not on time: the angle is followed wrongly, as where an edge, a hard shadow or a reflection lies across the bar, and the amplitude is not to be trusted; light the bench softly from above and film it again.',
+  heavily_damped: (f: { q: number; cycles: number }) =>
+    `The twist dies down to a third of its amplitude within ${figure(f.cycles)} cycles (Q about ${figure(f.q)}), so that frequency and damping hang on the first few swings; take off what brakes the bar, or compare several nudges.`,
   unscaled_view: () =>
     'The side view has no half length, so that the motion has no scale in degrees: the frequency is given, but how much the amplitude lowered it can only be guessed (it is in the uncertainty); give half_length_px.',
   drag_quadratic: (f: { share: number }) =>

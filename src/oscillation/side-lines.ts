@@ -48,7 +48,7 @@ export function addLines(series: Series, trace: Trace, fit: TwistFit, side: bool
     const decay = 0.5 / duration;
     const line = { frequency_Hz: frequency, decay_per_s: decay, held: false, u: null, u_decay_per_s: 2 * decay };
     const next = refit(series, best, line);
-    if (next === null || (best.sumOfSquares - next.sumOfSquares) / next.level < EVIDENCE) break;
+    if (next === null || !next.converged || (best.sumOfSquares - next.sumOfSquares) / next.level < EVIDENCE) break;
     const at = next.parameters.length - 4;
     const amplitude = Math.hypot(next.parameters[at]!, next.parameters[at + 1]!);
     const seen = next.parameters[at + 2]! / (2 * Math.PI);

@@ -36,7 +36,9 @@ describe('95 % intervals', () => {
       const random = seededRandom(300 + k);
       let here = 0;
       for (let run = 0; run < runs; run++) {
-        const outcome = fitRingDown(drawTrace({ ...typical, ...d }, random), KNOWN);
+        // Quadratic drag as it is assumed to be.
+        const drag = 0.005 + 0.01 * random.gaussian();
+        const outcome = fitRingDown(drawTrace({ ...typical, ...d, drag }, random), KNOWN);
         if (!outcome.ok) throw new Error(outcome.checks[0]!.message);
         const { f0_Hz, gamma_per_s } = outcome.ringDown;
         const factor = studentQuantile(0.975, f0_Hz.dof);
@@ -58,7 +60,7 @@ describe('95 % intervals', () => {
   it('hold with the fibre share drawn from what is assumed of it', () => {
     const random = seededRandom(77);
     const z = Array.from({ length: 60 }, () => {
-      const fibre = 0.03 + 0.04 * random.gaussian();
+      const fibre = 0.015 + 0.045 * random.gaussian();
       const outcome = fitRingDown(drawTrace({ ...typical, amplitude_deg: 12, duration_s: 25, fibre }, random), PLAN);
       if (!outcome.ok) throw new Error(outcome.checks[0]!.message);
       return (outcome.ringDown.f0_Hz.value - 1) / outcome.ringDown.f0_Hz.u;

@@ -26,6 +26,8 @@ export interface Drawing {
   /** Frame times vary by up to this. */
   readonly jitter_s?: number;
   readonly offset_deg?: number;
+  /** How wrongly the angle is followed at `x` degrees from rest, degrees. */
+  readonly seen?: (x_deg: number) => number;
 }
 
 export const REST_deg = 17;
@@ -58,7 +60,12 @@ export function drawTrace(d: Drawing, random: Random): Trace {
   return {
     time_s,
     angle: x.map(
-      (v, i) => v + (d.offset_deg ?? REST_deg) * DEG + noise[i]! + (s?.leak_deg ?? 0) * DEG * line(time_s[i]!, p),
+      (v, i) =>
+        v +
+        (d.seen?.(v / DEG) ?? 0) * DEG +
+        (d.offset_deg ?? REST_deg) * DEG +
+        noise[i]! +
+        (s?.leak_deg ?? 0) * DEG * line(time_s[i]!, p),
     ),
     unit: 'rad',
     x_px: time_s.map((t) => 500 + (s?.amplitude_px ?? 0) * line(t, p) + 0.03 * random.gaussian()),

@@ -272,8 +272,70 @@ describe('disturbances', () => {
     expect(codes(fitRingDown(drifting(0.4), PLAN))).toContain('doubt rest_drifts');
   });
 
+  it('says how far a rest direction that wanders slowly is known', () => {
+    const u = (wander: number) => measured(ringDownOf({ noise_deg: 0.01, wander }, 9, KNOWN)).equilibrium.u;
+    const plain = u(0);
+    expect(u(8)).toBeGreaterThan(8 * plain);
+    expect(plain).toBeLessThan((2 * 0.01 * DEG) / Math.sqrt(360));
+  });
+
+  it('doubts a twist that dies within a few swings', () => {
+    const outcome = ringDownOf({ gamma_per_s: 0.5, amplitude_deg: 12 });
+    expect(codes(outcome)).toContain('doubt heavily_damped');
+    expectWithin(measured(outcome).f0_Hz.value, 0.9, measured(outcome).f0_Hz.u);
+    expect(codes(ringDownOf({ gamma_per_s: 0.25, amplitude_deg: 12 }))).not.toContain('doubt heavily_damped');
+  });
+
   it('doubts an amplitude that grows', () => {
     expect(codes(ringDownOf({ gamma_per_s: -0.03 }))).toContain('doubt amplitude_grows');
+  });
+});
+
+describe('an angle followed wrongly by what depends on the angle', () => {
+  it('takes a slight bend, as of a cast shadow, for no asymmetric well', () => {
+    // About what a cast shadow does: 0.09 degrees at 10.
+    const seen = (x: number) => -0.0009 * x * x;
+    const known = { ...KNOWN, fibreShare: { value: 0.02, u: 0.02 } };
+    for (const seed of [1, 2, 3, 4]) {
+      const d = { amplitude_deg: 10, fibre: 0.02 };
+      const straight = measured(ringDownOf(d, seed, known));
+      const outcome = ringDownOf({ ...d, seen }, seed, known);
+      const bent = measured(outcome);
+      expect(statusOf(outcome.checks)).toBe('measured');
+      expect(Math.abs(bent.f0_Hz.value - straight.f0_Hz.value)).toBeLessThan(0.5 * straight.f0_Hz.u);
+      expectWithin(bent.f0_Hz.value, 0.9, bent.f0_Hz.u);
+      expectWithin(bent.equilibrium.value, REST_deg * DEG, bent.equilibrium.u);
+    }
+  });
+
+  it('doubts an angle that a hard shadow distorts, and covers what that does', () => {
+    // As measured on a drawn recording: the amplitude comes out a fifth too small.
+    const seen = (x: number) => -0.24 * x + 0.017 * x * x + 0.0008 * x ** 3;
+    for (const seed of [1, 2, 3]) {
+      const outcome = ringDownOf({ amplitude_deg: 8.5, seen, noise_deg: 0.04 }, seed);
+      const r = measured(outcome);
+      expect(codes(outcome)).toContain('doubt angle_distorted');
+      expectWithin(r.f0_Hz.value, 0.9, r.f0_Hz.u, 3);
+    }
+  });
+
+  it('doubts corners in it', () => {
+    // Held back by up to 0.2 degrees, and a wave near the middle.
+    for (const seen of [
+      (x: number) => -Math.max(-0.2, Math.min(0.2, x)),
+      (x: number) => (Math.abs(x) < 2 ? 0.25 * Math.sin((Math.PI * x) / 2) : 0),
+    ]) {
+      const outcome = ringDownOf({ seen });
+      expect(codes(outcome)).toContain('doubt angle_distorted');
+      expectWithin(measured(outcome).f0_Hz.value, 0.9, measured(outcome).f0_Hz.u, 3);
+    }
+  });
+
+  it('sees none where there is none', () => {
+    for (let seed = 1; seed <= 20; seed++) {
+      const correlation = (seed % 4) * 0.3;
+      expect(codes(ringDownOf({ correlation, drag: 0.01 }, 60 + seed))).not.toContain('doubt angle_distorted');
+    }
   });
 });
 
@@ -334,6 +396,7 @@ describe('how it was filmed', () => {
       ...ringDownOf({ swing: { f_Hz: 1.42, amplitude_px: 4, leak_deg: 0.1 } }).checks,
       ...ringDownOf({}, 1, { ...PLAN, view: 'side', facing_rad: 85 * DEG, u_time_scale: 1e-3 }).checks,
       ...ringDownOf({ swing: { f_Hz: 0.93, amplitude_px: 4, leak_deg: 0.1 } }, 6).checks,
+      ...ringDownOf({ gamma_per_s: 0.5, seen: (x) => 0.03 * x * x }).checks,
     ];
     expect(all.length).toBeGreaterThan(4);
     for (const { message } of all) {
