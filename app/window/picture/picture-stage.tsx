@@ -1,4 +1,5 @@
 import { useEffect, useRef } from 'preact/hooks';
+import { sized } from '../plots/canvas-size.ts';
 import { viewDraft } from '../state/bar.ts';
 import { drawing, panel, pictureSize, zoom, zoomNow } from '../state/picture-tools.ts';
 import { playing, shown, wantWidth } from '../state/pictures.ts';
@@ -51,12 +52,13 @@ export function PictureStage() {
     const context = surface?.getContext('2d');
     if (!surface || !context) return;
     const ratio = devicePixelRatio;
-    surface.width = Math.round(size.width * ratio);
-    surface.height = Math.round(size.height * ratio);
+    sized(surface, size.width * ratio, size.height * ratio);
+    context.setTransform(ratio, 0, 0, ratio, 0, 0);
+    context.clearRect(0, 0, size.width, size.height);
     if (!picked || picked.recording !== recording.value?.id) return;
     context.imageSmoothingEnabled = now.scale < 4;
-    context.imageSmoothingQuality = 'high';
-    context.setTransform(ratio, 0, 0, ratio, 0, 0);
+    // A picture that stands for a thirtieth of a second needn't be as fine as one that stays.
+    context.imageSmoothingQuality = playing.value ? 'low' : 'high';
     context.drawImage(picked.bitmap, now.x, now.y, picture.width * now.scale, picture.height * now.scale);
   }, [picked, now.scale, now.x, now.y, size.width, size.height]);
 

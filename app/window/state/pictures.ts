@@ -20,9 +20,15 @@ export const wantedWidth_px = signal(960);
 /** While a stretch plays, its pictures come by themselves. */
 export const playing = signal<{ readonly job: string } | null>(null);
 
-/** Shows a picture as the host sent it. */
+let begun = 0;
+let newestShown = 0;
+
+/** Shows a picture as the host sent it; of those whose decoding overlaps never an older one after a newer. */
 export async function showPicture(recordingId: string, picture: Picture): Promise<void> {
+  const mine = ++begun;
   const bitmap = await bitmapOf(picture);
+  if (mine < newestShown) return bitmap.close();
+  newestShown = mine;
   const before = shown.peek();
   shown.value = { recording: recordingId, index: picture.index, time_s: picture.time_s, bitmap };
   if (before) retire(before.bitmap);

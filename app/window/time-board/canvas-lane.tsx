@@ -1,4 +1,5 @@
 import { useEffect, useRef } from 'preact/hooks';
+import { sized } from '../plots/canvas-size.ts';
 
 interface CanvasLaneProps {
   readonly width: number;
@@ -17,9 +18,9 @@ export function CanvasLane({ width, height, label, draw, after }: CanvasLaneProp
     const context = surface?.getContext('2d');
     if (!surface || !context || width <= 0) return;
     const ratio = devicePixelRatio;
-    surface.width = Math.round(width * ratio);
-    surface.height = Math.round(height * ratio);
+    sized(surface, width * ratio, height * ratio);
     context.setTransform(ratio, 0, 0, ratio, 0, 0);
+    context.clearRect(0, 0, width, height);
     draw(context, width, height);
   }, [width, height, ...after]);
   return <canvas ref={canvas} role="img" aria-label={label} style={{ width: `${width}px`, height: `${height}px` }} />;
