@@ -17,9 +17,13 @@ export * from './contract/wire.ts';
 /** Version of this contract; window and host must agree. */
 export const CONTRACT_VERSION = 1;
 
-/** What can be exported. `csvw` is the metadata file that goes with the table, `trace` the trace of one segment. */
+/**
+ * What can be exported. `csvw` is the metadata file that goes with the table, `trace` the trace of one segment; `report.pdf` is printed by
+ * the desktop shell, in a browser by the browser itself.
+ */
 export type ExportItem =
   | { readonly kind: 'results.csv' | 'results.json' | 'csvw' | 'report' | 'session' }
+  | { readonly kind: 'report.pdf' }
   | { readonly kind: 'trace'; readonly segment: string };
 
 /** Every call of the window on the host. Each takes one object and answers once, or is refused with a `HostError`. */
@@ -147,6 +151,7 @@ const commandState = z.strictObject({
 });
 const exportItem = z.discriminatedUnion('kind', [
   z.strictObject({ kind: z.enum(['results.csv', 'results.json', 'csvw', 'report', 'session']) }),
+  z.strictObject({ kind: z.literal('report.pdf') }),
   z.strictObject({ kind: z.literal('trace'), segment: v.id }),
 ]);
 const LARGEST_DRAWING_BYTES = 64 * 1024 * 1024;

@@ -20,6 +20,8 @@ interface CommandEntry {
   readonly id: string;
   readonly menu: Menu;
   readonly label: string;
+  /** What it is called where a browser shows the window and does it in its own way; left out: the same. */
+  readonly inBrowser?: string;
   /**
    * In Electron's accelerator notation (https://www.electronjs.org/docs/latest/api/accelerator), null: none.
    * Without CmdOrCtrl it is for the window alone and is not obeyed while a text field has the focus.
@@ -42,6 +44,14 @@ export const commands = [
   { id: 'export-json', menu: 'file', label: 'Export results (JSON)…', accelerator: null, needs: ['results'] },
   { id: 'export-traces', menu: 'file', label: 'Export traces (CSV)…', accelerator: null, needs: ['results'] },
   { id: 'export-report', menu: 'file', label: 'Export page to print…', accelerator: null, needs: ['results'] },
+  {
+    id: 'report-pdf',
+    menu: 'file',
+    label: 'Save report as PDF…',
+    inBrowser: 'Print the report or save it as PDF…',
+    accelerator: 'CmdOrCtrl+P',
+    needs: ['results'],
+  },
   { id: 'export-plot-svg', menu: 'file', label: 'Export plot (SVG)…', accelerator: null, needs: ['results'] },
   { id: 'export-plot-png', menu: 'file', label: 'Export plot (PNG)…', accelerator: null, needs: ['results'] },
   { id: 'undo', menu: 'edit', label: 'Undo', accelerator: 'CmdOrCtrl+Z', needs: ['canUndo'] },

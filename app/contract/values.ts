@@ -190,11 +190,13 @@ export type BarFound = z.infer<typeof barFound>;
 /**
  * What became of something that was to be saved. `file`: it is at the place that the user chose. `download`: the browser is to fetch
  * `address` (same origin, works once). `needs_place`: nothing was written; ask the user where, then call again with the token.
+ * `to_print`: nothing was written; the browser is to show the page at `address` (same origin, works once) and print it.
  */
 export const saved = z.discriminatedUnion('saved', [
   z.object({ saved: z.literal('file'), name: z.string() }),
   z.object({ saved: z.literal('download'), name: z.string(), address: z.string() }),
   z.object({ saved: z.literal('needs_place'), suggestedName: z.string() }),
+  z.object({ saved: z.literal('to_print'), address: z.string() }),
 ]);
 export type Saved = z.infer<typeof saved>;
 

@@ -19,9 +19,9 @@ export class Downloads {
     this.#now_ms = now_ms;
   }
 
-  /** @returns the path to fetch it from. */
-  offer(download: Download): string {
-    const address = `/download/${randomBytes(18).toString('base64url')}`;
+  /** @param way `print`: a page to be shown and printed, not kept. @returns the path to fetch it from. */
+  offer(download: Download, way: 'download' | 'print' = 'download'): string {
+    const address = `/${way}/${randomBytes(18).toString('base64url')}`;
     this.#waiting.set(address, { ...download, since_ms: this.#now_ms() });
     for (const [old, { since_ms }] of this.#waiting) {
       const tooOld = this.#now_ms() - since_ms > LONGEST_WAIT_MS;

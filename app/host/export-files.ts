@@ -25,8 +25,11 @@ export interface ExportSource {
   readonly madeOn: string;
 }
 
+/** What is a text: all but what has to be printed. */
+export type TextItem = Exclude<ExportItem, { kind: 'report.pdf' }>;
+
 /** One thing to export; null: there is none (a segment without a trace). The same texts as the command line writes. */
-export function exportFile(item: ExportItem, source: ExportSource): ExportFile | null {
+export function exportFile(item: TextItem, source: ExportSource): ExportFile | null {
   const { results, segments } = source;
   switch (item.kind) {
     case 'results.csv':
@@ -54,8 +57,8 @@ export function exportFile(item: ExportItem, source: ExportSource): ExportFile |
 
 /** Everything that can be exported. */
 export function allExports(source: ExportSource): ExportFile[] {
-  const traces = source.results.segments.map((s): ExportItem => ({ kind: 'trace', segment: s.id }));
-  const items: ExportItem[] = [
+  const traces = source.results.segments.map((s): TextItem => ({ kind: 'trace', segment: s.id }));
+  const items: TextItem[] = [
     { kind: 'session' },
     ...traces,
     { kind: 'csvw' },

@@ -1,3 +1,4 @@
+import type { Saved } from '../contract.ts';
 import { allExports, type ExportFile, type ExportSource, exportFile } from './export-files.ts';
 import type { Parts, Some } from './parts.ts';
 import type { Savable } from './saving.ts';
@@ -18,7 +19,15 @@ export function savingCalls({
     const session = await keeper.handOut(false);
     return { results, segments: measuring.current(), session, madeOn: options.now().slice(0, 10) };
   };
-  const savable = (file: ExportFile): Savable => ({ ...file, bytes: file.text });
+  const report = async (token: string | undefined, signal: AbortSignal): Promise<Saved> => {
+    if (options.shell && token === undefined) return { saved: 'needs_place', suggestedName: 'report.pdf' };
+    const page = exportFile({ kind: 'report' }, await source(signal));
+    if (!page) throw new Refusal('bad_input', 'There is no report yet.');
+    if (!options.shell) return saving.toPrint(savable(page));
+    const bytes = await options.shell.printPdf(page.text);
+    return saving.save({ name: 'report.pdf', type: 'application/pdf', bytes }, token);
+  };
+  const savable = (file: ExportFile) => ({ ...file, bytes: file.text }) satisfies Savable;
   return {
     save: async ({ token, asCopy }) => {
       const { place, name } = keeper.need();
@@ -32,6 +41,7 @@ export function savingCalls({
       return saving.save({ name, type: 'application/json', bytes: text }, undefined);
     },
     exportItem: async ({ item, token }, { signal }) => {
+      if (item.kind === 'report.pdf') return report(token, signal);
       const file = exportFile(item, await source(signal));
       if (!file) throw new Refusal('bad_input', 'There is no trace of this segment: no bar was followed in it.');
       return saving.save(savable(file), token);

@@ -56,6 +56,13 @@ export class Saving {
     return address === undefined ? null : { saved: 'download', name, address };
   }
 
+  /** Offers a page for the browser to print. @throws Refusal where there is no browser. */
+  toPrint(page: Savable & { readonly bytes: string }): Saved {
+    const address = this.#downloads?.offer({ ...page, bytes: Buffer.from(page.bytes) }, 'print');
+    if (address === undefined) throw new Refusal('bad_argument', 'There is no browser here that could print.');
+    return { saved: 'to_print', address };
+  }
+
   /** @throws Refusal for a token that was never given out for this. */
   placeOf(token: string, use: 'read' | 'write' | 'folder'): string {
     const path = this.#tokens.path(token, use);

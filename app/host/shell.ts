@@ -6,6 +6,8 @@ export interface Shell {
   chooseFile(purpose: 'open' | 'recording'): Promise<string | null>;
   choosePlace(suggestedName: string): Promise<string | null>;
   chooseFolder(): Promise<string | null>;
+  /** Prints a page without scripts to PDF. @returns the file's bytes. @throws Error with the sentence for the user. */
+  printPdf(html: string): Promise<Uint8Array>;
   menuState(menu: {
     readonly state: CommandState;
     readonly undoLabel: string | null;

@@ -5,7 +5,7 @@ import { WebSocketServer } from 'ws';
 import type { FileToken, Transport } from '../contract.ts';
 import type { Download } from '../host/downloads.ts';
 import type { PageFiles } from '../page/page-files.ts';
-import { securityHeaders } from '../page/security-headers.ts';
+import { reportHeaders, securityHeaders } from '../page/security-headers.ts';
 import { Gate, type Refusal } from './gate.ts';
 import { socketTransport } from './socket-transport.ts';
 import { receiveUpload, UploadRefused } from './upload.ts';
@@ -93,9 +93,12 @@ async function answer(
   if (!reads) return say(response, 405, 'Only GET and HEAD are answered here.', { Allow: 'GET, HEAD' });
   const file = options.page.get(path);
   if (file) return send(response, method, { 'Content-Type': file.type }, file.bytes);
-  const download = path.startsWith('/download/') && method === 'GET' ? options.takeDownload(path) : null;
+  const toShow = path.startsWith('/print/');
+  const waits = (toShow || path.startsWith('/download/')) && method === 'GET';
+  const download = waits ? options.takeDownload(path) : null;
   if (!download) return say(response, 404, 'There is nothing here.');
-  send(response, method, { 'Content-Type': download.type, ...asAttachment(download.name) }, download.bytes);
+  const way = toShow ? reportHeaders() : asAttachment(download.name);
+  send(response, method, { ...way, 'Content-Type': download.type }, download.bytes);
 }
 
 function enter(request: IncomingMessage, response: ServerResponse, gate: Gate, query: URLSearchParams): void {

@@ -14,6 +14,7 @@ import { firstMenu, type MenuFacts, menuTemplate } from './menu-template.ts';
 import { denyPermissions } from './navigation.ts';
 import { fileAmong } from './opened-file.ts';
 import { servePage } from './page-protocol.ts';
+import { printPage } from './print-page.ts';
 import { isOurPage } from './sender.ts';
 import { placeWindow, readWindowState, writeWindowState } from './window-state.ts';
 
@@ -63,6 +64,7 @@ export async function startShell(): Promise<void> {
         },
         menu: showMenu,
         dialog: (wish) => showDialog(window, wish),
+        print: printPage,
         died: () => void hostDied(),
       },
     );

@@ -10,6 +10,8 @@ export interface HostListener {
   readonly menu: (facts: MenuFacts) => void;
   /** Shows a native dialog. */
   readonly dialog: (wish: DialogWish) => Promise<string | null>;
+  /** Prints a page to PDF. */
+  readonly print: (html: unknown) => Promise<Uint8Array>;
   /** The process has ended without being asked to. */
   readonly died: (code: number) => void;
 }
@@ -98,6 +100,9 @@ export class HostLink {
       case 'dialog':
         void this.#answer(message.number, message.wish);
         break;
+      case 'print':
+        void this.#print(message.number, message.html);
+        break;
       case 'reply':
         this.#asked.get(message.number)?.resolve(message);
         this.#asked.delete(message.number);
@@ -110,6 +115,11 @@ export class HostLink {
   async #answer(number: number, wish: DialogWish): Promise<void> {
     const path = await this.#listener.dialog(wish).catch(() => null);
     this.#post({ kind: 'chosen', number, path });
+  }
+
+  async #print(number: number, html: unknown): Promise<void> {
+    const pdf = await this.#listener.print(html).catch(() => null);
+    this.#post({ kind: 'printed', number, pdf });
   }
 
   #exited(code: number): void {

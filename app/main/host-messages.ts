@@ -34,14 +34,16 @@ export type ToHost =
   | { readonly kind: 'command'; readonly id: CommandId }
   | { readonly kind: 'save'; readonly number: number; readonly path: string | null }
   | { readonly kind: 'close'; readonly number: number; readonly discard: boolean }
-  | { readonly kind: 'chosen'; readonly number: number; readonly path: string | null };
+  | { readonly kind: 'chosen'; readonly number: number; readonly path: string | null }
+  | { readonly kind: 'printed'; readonly number: number; readonly pdf: Uint8Array | null };
 
-/** From the host process to the shell. A `dialog` is answered by `chosen`. */
+/** From the host process to the shell. A `dialog` is answered by `chosen`, a `print` by `printed`. */
 export type FromHost =
   | { readonly kind: 'started'; readonly problem: string | null }
   | { readonly kind: 'document'; readonly facts: DocumentFacts }
   | { readonly kind: 'menu'; readonly facts: MenuFacts }
   | { readonly kind: 'dialog'; readonly number: number; readonly wish: DialogWish }
+  | { readonly kind: 'print'; readonly number: number; readonly html: string }
   | {
       readonly kind: 'reply';
       readonly number: number;

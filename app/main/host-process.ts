@@ -18,6 +18,7 @@ export interface ParentPort {
 export function serveShell(parent: ParentPort, exit: (code: number) => void): void {
   const tell = (message: FromHost) => parent.postMessage(message);
   const asked = new Map<number, (path: string | null) => void>();
+  const printing = new Map<number, (pdf: Uint8Array | null) => void>();
   const early: Port[] = [];
   let nextDialog = 1;
   let host: Host | null = null;
@@ -32,6 +33,15 @@ export function serveShell(parent: ParentPort, exit: (code: number) => void): vo
     chooseFile: (purpose) => ask({ dialog: 'file', purpose }),
     choosePlace: (suggestedName) => ask({ dialog: 'place', suggestedName }),
     chooseFolder: () => ask({ dialog: 'folder' }),
+    printPdf: async (html) => {
+      const number = nextDialog++;
+      const pdf = await new Promise<Uint8Array | null>((resolve) => {
+        printing.set(number, resolve);
+        tell({ kind: 'print', number, html });
+      });
+      if (pdf === null) throw new InputError('The report could not be printed to a PDF.');
+      return pdf;
+    },
     menuState: (facts) => tell({ kind: 'menu', facts }),
     documentChanged: (facts) => tell({ kind: 'document', facts }),
   };
@@ -98,6 +108,10 @@ export function serveShell(parent: ParentPort, exit: (code: number) => void): vo
       case 'chosen':
         asked.get(message.number)?.(message.path);
         asked.delete(message.number);
+        break;
+      case 'printed':
+        printing.get(message.number)?.(message.pdf);
+        printing.delete(message.number);
         break;
       default:
         message satisfies never;

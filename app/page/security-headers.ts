@@ -11,6 +11,15 @@ const policy = (connect: string): string =>
     "frame-ancestors 'none'",
   ].join('; ');
 
+/** Headers of the report page, which has no script, reaches nothing and carries its style and drawings inside. */
+export function reportHeaders(): Readonly<Record<string, string>> {
+  const policy = ["default-src 'none'", "style-src 'unsafe-inline'", "base-uri 'none'"];
+  return {
+    ...securityHeaders("'none'"),
+    'Content-Security-Policy': [...policy, "form-action 'none'", "frame-ancestors 'none'"].join('; '),
+  };
+}
+
 /**
  * Headers of every answer that carries the window.
  * @param connect sources that the page may connect to: `'self'` on loopback, `'none'` in Electron, which has a message port.

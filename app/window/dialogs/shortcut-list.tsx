@@ -1,4 +1,4 @@
-import { commands, type Menu, menuLabels } from '../../contract.ts';
+import { type Command, commands, type Menu, menuLabels } from '../../contract.ts';
 import { keysText } from '../menu/accelerators.ts';
 import { closeDialog } from '../state/dialogs.ts';
 import { DialogFrame } from './dialog-frame.tsx';
@@ -6,11 +6,15 @@ import { DialogFrame } from './dialog-frame.tsx';
 /** Keys that belong to one place rather than to a command. */
 const PLACES: readonly (readonly [string, string])[] = [
   ['Region or lens on the picture', 'Arrows move, Alt+arrows resize, Shift by ten pixels'],
+  ['Guide over the picture', 'Arrows by one, Shift+arrows by ten'],
   ['Edge of a segment', 'Arrows by a frame, Shift+arrows by a second'],
   ['Current', 'Enter takes it and goes on to the next segment'],
   ['Time board', 'Wheel zooms, Shift+wheel moves along'],
   ['Picture', 'Wheel zooms, dragging beside the region moves it'],
 ];
+
+/** A command's words, where a browser shows the window or the shell. */
+const labelHere = (command: Command) => (globalThis.needlebeat ? command.label : (command.inBrowser ?? command.label));
 
 /** All shortcuts, by menu. */
 export function ShortcutList() {
@@ -26,7 +30,7 @@ export function ShortcutList() {
               <dl>
                 {own.map((c) => (
                   <div key={c.id}>
-                    <dt>{c.label.replace('…', '')}</dt>
+                    <dt>{labelHere(c).replace('…', '')}</dt>
                     <dd>
                       <kbd>{keysText(c.accelerator ?? '')}</kbd>
                     </dd>

@@ -137,7 +137,7 @@ function Item({ command, onDone }: { command: Command; onDone(): void }) {
       }}
     >
       <span>
-        {command.label}
+        {command.inBrowser ?? command.label}
         {enabled && what ? `: ${what}` : ''}
       </span>
       {command.accelerator === null ? null : <kbd>{keysText(command.accelerator)}</kbd>}

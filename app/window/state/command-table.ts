@@ -6,7 +6,7 @@ import { revealCursor, showAround, showWhole, zoomBoard } from './board.ts';
 import { copyTable, exportPlot } from './copies.ts';
 import { askText, dialog } from './dialogs.ts';
 import { documentState, edit, session, step } from './document.ts';
-import { chooseAndOpen, closeDocument, exportAll, exportItem, openDemo, save } from './files.ts';
+import { chooseAndOpen, closeDocument, exportAll, exportItem, openDemo, printReport, save } from './files.ts';
 import { follow, following, stopFollowing } from './following.ts';
 import { ask, hello } from './host.ts';
 import { markStart } from './mark.ts';
@@ -51,6 +51,7 @@ const handlers: Readonly<Record<CommandId, () => unknown>> = {
   'export-json': () => exportItem({ kind: 'results.json' }),
   'export-traces': exportTraces,
   'export-report': () => exportItem({ kind: 'report' }),
+  'report-pdf': printReport,
   'export-plot-svg': () => exportPlot('svg'),
   'export-plot-png': () => exportPlot('png'),
   undo: () => step('undo'),

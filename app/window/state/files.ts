@@ -5,7 +5,7 @@ import { tokenOfFile } from '../transport.ts';
 import { askUser } from './dialogs.ts';
 import { documentState, editsSettled, recordings } from './document.ts';
 import { ask, hello, host, tellFailure } from './host.ts';
-import { tell } from './notices.ts';
+import { tell, tellMistake } from './notices.ts';
 
 /** What is being opened or handed over just now, for the progress line; null: nothing. */
 export const opening = signal<string | null>(null);
@@ -126,6 +126,32 @@ export async function exportItem(item: ExportItem): Promise<void> {
   if (saved) await settle(saved, (token) => ask('exportItem', { item, token }));
 }
 
+/** Saves the report as a PDF; in a browser it is opened in a tab of its own and the browser's print dialog over it. */
+export async function printReport(): Promise<void> {
+  if (hello.value?.dialogs) return exportItem({ kind: 'report.pdf' });
+  // The tab is opened at once: later the browser would take it for an advertisement.
+  const tab = window.open('about:blank', '_blank');
+  if (!tab) return tellMistake('The browser did not let the report open in a tab of its own. Allow it for this page.');
+  await editsSettled();
+  const page = await ask('exportItem', { item: { kind: 'report.pdf' } });
+  if (page?.saved !== 'to_print') return tab.close();
+  tab.location.replace(page.address);
+  await loaded(tab, page.address);
+  tab.print();
+}
+
+/** Resolves once a tab shows a page whole, or has been closed. */
+function loaded(tab: Window, address: string): Promise<void> {
+  return new Promise((resolve) => {
+    const looking = setInterval(() => {
+      const shown = !tab.closed && tab.location.pathname === address && tab.document.readyState === 'complete';
+      if (!shown && !tab.closed) return;
+      clearInterval(looking);
+      resolve();
+    }, 50);
+  });
+}
+
 /** Writes everything that can be exported. */
 export async function exportAll(): Promise<void> {
   await editsSettled();
@@ -149,6 +175,7 @@ async function settle(saved: Saved, again: (token: string) => Promise<Saved | nu
     const next = place ? await again(place.token) : null;
     return next !== null && next.saved !== 'needs_place' && settle(next, again, say);
   }
+  if (saved.saved === 'to_print') return false;
   if (saved.saved === 'download') {
     const link = document.createElement('a');
     link.href = saved.address;

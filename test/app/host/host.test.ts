@@ -327,6 +327,7 @@ describe.skipIf(!ready)('the host', () => {
     await start({
       chooseFile: async () => join(sample, 'boathouse.needlebeat.json'),
       choosePlace: async (name) => join(home, name),
+      printPdf: async () => new Uint8Array(),
       chooseFolder: async () => out,
       menuState: (menu) => menus.push(menu),
       documentChanged: (next) => facts.push(next),
@@ -342,6 +343,11 @@ describe.skipIf(!ready)('the host', () => {
     expect(await client.call('saveBytes', { name: 'plot.png', bytes })).toEqual({
       saved: 'needs_place',
       suggestedName: 'plot.png',
+    });
+    // Asked before it is printed.
+    expect(await client.call('exportItem', { item: { kind: 'report.pdf' } })).toEqual({
+      saved: 'needs_place',
+      suggestedName: 'report.pdf',
     });
     const place = await client.call('choosePlace', { suggestedName: 'plot.png' });
     expect(await client.call('saveBytes', { name: 'plot.png', bytes, token: place?.token })).toEqual({

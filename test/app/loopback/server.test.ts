@@ -195,6 +195,22 @@ describe('what is answered', () => {
   });
 });
 
+describe('a page to print', () => {
+  it('is shown once, without scripts and without reaching anything', async () => {
+    const Cookie = await enter();
+    const page = { name: 'report.html', type: 'text/html; charset=utf-8', bytes: Buffer.from('<!doctype html>') };
+    const address = downloads.offer(page, 'print');
+    expect((await ask(address)).status).toBe(403);
+    const reply = await ask(address, { Cookie });
+    expect([reply.status, reply.body]).toEqual([200, '<!doctype html>']);
+    expect(reply.headers['content-disposition']).toBeUndefined();
+    const policy = String(reply.headers['content-security-policy']);
+    expect(policy).toContain("default-src 'none'");
+    expect(policy).not.toMatch(/script-src|connect-src|http/);
+    expect((await ask(address, { Cookie })).status).toBe(404);
+  });
+});
+
 describe('uploads', () => {
   const send = async (name: string, body: string, extra: Record<string, string> = {}) =>
     ask('/upload', { Cookie: await enter(), Origin: server.origin, 'X-File-Name': name, ...extra }, 'POST', body);

@@ -17,7 +17,7 @@ export function fakeElectron() {
     exit: vi.fn(),
   });
   const session = {
-    protocol: { handle: vi.fn() },
+    protocol: { handle: vi.fn(), unhandle: vi.fn() },
     setPermissionRequestHandler: vi.fn(),
     setPermissionCheckHandler: vi.fn(),
     setDevicePermissionHandler: vi.fn(),
@@ -25,7 +25,11 @@ export function fakeElectron() {
   const windows: FakeWindow[] = [];
   class FakeWindow extends EventEmitter {
     readonly options: { webPreferences: Record<string, unknown> };
-    readonly webContents = { mainFrame: { url: 'app://needlebeat/index.html', postMessage: vi.fn() }, reload: vi.fn() };
+    readonly webContents = {
+      mainFrame: { url: 'app://needlebeat/index.html', postMessage: vi.fn() },
+      reload: vi.fn(),
+      printToPDF: vi.fn(async (_options: object) => new Uint8Array([37, 80, 68, 70])),
+    };
     readonly loaded: string[] = [];
     title = '';
     constructor(options: { webPreferences: Record<string, unknown> }) {

@@ -183,6 +183,42 @@ describe('the desktop shell', () => {
     expect(window().webContents.reload).toHaveBeenCalled();
   });
 
+  it('prints a page to PDF in a hidden window that runs no script and reaches nothing', async () => {
+    const html = '<!doctype html><title>Report</title>';
+    host().emit('message', { kind: 'print', number: 12, html });
+    await vi.waitFor(() => expect(host().posted.at(-1)).toMatchObject({ kind: 'printed', number: 12 }), 20_000);
+    expect(host().posted.at(-1)).toMatchObject({ pdf: new Uint8Array([37, 80, 68, 70]) });
+    const hidden = fake.windows.at(-1)!;
+    expect(hidden.options).toMatchObject({
+      show: false,
+      webPreferences: { javascript: false, sandbox: true, contextIsolation: true, nodeIntegration: false },
+    });
+    expect(hidden.options.webPreferences).not.toHaveProperty('preload');
+    const [partition] = fake.session.fromPartition.mock.calls.at(-1) as unknown as [string];
+    expect(partition.startsWith('persist:')).toBe(false);
+    expect(fake.fakeSession.setPermissionRequestHandler).toHaveBeenCalledTimes(2);
+
+    const [address] = hidden.loaded;
+    const [, serve] = fake.fakeSession.protocol.handle.mock.calls.at(-1) as [string, (r: { url: string }) => Response];
+    const page = serve({ url: address! });
+    expect(await page.text()).toBe(html);
+    const policy = page.headers.get('Content-Security-Policy') ?? '';
+    expect(policy).toContain("default-src 'none'");
+    expect(policy).not.toContain('script-src');
+    expect(serve({ url: pageAddress }).status).toBe(404);
+    expect(hidden.destroy).toHaveBeenCalled();
+    expect(window().destroy).not.toHaveBeenCalled();
+  });
+
+  it('prints nothing that isn’t a page', async () => {
+    for (const html of [null, 7, 'plain text', `<!doctype html>${'x'.repeat(64 * 1024 * 1024)}`]) {
+      host().emit('message', { kind: 'print', number: 13, html });
+      await vi.waitFor(() => expect(host().posted.at(-1)).toMatchObject({ kind: 'printed', pdf: null }), 20_000);
+      host().posted.push({ kind: 'seen', ports: [] });
+    }
+    expect(fake.windows).toHaveLength(1);
+  });
+
   it('passes the file of a second start on, checked to be one', () => {
     const before = host().posted.length;
     fake.app.emit('second-instance', {}, [], '/', { arguments: ['.', '--flag', '/no/such/file.mp4'] });

@@ -256,6 +256,24 @@ export class BenchDriver {
     return files;
   }
 
+  /** The page in another tab that an action has the browser print; the dialog itself is only counted. */
+  async printed(action: () => Promise<void>): Promise<{ title: string; text: string; prints: number }> {
+    await this.#context.addInitScript(() => {
+      const counted = globalThis as { prints?: number };
+      window.print = () => {
+        counted.prints = (counted.prints ?? 0) + 1;
+      };
+    });
+    const opened = this.#context.waitForEvent('page');
+    await action();
+    const tab = await opened;
+    const prints = () => tab.evaluate(() => (globalThis as { prints?: number }).prints ?? 0);
+    await expect.poll(prints).toBeGreaterThan(0);
+    const found = { title: await tab.title(), text: await tab.locator('body').innerText(), prints: await prints() };
+    await tab.close();
+    return found;
+  }
+
   /** What the clipboard holds, pasted into a field as a user would. */
   async pasted(): Promise<string> {
     await this.page.evaluate(() =>

@@ -182,6 +182,13 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', { timeou
     expect([...png.values()][0]!.subarray(1, 4).toString()).toBe('PNG');
   });
 
+  test('the report opens in a tab of its own and the browser’s print dialog over it', async () => {
+    const report = await bench.printed(() => bench.choose('File', 'Print the report or save it as PDF…'));
+    expect(report.title).toContain('Needlebeat report');
+    expect(report.text).toContain('s02');
+    expect(report.prints).toBe(1);
+  });
+
   test('the table that is copied holds the results of the same session, cell by cell', async () => {
     await bench.choose('Edit', 'Copy table');
     await bench.page.locator('.notice', { hasText: 'clipboard: 3 rows' }).waitFor();
