@@ -8,6 +8,7 @@ export type { Session, SessionRecording, SessionSegment, SessionView } from '../
 export * from './contract/commands.ts';
 export type * from './contract/transport.ts';
 export type * from './contract/values.ts';
+export { SHEETS } from './contract/values.ts';
 export * from './contract/wire.ts';
 
 /*
@@ -37,6 +38,10 @@ export interface HostApi {
     uploads: boolean;
   };
   about(a: Empty): v.AboutFacts;
+  /** The layout that a window before this one had; null: none is known. */
+  layout(a: Empty): v.Layout | null;
+  /** Keeps the layout for the next start, in the user's folder. */
+  keepLayout(a: { layout: v.Layout }): Empty;
 
   getDocument(a: Empty): v.DocumentState;
   /** Opens a session or a recording. `add`: a recording is added to the session that is open (undoable) instead of starting a new one. */
@@ -172,6 +177,8 @@ export const calls = {
     }),
   },
   about: { args: empty, result: v.aboutFacts },
+  layout: { args: empty, result: v.layout.nullable() },
+  keepLayout: { args: z.strictObject({ layout: v.layout }), result: empty },
   getDocument: { args: empty, result: v.documentState },
   openFile: {
     args: z.strictObject({ token, add: z.boolean().optional() }),

@@ -187,6 +187,16 @@ export const barFound = z.discriminatedUnion('found', [
 ]);
 export type BarFound = z.infer<typeof barFound>;
 
+const share = z.number().min(0).max(1);
+export const SHEETS = ['view', 'segment', 'field', 'apparatus'] as const;
+/** How the window was laid out last: shares of its width that each sheet takes, of its height that the time board takes, the open sheet. */
+export const layout = z.strictObject({
+  sheets: z.strictObject({ view: share, segment: share, field: share, apparatus: share }),
+  board: share,
+  sheet: z.enum(SHEETS),
+});
+export type Layout = z.infer<typeof layout>;
+
 /**
  * What became of something that was to be saved. `file`: it is at the place that the user chose. `download`: the browser is to fetch
  * `address` (same origin, works once). `needs_place`: nothing was written; ask the user where, then call again with the token.

@@ -4,14 +4,17 @@ import { aboutFacts } from './about.ts';
 import type { Parts, Some } from './parts.ts';
 import { Refusal } from './serve-window.ts';
 
-/** Calls about the session that is open. */
+/** Calls about the program itself and the session that is open. */
 export function documentCalls({
   options,
   keeper,
   saving,
+  layout,
 }: Parts): Some<
   | 'hello'
   | 'about'
+  | 'layout'
+  | 'keepLayout'
   | 'getDocument'
   | 'openFile'
   | 'openDemo'
@@ -34,6 +37,11 @@ export function documentCalls({
       return { contract: CONTRACT_VERSION, ...program, dialogs: shell !== null, uploads: browser };
     },
     about: () => aboutFacts(options.env, options.runtime),
+    layout: () => layout.read(),
+    keepLayout: async ({ layout: next }) => {
+      await layout.keep(next);
+      return {};
+    },
     getDocument: () => keeper.state(),
     openFile: async ({ token, add }) => ({
       opened: await keeper.openPath(saving.placeOf(token, 'read'), add ?? false),

@@ -9,6 +9,7 @@ import { Downloads } from './downloads.ts';
 import { fitCalls } from './fit-calls.ts';
 import { Jobs } from './jobs.ts';
 import { KnownRecordings } from './known-recordings.ts';
+import { LayoutFile } from './layout-file.ts';
 import { MeasuredStore } from './measured-store.ts';
 import { Measuring } from './measuring.ts';
 import { OpenFiles } from './open-files.ts';
@@ -124,6 +125,7 @@ export async function startHost(options: HostOptions, file: string | null = null
     tools,
     tokens,
     saving: new Saving(tokens, downloads),
+    layout: new LayoutFile(folder.layout),
     jobs,
     pictures: new Pictures(),
     overviews: new Overviews(cache),

@@ -3,6 +3,7 @@ import type { TrackerPool } from '../../src/tracking/pool.ts';
 import type { AboutFacts, HostEvents } from '../contract.ts';
 import type { Calculator } from './calculator.ts';
 import type { Jobs } from './jobs.ts';
+import type { LayoutFile } from './layout-file.ts';
 import type { Measuring } from './measuring.ts';
 import type { Overviews } from './overviews.ts';
 import type { Pictures } from './pictures.ts';
@@ -46,6 +47,7 @@ export interface Parts {
   readonly tools: () => Promise<FfmpegTools>;
   readonly tokens: Tokens;
   readonly saving: Saving;
+  readonly layout: LayoutFile;
   readonly jobs: Jobs;
   readonly pictures: Pictures;
   readonly overviews: Overviews;

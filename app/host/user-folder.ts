@@ -23,6 +23,8 @@ export interface UserFolder {
   /** Traces that have been followed, and measured segments. */
   readonly cache: string;
   readonly recent: string;
+  /** How the window was laid out last. */
+  readonly layout: string;
   /** Where recordings were seen, and what their content was. */
   readonly known: string;
 }
@@ -34,6 +36,7 @@ export async function openUserFolder(path: string): Promise<UserFolder> {
     uploads: join(path, 'uploads'),
     cache: join(path, 'cache'),
     recent: join(path, 'recent.json'),
+    layout: join(path, 'layout.json'),
     known: join(path, 'recordings.json'),
   };
   await mkdir(path, { recursive: true, mode: 0o700 });

@@ -1,7 +1,8 @@
+import { SHEETS } from '../contract.ts';
 import { ApparatusSheet } from './apparatus-sheet/apparatus-sheet.tsx';
 import { FieldSheet } from './field-sheet/field-sheet.tsx';
 import { SegmentSheet } from './segment-sheet/segment-sheet.tsx';
-import { SHEETS, type Sheet, sheet } from './state/selection.ts';
+import { type Sheet, sheet } from './state/selection.ts';
 import { ViewSheet } from './view-sheet/view-sheet.tsx';
 
 const NAMES: Readonly<Record<Sheet, string>> = {

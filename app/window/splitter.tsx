@@ -4,6 +4,7 @@ import { boardShare, setShare, sheetShare } from './state/layout.ts';
 export function Splitter({ way }: { way: 'sheet' | 'board' }) {
   const share = way === 'sheet' ? sheetShare.value : boardShare.value;
   return (
+    // biome-ignore lint/a11y/useSemanticElements: an hr is a line between texts, this one is moved.
     <div
       class="splitter"
       data-way={way}

@@ -45,6 +45,7 @@ export function FieldPlot({ results }: { results: Results }) {
 
   return (
     <div ref={frame} class="field-plot">
+      {/* biome-ignore lint/a11y/useSemanticElements: SVG has no fieldset. */}
       <svg width={width} height={HEIGHT} role="group" aria-label={curves.title}>
         <PlotAxes left={LEFT} right={right} top={10} bottom={SPLIT} x={x} y={y} yLabel="f₀² / Hz²" />
         <PlotAxes
@@ -60,6 +61,7 @@ export function FieldPlot({ results }: { results: Results }) {
         {curve?.u ? <polygon class="fit-band" points={[...line(1), ...line(-1).reverse()].join(' ')} /> : null}
         {curve ? <polyline class="fit-line" points={line(0).join(' ')} /> : null}
         <line class="zero-line" x1={LEFT} x2={right} y1={r.place(0) ?? 0} y2={r.place(0) ?? 0} />
+        {/* biome-ignore lint/a11y/noAriaHiddenOnFocusable: these marks can’t take the keyboard, the points above can. */}
         <g aria-hidden="true">
           {points.map((p) =>
             p.residual === null ? null : (
@@ -81,6 +83,7 @@ function PlotPoint({ of: p, x, y, first }: { of: CurrentPoint; x: Scale; y: Scal
   const text = quantityText(p.value, p.u, 'Hz²').both;
   const state = `${p.used ? '' : ', not used'}${p.trusted ? '' : ', doubtful'}${p.sweep ? `, ${p.sweep}` : ''}`;
   return (
+    // biome-ignore lint/a11y/useSemanticElements: SVG has no button.
     <g
       class="plot-point"
       role="button"

@@ -24,6 +24,7 @@ export function BarOutline() {
     const region = rectangleOnPanel(now, v.region);
     const unit = looked.found.unit === 'deg' ? '°' : ' px';
     return (
+      // biome-ignore lint/a11y/noInteractiveElementToNoninteractiveRole: a g has no role of its own.
       <g class="bar-outline" role="img" aria-label={`Bar found at ${fixedText(looked.found.angle, 1)}${unit}`}>
         <polygon class="halo" points={path} />
         <polygon class="edge" points={path} />
@@ -43,6 +44,7 @@ export function BarOutline() {
   );
   if (!a || !b) return null;
   return (
+    // biome-ignore lint/a11y/noInteractiveElementToNoninteractiveRole: a g has no role of its own.
     <g class="bar-outline" role="img" aria-label="Axis of the bar as followed">
       <line class="halo" x1={a.x} y1={a.y} x2={b.x} y2={b.y} />
       <line class="edge" x1={a.x} y1={a.y} x2={b.x} y2={b.y} />

@@ -8,6 +8,8 @@ export function LensFrame() {
   const place = lensNow();
   const r = rectangleOnPanel(zoomNow(), place);
   return (
+    // biome-ignore lint/a11y/useSemanticElements: SVG has no fieldset.
+    // biome-ignore lint/a11y/noInteractiveElementToNoninteractiveRole: a g has no role of its own.
     <g
       class="lens-frame"
       tabindex={0}

@@ -105,7 +105,8 @@ export function PictureStage() {
         aria-label={picked ? `Frame ${picked.index} at ${picked.time_s.toFixed(3)} s` : 'No frame yet'}
       />
       <Reading />
-      <svg class="overlay" width={size.width} height={size.height}>
+      {/* biome-ignore lint/a11y/useSemanticElements: SVG has no fieldset. */}
+      <svg class="overlay" role="group" aria-label="Drawn over the picture" width={size.width} height={size.height}>
         <RegionFrame view={viewDraft.value ?? view.value} />
         <SideGuides view={viewDraft.value ?? view.value} />
         <ObliqueGuide view={viewDraft.value ?? view.value} />

@@ -14,6 +14,8 @@ export function RegionFrame({ view }: { view: SessionView | null }) {
     `Region: ${region.width} by ${region.height} pixels at ${region.x}, ${region.y}. ` +
     'Arrow keys move it, with Alt they resize it, with Shift by ten pixels.';
   return (
+    // biome-ignore lint/a11y/useSemanticElements: SVG has no fieldset.
+    // biome-ignore lint/a11y/noInteractiveElementToNoninteractiveRole: a g has no role of its own.
     <g
       class="region"
       tabindex={0}

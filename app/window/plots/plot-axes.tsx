@@ -17,6 +17,7 @@ export function PlotAxes({ left, right, top, bottom, x, y, xLabel, yLabel }: Plo
   const inside = (at: number | null, from: number, to: number): at is number =>
     at !== null && at >= from - 0.5 && at <= to + 0.5;
   return (
+    // biome-ignore lint/a11y/noAriaHiddenOnFocusable: lines and their labels can’t take the keyboard.
     <g class="plot-axes" aria-hidden="true">
       {x.ticks.map(({ value, text }) => {
         const at = x.place(value);

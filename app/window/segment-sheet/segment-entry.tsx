@@ -120,7 +120,7 @@ const SWEEPS = [
 
 function Sweep({ of: s, onChange }: { of: SessionSegment; onChange(sweep: SessionSegment['sweep']): void }) {
   return (
-    <span class="choice" role="group" aria-label="Step of the sweep">
+    <fieldset class="choice" aria-label="Step of the sweep">
       {SWEEPS.map(([value, sign, word]) => (
         <button
           key={value}
@@ -133,6 +133,6 @@ function Sweep({ of: s, onChange }: { of: SessionSegment; onChange(sweep: Sessio
           <span aria-hidden="true">{sign}</span> <span class="word">{word}</span>
         </button>
       ))}
-    </span>
+    </fieldset>
   );
 }

@@ -9,6 +9,7 @@ import { forgetFilm, takeFilmPicture } from './film-strip.ts';
 import { resumeFollowing, takeJobEnd, takeProgress } from './following.ts';
 import { forgetFrameTimes, keepFrameTimes } from './frame-times.ts';
 import { ask, hello, useHost } from './host.ts';
+import { keepLayout, takeLayout } from './layout.ts';
 import { tell } from './notices.ts';
 import { forgetPicture, keepPicture } from './pictures.ts';
 import { takePlayEnd, takePlayFrame } from './player.ts';
@@ -37,8 +38,13 @@ export async function startWith(client: HostClient): Promise<void> {
   keepBar();
   keepOverviews();
   hello.value = await ask('hello', { contract: CONTRACT_VERSION });
+  const layout = await ask('layout', {});
+  if (layout) takeLayout(layout);
   const state = await ask('getDocument', {});
   if (state) receive(state);
+  // Work that goes on goes on at the sheet where it was left.
+  if (layout && state?.session?.segments.length) sheet.value = layout.sheet;
+  keepLayout();
   const results = await ask('results', {});
   if (results) takeResults(results);
   await resumeFollowing();

@@ -1,11 +1,10 @@
 import { computed, signal } from '@preact/signals';
-import type { RecordingState, SessionSegment, SessionView } from '../../contract.ts';
+import type { RecordingState, SessionSegment, SessionView, SHEETS } from '../../contract.ts';
 import { nearestIndex } from '../plots/extremes.ts';
 import { segmentsOf } from '../session-edits/segment-edits.ts';
 import { recordings, session } from './document.ts';
 import { timesOf } from './frame-times.ts';
 
-export const SHEETS = ['view', 'segment', 'field', 'apparatus'] as const;
 export type Sheet = (typeof SHEETS)[number];
 
 /** Which sheet lies open at the right. */

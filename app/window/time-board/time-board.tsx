@@ -67,6 +67,7 @@ export function TimeBoard() {
   return (
     <section class="board" aria-label="Time board">
       <Gutter heights={heights} />
+      {/* biome-ignore lint/a11y/useSemanticElements: a fieldset is a group of fields, these are lanes. */}
       <div
         ref={lanes}
         class="lanes"

@@ -152,7 +152,7 @@ function RegionFields({ of: v, change }: { of: SessionView; change: Change }) {
     ['height', 'Height of the region', 'height'],
   ] as const;
   return (
-    <div class="region-fields" role="group" aria-label="Region">
+    <fieldset class="region-fields" aria-label="Region">
       {fields.map(([key, label, caption]) => (
         <NumberField
           key={`${key} ${v.id}`}
@@ -167,7 +167,7 @@ function RegionFields({ of: v, change }: { of: SessionView; change: Change }) {
           }
         />
       ))}
-    </div>
+    </fieldset>
   );
 }
 

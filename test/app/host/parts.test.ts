@@ -7,6 +7,7 @@ import { Downloads } from '../../../app/host/downloads.ts';
 import { Jobs } from '../../../app/host/jobs.ts';
 import { jpegSize } from '../../../app/host/jpeg-size.ts';
 import { KnownRecordings } from '../../../app/host/known-recordings.ts';
+import { LayoutFile } from '../../../app/host/layout-file.ts';
 import { rateMeter } from '../../../app/host/rate-meter.ts';
 import { RecentSessions } from '../../../app/host/recent-sessions.ts';
 import { Tokens } from '../../../app/host/tokens.ts';
@@ -96,6 +97,21 @@ describe('what is remembered between runs', () => {
     expect(JSON.stringify(list)).not.toContain(place);
     expect(recent.path(list[1]?.id ?? '')).toBe(join(place, 'b.needlebeat.json'));
     expect(recent.path('made up')).toBeNull();
+  });
+});
+
+describe('the layout', () => {
+  const shares = { view: 0.3, segment: 0.4, field: 0.5, apparatus: 0.3 };
+
+  it('is what was kept last, and none where the file is missing or damaged', async () => {
+    const path = join(await folder(), 'layout.json');
+    const file = new LayoutFile(path);
+    expect(await file.read()).toBeNull();
+    const boards = [0.2, 0.3, 0.4];
+    await Promise.all(boards.map((board) => file.keep({ sheets: shares, board, sheet: 'field' })));
+    expect(await new LayoutFile(path).read()).toEqual({ sheets: shares, board: 0.4, sheet: 'field' });
+    await writeWhole(path, '{"format":"needlebeat/layout","version":1,"layout":{"board":7}}');
+    expect(await file.read()).toBeNull();
   });
 });
 

@@ -10,14 +10,20 @@ const root = new URL('../../../', import.meta.url).pathname;
 const require = createRequire(import.meta.url);
 const { load } = require('js-yaml') as { load: (text: string) => unknown };
 
+interface System {
+  readonly target: string[];
+  readonly files: string[];
+  readonly icon: string;
+}
 interface Config {
   readonly files: string[];
   readonly asarUnpack: string[];
   readonly afterPack: string;
   readonly asar: boolean;
-  readonly linux: { target: string[]; files: string[] };
-  readonly win: { target: string[]; files: string[] };
-  readonly mac: { target: string[]; files: string[] };
+  readonly directories: { buildResources: string };
+  readonly linux: System;
+  readonly win: System;
+  readonly mac: System;
 }
 const config = load(readFileSync(join(root, 'electron-builder.yml'), 'utf8')) as Config;
 
@@ -27,6 +33,15 @@ describe('electron-builder.yml', () => {
     const validate = new Ajv({ strict: false, allErrors: true }).compile(scheme);
     expect(validate(config), JSON.stringify(validate.errors, null, 1)).toBe(true);
     expect(validate({ ...config, asra: true })).toBe(false);
+  });
+
+  it('has the program’s own icon on every system, as large as each of them asks for', () => {
+    for (const system of [config.linux, config.win, config.mac]) {
+      const png = readFileSync(join(root, config.directories.buildResources, system.icon));
+      expect(png.subarray(1, 4).toString()).toBe('PNG');
+      // Width and height stand first in the header chunk (PNG specification, section 11.2.2).
+      expect([png.readUInt32BE(16), png.readUInt32BE(20)]).toEqual([1024, 1024]);
+    }
   });
 
   it('makes the packages that are promised', () => {

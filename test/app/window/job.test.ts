@@ -140,21 +140,34 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', { timeou
 
   test('a reload in the middle loses nothing', async () => {
     const before = await bench.segments(3);
+    await bench.seeSheet('Field');
+    await layoutKept('"sheet": "field"');
     await bench.page.reload();
     await bench.measured(3);
     await expect.poll(() => bench.segments(3)).toEqual(before);
+    await bench.page.getByRole('tab', { name: 'Field', selected: true }).waitFor();
     await bench.page.getByRole('img', { name: 'Angle of the bar against time', exact: true }).waitFor();
   });
 
   test('the program killed and started again brings the session back', async () => {
     const before = await bench.segments(3);
+    const edge = () => bench.page.getByRole('separator', { name: 'Height of the time board' });
+    await edge().focus();
+    await bench.press('ArrowUp', 'ArrowUp', 'ArrowUp');
+    await expect.poll(() => edge().getAttribute('aria-valuenow')).toBe('36');
+    await layoutKept('"board": 0.36');
     await bench.leave();
     await served.kill();
     served = await serveWindow(undefined, served.home);
     bench = await BenchDriver.enter(browser, served.address);
     const withoutState = (names: string[]) => names.map((name) => name.replace(/, [a-z ]+$/, ''));
     expect(withoutState(await bench.segments(3))).toEqual(withoutState(before));
+    expect(await edge().getAttribute('aria-valuenow')).toBe('36');
+    await bench.page.getByRole('tab', { name: 'Field', selected: true }).waitFor();
   });
+
+  const layoutKept = (what: string) =>
+    expect.poll(() => readFile(join(served.home, 'layout.json'), 'utf8').catch(() => '')).toContain(what);
 
   test('what is exported is what the command line measures from the exported session', async () => {
     await bench.measured(3);
