@@ -96,7 +96,7 @@ function approach(data: Observations, proposal: Proposal): Float64Array {
   return fitSweep(blurred, modelOf(proposal, [prior]), first.parameters)?.parameters ?? first.parameters;
 }
 
-/** Fits with the fibre held to a small unknown share of the field's torque, which the fit itself may put elsewhere than its start. */
+/** Fits with the fibre held to a small unknown share of the whole torque, which the fit itself may put elsewhere than its start. */
 function fitAssumed(data: Observations, proposal: Proposal): SweepFit | null {
   let torque = proposal.start[at.slope]! * Math.abs(proposal.start[at.along]!);
   let start = proposal.start;
@@ -104,8 +104,8 @@ function fitAssumed(data: Observations, proposal: Proposal): SweepFit | null {
     const prior: Prior = { parameter: at.fibre, value: 0, u: u_fibreShare * torque };
     const fit = fitSweep(data, modelOf(proposal, [prior]), start);
     if (fit === null) return null;
-    const found = fieldTorque(fit);
-    if (turn === 3 || Math.abs(found / torque - 1) < 0.1) return withoutPush(data, proposal, fit);
+    const found = fieldTorque(fit) + fit.parameters[at.fibre]!;
+    if (turn === 4 || Math.abs(found / torque - 1) < 0.01) return withoutPush(data, proposal, fit);
     torque = found;
     start = fit.parameters;
   }

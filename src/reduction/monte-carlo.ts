@@ -107,7 +107,11 @@ function drawInputs(context: SourceContext, { gaussian, uniform }: Random): Resu
     current_A: data.current_A.map((current, i) => (current + data.u_current_A[i]! * gaussian()) * scale + zero),
     angle: data.angle.map((angle, i) => angle + data.u_angle[i]! * gaussian()),
   };
-  const again = fitSweep(moved, { ...fit.model, priors }, fit.parameters);
+  const assumed = candidate.fibre === 'assumed' ? priors.find(({ parameter }) => parameter === at.fibre) : undefined;
+  const start = fit.parameters.slice();
+  if (assumed !== undefined) start[at.fibre] = assumed.value;
+  const fixed = { ...fit.model.fixed, fibre: fit.model.fixed.fibre || assumed !== undefined };
+  const again = fitSweep(moved, { ...fit.model, priors, fixed }, start);
   if (again === null) return null;
   // A share and an untwisted direction drawn together turn the rest directions: their product needs no draw of its own.
   return { ...inputs, ...apart, parameters: again.parameters };

@@ -230,7 +230,8 @@ function priorSources(candidate: ScaledCandidate, gradient: Gradients): Source[]
         sensitivity: by(degree),
       });
     } else if (fibre === 'assumed') {
-      const torque = prior.u / u_fibreShare;
+      // Of the fibre as it is, not of what is assumed: data that pull a little at the assumption don't tell it.
+      const torque = prior.u / u_fibreShare / fit.gain.prior[at.fibre]![index]!;
       out.push({
         row: 'fibre’s share, not separated',
         value: 0,
