@@ -42,6 +42,8 @@ export interface Facts {
   /** The angle followed is bent far more than usual. */
   readonly bent: boolean;
   readonly shape: AngleShape;
+  /** Noise that would move the twist as much as the wander of its amplitude and phase, over the noise near its frequency. */
+  readonly pushed: number;
 }
 
 function check<C extends RingDownCode>(
@@ -58,6 +60,8 @@ const DEG = Math.PI / 180;
 /** Fewer cycles than this give no frequency; fewer than the second number one to be doubted. */
 const FEWEST_CYCLES = 2.5;
 const FEW_CYCLES = 3.5;
+/** From here on the user is told of it. */
+const PUSHED = 9;
 /** Below this quality factor the amplitude falls to a third in two to three cycles, and what is left of the motion is of the size of the angle's errors. */
 const LOWEST_Q = 8;
 
@@ -206,6 +210,8 @@ function judged(facts: Facts): Check[] {
   if (ringDown.residualRms > 0.15 * amplitude) {
     const facts = { rms: ringDown.residualRms, amplitude, unit: ringDown.unit };
     out.push(check('residuals_not_noise', 'doubt', facts));
+  } else if (facts.pushed > PUSHED) {
+    out.push(check('pushed_about', 'note', { factor: Math.sqrt(facts.pushed) }));
   } else if (facts.levelRatio > 4) {
     out.push(check('residuals_correlated', 'note', { factor: Math.sqrt(facts.levelRatio) }));
   }

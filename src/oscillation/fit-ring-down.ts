@@ -13,8 +13,9 @@ import type { RingDown, RingDownOptions, RingDownOutcome } from './ring-down.ts'
 import { foldedFrom, gapRival, mayBeFolded } from './rivals.ts';
 import { angleSeries, type Series, sampling } from './series.ts';
 import { addLines, type FitWithLines, motionAt } from './side-lines.ts';
-import { wanderOfMean } from './slow-wander.ts';
+import { spectrum } from './spectrum.ts';
 import { fitTwist, type TwistFit } from './twist-fit.ts';
+import { wanderOfMean, wanderOfMotion } from './wander.ts';
 import { compareCrossings, crossings } from './zero-crossings.ts';
 
 /** Fewer poses than this give no ring-down. */
@@ -134,15 +135,21 @@ function factsOf(
     const m = motionOf(p);
     return frequencyRatio(m, Math.sqrt(meanSquareAmplitude(m, startAmplitude(m), end)));
   };
+  const left = spectrum(samples.time_s, fit.residual);
+  const count = fit.residual.length;
+  const pushed = left === null ? 0 : wanderOfMotion(left, count, motion.omega / (2 * Math.PI)) / fit.level;
+  // What the wander of the motion adds to the uncertainty that noise and priors give.
+  const carried = (k: number) =>
+    Math.sqrt(Math.max(0, pushed - 1) * fit.inverse[k * (parameters.length + 1)]!) / Math.abs(parameters[k]!);
   // An angle that is off by some share is stretched by about twice as much, which the effect of the amplitude has squared.
   const stretched = 4 * shape.share * (1 / seenAt(parameters) - 1);
   const clocked = (f: (p: Float64Array) => number, ...others: number[]) =>
     withRelative(derived(fit, dof, f), options.u_time_scale, ...others);
-  const f0 = clocked((p) => p[OMEGA]! / (2 * Math.PI), damped, skewed, stretched);
+  const f0 = clocked((p) => p[OMEGA]! / (2 * Math.PI), damped, skewed, stretched, carried(OMEGA));
   const fd = clocked((p) => (Math.sqrt(Math.max(0, p[OMEGA]! ** 2 - p[GAMMA]! ** 2)) / (2 * Math.PI)) * seenAt(p));
-  const gamma = clocked((p) => p[GAMMA]!, unevenScale);
+  const gamma = clocked((p) => p[GAMMA]!, unevenScale, carried(GAMMA));
   const rest = derived(fit, dof, (p) => p[OFFSET]! * unitScale);
-  const wander = wanderOfMean({ time_s: samples.time_s, value: fit.residual }, fit.level);
+  const wander = left === null ? 0 : wanderOfMean(left, count, fit.level);
   const period_s = 1 / fd.value;
 
   const fitted = new Float64Array(raw.time_s.length);
@@ -213,5 +220,6 @@ function factsOf(
     amplitudeLawOdd: widened.includes(SHARE),
     bent: widened.includes(BEND),
     shape,
+    pushed,
   };
 }

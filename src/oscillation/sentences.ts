@@ -77,6 +77,8 @@ export const SENTENCES = {
     `${f.count} of ${f.poses} poses lie far off the curve and are left out; look for what crossed the picture there.`,
   residuals_not_noise: (f: { rms: number; amplitude: number; unit: 'rad' | 'px' }) =>
     `The curve misses the trace by ${excursion(f.rms, f.unit)} rms, ${relative(f.rms / f.amplitude)} of the amplitude: this is no free ring-down all the way; look at the trace and mark a quieter part.`,
+  pushed_about: (f: { factor: number }) =>
+    `Amplitude and phase wander as if draughts or tremors pushed the bar as it swung; the uncertainties are ${figure(f.factor)} times what plain noise would give. Shield the bench from draughts and footsteps.`,
   residuals_correlated: (f: { factor: number }) =>
     `What the curve leaves over is not plain noise; the uncertainties are ${figure(f.factor)} times what plain noise would give.`,
   clock_unverified: (f: { relative: number }) =>
