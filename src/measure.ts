@@ -54,7 +54,8 @@ async function measureSegments(
   options: MeasureOptions,
 ): Promise<Map<string, MeasuredSegment>> {
   const cores = options.cores ?? availableParallelism();
-  await using pool = new TrackerPool(Math.min(cores, Math.max(1, session.segments.length)));
+  // A thread follows two segments at once; more threads than that would only take time from the decoders.
+  await using pool = new TrackerPool(Math.ceil(Math.min(cores, Math.max(1, session.segments.length)) / 2));
   const meter = progressMeter(session, options.onProgress);
   const measured = new Map<string, MeasuredSegment>();
   const waiting = [...session.segments];

@@ -77,7 +77,7 @@ export async function startHost(options: HostOptions, file: string | null = null
     changed: (another) => changed(another),
     now,
   });
-  const pool = new TrackerPool(Math.max(1, cores));
+  const pool = new TrackerPool(Math.max(1, Math.ceil(cores / 2)));
   // What the user waits for right now must not queue behind whole segments.
   const quickPool = new TrackerPool(1);
   const fits = new Calculator();

@@ -25,12 +25,10 @@ export function lumaOf(pixelFormat: string): Luma {
   }
 }
 
-/** Grey values in one byte each, rounded, from `count` values in two bytes each. */
-export function reducedToBytes(wide: Uint8Array, count: number, bits: 10 | 12): Uint8Array {
-  const values = new Uint16Array(wide.buffer, wide.byteOffset, count);
+/** Fills `grey` with the values, one byte each and rounded, of a picture with two bytes each. */
+export function reduceToBytes(wide: Uint8Array, bits: 10 | 12, grey: Uint8Array): void {
+  const values = new Uint16Array(wide.buffer, wide.byteOffset, grey.length);
   const shift = bits - 8;
   const half = 1 << (shift - 1);
-  const grey = new Uint8Array(Buffer.allocUnsafeSlow(count).buffer);
-  for (let i = 0; i < count; i++) grey[i] = Math.min(255, (values[i]! + half) >> shift);
-  return grey;
+  for (let i = 0; i < grey.length; i++) grey[i] = Math.min(255, (values[i]! + half) >> shift);
 }

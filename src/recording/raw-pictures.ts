@@ -1,8 +1,9 @@
-import { type Luma, reducedToBytes } from './luma.ts';
+import { type Luma, reduceToBytes } from './luma.ts';
 import type { BlockCutter } from './timed-blocks.ts';
 
 /** Cuts ffmpeg's rawvideo output into pictures of one byte per pixel. */
 export class RawPictures implements BlockCutter {
+  private readonly spare: Uint8Array[] = [];
   private block: Uint8Array;
   private filled = 0;
 
@@ -10,7 +11,7 @@ export class RawPictures implements BlockCutter {
     private readonly pixels: number,
     private readonly bits: Luma['bits'],
   ) {
-    this.block = this.newBlock();
+    this.block = this.bits === 8 ? this.picture() : new Uint8Array(pixels * 2);
   }
 
   take(chunk: Uint8Array, emit: (block: Uint8Array) => void): void {
@@ -23,15 +24,21 @@ export class RawPictures implements BlockCutter {
       this.filled = 0;
       if (this.bits === 8) {
         emit(this.block);
-        this.block = this.newBlock();
+        this.block = this.picture();
       } else {
-        emit(reducedToBytes(this.block, this.pixels, this.bits));
+        const picture = this.picture();
+        reduceToBytes(this.block, this.bits, picture);
+        emit(picture);
       }
     }
   }
 
-  private newBlock(): Uint8Array {
-    // Not from the shared pool, so that the buffer can be handed to another thread; not cleared, since every byte is written.
-    return new Uint8Array(Buffer.allocUnsafeSlow(this.bits === 8 ? this.pixels : this.pixels * 2).buffer);
+  /** Thousands of buffers, each filled once and left to the garbage collector, would cost more than filling them. */
+  giveBack(block: Uint8Array): void {
+    this.spare.push(block);
+  }
+
+  private picture(): Uint8Array {
+    return this.spare.pop() ?? new Uint8Array(this.pixels);
   }
 }

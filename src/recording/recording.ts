@@ -46,7 +46,7 @@ export interface Frame {
   readonly time_s: number;
   readonly width_px: number;
   readonly height_px: number;
-  /** Grey values of the region, row by row, `width_px * height_px` bytes. Its buffer belongs to whoever takes the frame. */
+  /** Grey values of the region, row by row, `width_px * height_px` bytes. Of a decoded frame they are lent: valid until the next frame is asked for. */
   readonly grey: Uint8Array;
 }
 

@@ -5,7 +5,7 @@ import type { Recording } from './recording.ts';
 /** A picture of the decoder as a block of bytes (raw or coded), with its presentation tick. */
 export interface TimedBlock {
   readonly tick: number;
-  /** Its buffer belongs to whoever takes the block. */
+  /** Belongs to whoever takes the block; where the cutter takes blocks back, only until the next one is asked for. */
   readonly bytes: Uint8Array;
 }
 
@@ -13,6 +13,8 @@ export interface TimedBlock {
 export interface BlockCutter {
   /** Takes the next piece and hands on every block it completes. */
   take(chunk: Uint8Array, emit: (block: Uint8Array) => void): void;
+  /** Takes back a block that the reader is done with, to be filled anew. */
+  giveBack?(block: Uint8Array): void;
 }
 
 /** Complete pictures kept ready for the reader: enough to keep the decoder busy, whatever the recording's length. */
@@ -26,13 +28,14 @@ export class TimedBlocks {
   private readonly child: FfmpegChild;
   private readonly ticks: FrameTicks;
   private readonly ready: Uint8Array[] = [];
+  private lent: Uint8Array | null = null;
   private over: ChildEnd | null = null;
   private wake: () => void = () => {};
 
   constructor(
     ffmpeg: string,
     args: readonly string[],
-    options: {
+    private readonly options: {
       readonly timebase: Recording['timebase'];
       readonly cutter: BlockCutter;
       /** Longest time without any output before ffmpeg is taken to be stuck. */
@@ -69,6 +72,8 @@ export class TimedBlocks {
 
   /** The next picture, null after the last one. */
   async next(): Promise<TimedBlock | null> {
+    if (this.lent !== null) this.options.cutter.giveBack?.(this.lent);
+    this.lent = null;
     for (;;) {
       const bytes = this.ready[0];
       const tick = bytes === undefined ? undefined : this.ticks.shift();
@@ -78,6 +83,7 @@ export class TimedBlocks {
           this.child.progressed();
           this.child.stdout.resume();
         }
+        this.lent = bytes;
         return { tick, bytes };
       }
       if (this.over !== null) return null;

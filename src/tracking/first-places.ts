@@ -1,7 +1,7 @@
 import type { PlacedPicture } from './layers.ts';
 import { separate } from './layers.ts';
 import type { Motion } from './motion.ts';
-import { movingLayer } from './moving-layer.ts';
+import { energyExplained, movingLayer } from './moving-layer.ts';
 import type { Picture } from './picture.ts';
 import { emptyPicture, valueAt } from './picture.ts';
 import { pivotOf } from './pivot.ts';
@@ -87,22 +87,17 @@ function placesBySwing(pictures: readonly Picture<Uint8Array>[], motion: Motion,
   const few = (span: number) => placed(pictures, placesFor(span)).filter((_, t) => t % 3 === 0);
   let best = 0;
   let most = -1;
-  for (const size of SPANS) {
-    for (const span of [size, -size]) {
-      const { explained } = movingLayer(few(span), grid, motion);
+  const tryIn = (spans: readonly number[]): void => {
+    for (const span of spans) {
+      const explained = energyExplained(few(span), grid, motion);
       if (explained > most) {
         most = explained;
         best = span;
       }
     }
-  }
-  for (const span of [best * 0.83, best * 1.2]) {
-    const { explained } = movingLayer(few(span), grid, motion);
-    if (explained > most) {
-      most = explained;
-      best = span;
-    }
-  }
+  };
+  tryIn(SPANS.flatMap((size) => [size, -size]));
+  tryIn([best * 0.83, best * 1.2]);
   return placesFor(best);
 }
 

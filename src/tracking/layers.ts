@@ -49,38 +49,56 @@ export function coverOf(outline: Outline, u: number, v: number, soft_px: number)
   return Math.min(1, Math.max(0, inside / soft_px + 0.5));
 }
 
-/**
- * Averages what is seen in the bar's frame and splits it into what belongs to the bar and what shines through from a
- * static background: at every place the grey values of all pictures are regressed on the background's, pulled towards
- * `seeExpected` where the background is too even to tell.
- */
-export function separate(
+/** The size of a bar's frame: its half width and height, pixels, and how much the view squeezes its plane downwards. */
+export interface Grid {
+  readonly halfU: number;
+  readonly halfV: number;
+  readonly squash: number;
+}
+
+/** Sums over pictures at the places of a bar's frame: of what is seen, and of the background there where one is known. */
+export interface PlaceSums {
+  readonly columns: number;
+  readonly rows: number;
+  readonly n: Float32Array;
+  readonly seen: Float64Array;
+  readonly seen2: Float64Array;
+  readonly under: Float64Array;
+  readonly under2: Float64Array;
+  readonly both: Float64Array;
+}
+
+/** Adds up every `stride`-th row and column of the bar's frame, (u, v) = stride (column, row) - (halfU, halfV). */
+export function addUp(
   pictures: readonly PlacedPicture[],
-  grid: { readonly halfU: number; readonly halfV: number; readonly squash: number },
+  grid: Grid,
   background: Picture | null,
-  seeExpected: Float32Array | null,
-  noiseFloor: number,
-): BarLayers {
+  stride: number,
+): PlaceSums {
   const { halfU, halfV, squash } = grid;
-  const columns = 2 * halfU + 1;
-  const rows = 2 * halfV + 1;
+  const columns = Math.floor((2 * halfU) / stride) + 1;
+  const rows = Math.floor((2 * halfV) / stride) + 1;
   const size = columns * rows;
   const n = new Float32Array(size);
   const s1 = new Float64Array(size);
   const s2 = new Float64Array(size);
-  const b1 = new Float64Array(size);
-  const b2 = new Float64Array(size);
-  const sb = new Float64Array(size);
+  const known = background === null ? 0 : size;
+  const b1 = new Float64Array(known);
+  const b2 = new Float64Array(known);
+  const sb = new Float64Array(known);
   for (const { picture, place } of pictures) {
     const { width, height, data } = picture;
     const c = Math.cos(place.turn);
     const s = Math.sin(place.turn);
     const scale = 1 / place.gain;
+    const { offset } = place;
+    const stepX = stride * c;
+    const stepY = stride * squash * s;
     for (let row = 0; row < rows; row++) {
-      const v = row - halfV;
+      const v = stride * row - halfV;
       let x = place.x_px - c * halfU - s * v;
       let y = place.y_px + squash * (-s * halfU + c * v);
-      for (let at = row * columns; at < (row + 1) * columns; at++, x += c, y += squash * s) {
+      for (let at = row * columns; at < (row + 1) * columns; at++, x += stepX, y += stepY) {
         if (!(x >= 0 && y >= 0 && x < width - 1 && y < height - 1)) continue;
         const left = x | 0;
         const top = y | 0;
@@ -90,7 +108,7 @@ export function separate(
         const i0 = data[p]!;
         const i1 = data[p + width]!;
         const upper = i0 + fx * (data[p + 1]! - i0);
-        const seen = (upper + fy * (i1 + fx * (data[p + width + 1]! - i1) - upper) - place.offset) * scale;
+        const seen = (upper + fy * (i1 + fx * (data[p + width + 1]! - i1) - upper) - offset) * scale;
         n[at] = n[at]! + 1;
         s1[at] = s1[at]! + seen;
         s2[at] = s2[at]! + seen * seen;
@@ -107,6 +125,24 @@ export function separate(
       }
     }
   }
+  return { columns, rows, n, seen: s1, seen2: s2, under: b1, under2: b2, both: sb };
+}
+
+/**
+ * Averages what is seen in the bar's frame and splits it into what belongs to the bar and what shines through from a
+ * static background: at every place the grey values of all pictures are regressed on the background's, pulled towards
+ * `seeExpected` where the background is too even to tell.
+ */
+export function separate(
+  pictures: readonly PlacedPicture[],
+  grid: Grid,
+  background: Picture | null,
+  seeExpected: Float32Array | null,
+  noiseFloor: number,
+): BarLayers {
+  const { halfU, halfV, squash } = grid;
+  const { columns, rows, n, ...sums } = addUp(pictures, grid, background, 1);
+  const size = columns * rows;
   const mean = new Float32Array(size);
   const ground = new Float32Array(size);
   const seen = new Float32Array(size);
@@ -115,11 +151,14 @@ export function separate(
   for (let at = 0; at < size; at++) {
     const k = n[at]!;
     if (k === 0) continue;
-    mean[at] = s1[at]! / k;
-    ground[at] = b1[at]! / k;
-    seen[at] = Math.max(0, s2[at]! / k - (s1[at]! / k) ** 2);
-    cov[at] = sb[at]! / k - (s1[at]! / k) * (b1[at]! / k);
-    spread[at] = Math.max(0, b2[at]! / k - (b1[at]! / k) ** 2);
+    const m = sums.seen[at]! / k;
+    mean[at] = m;
+    seen[at] = Math.max(0, sums.seen2[at]! / k - m ** 2);
+    if (background === null) continue;
+    const b = sums.under[at]! / k;
+    ground[at] = b;
+    cov[at] = sums.both[at]! / k - m * b;
+    spread[at] = Math.max(0, sums.under2[at]! / k - b ** 2);
   }
   const open = background === null || seeExpected === null ? null : openBand(seeExpected, columns, rows);
   const bar = new Float32Array(size);
@@ -137,9 +176,8 @@ export function separate(
   const variance = smooth(rest, columns, rows);
   const raw = background === null ? variance : smooth(seen, columns, rows);
   const enough = 0.5 * pictures.length;
-  const filled: number[] = [];
-  for (let at = 0; at < size; at++) if (n[at]! > enough) filled.push(variance[at]!);
-  filled.sort((a, b) => a - b);
+  // An array of numbers of one kind is sorted many times faster than one of anything.
+  const filled = variance.filter((_, at) => n[at]! > enough).sort();
   const noise = Math.max(0.05, filled[Math.floor(filled.length * 0.2)] ?? 0.05);
   const weight = new Float32Array(size);
   const known = new Uint8Array(size);
@@ -260,23 +298,13 @@ function fillIn(picture: Picture, known: Uint8Array, rings: number): void {
       const y = (at - x) / width;
       let sum = 0;
       let n = 0;
-      for (const [dx, dy] of [
-        [-1, 0],
-        [1, 0],
-        [0, -1],
-        [0, 1],
-        [-1, -1],
-        [1, 1],
-        [1, -1],
-        [-1, 1],
-      ] as const) {
-        const nx = x + dx;
-        const ny = y + dy;
-        if (nx < 0 || ny < 0 || nx >= width || ny >= height) continue;
-        const to = ny * width + nx;
-        if (known[to] !== 1) continue;
-        sum += data[to]!;
-        n++;
+      for (let ny = Math.max(0, y - 1); ny <= Math.min(height - 1, y + 1); ny++) {
+        for (let nx = Math.max(0, x - 1); nx <= Math.min(width - 1, x + 1); nx++) {
+          const to = ny * width + nx;
+          if (known[to] !== 1) continue;
+          sum += data[to]!;
+          n++;
+        }
       }
       if (n === 0) left.push(at);
       else {

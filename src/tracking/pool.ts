@@ -1,6 +1,7 @@
 import { Worker } from 'node:worker_threads';
 import type { Frame } from '../recording/recording.ts';
-import { FRAMES_UNDER_WAY, fromWorker, type ToWorker } from './protocol.ts';
+import { PictureSlots } from './picture-slots.ts';
+import { framesUnderWay, fromWorker, type ToWorker } from './protocol.ts';
 import type { TrackOutcome, View } from './trace.ts';
 import type { TrackOptions } from './track.ts';
 
@@ -26,18 +27,20 @@ interface Job {
   broken: { readonly reason: unknown } | null;
 }
 
+/** Stretches that one worker follows at once: following takes far less time than decoding, and learning a bar goes faster in a thread that has done it before. */
+const JOBS_A_THREAD = 2;
+
 /**
- * Worker threads that follow bars, one stretch each at a time. Workers start when first needed; one that dies rejects
+ * Worker threads that follow bars, two stretches each at a time. Workers start when first needed; one that dies rejects
  * what it was doing and is replaced by the next call. Close it when done, or use `await using`.
  */
 export class TrackerPool {
   readonly #size: number;
   readonly #all = new Set<TrackerThread>();
-  readonly #idle: TrackerThread[] = [];
   readonly #waiting: (() => void)[] = [];
   #closed = false;
 
-  /** @throws RangeError unless `size` is a whole number of at least 1 */
+  /** @param size most threads. @throws RangeError unless it is a whole number of at least 1 */
   constructor(size: number) {
     if (!Number.isInteger(size) || size < 1)
       throw new RangeError(`size: expected a whole number of at least 1, got ${size}`);
@@ -50,16 +53,17 @@ export class TrackerPool {
   }
 
   /**
-   * Follows the bar through a stretch, as `trackFrames` does, in a worker; frames' buffers move there. At most
-   * `FRAMES_UNDER_WAY` frames are ahead of the worker, then `frames` waits. Rejects with the signal's reason when aborted, and with an Error
-   * when the worker dies or the pool is closed. `frames` is always left properly.
+   * Follows the bar through a stretch, as `trackFrames` does, in a worker; every frame's grey values are copied before
+   * the next one is asked for. At most `framesUnderWay` frames are ahead of the worker, then `frames` waits. Rejects with the signal's
+   * reason when aborted, and with an Error when the worker dies or the pool is closed. `frames` is always left properly.
    */
   async track(frames: AsyncIterable<Frame>, view: View, options: TrackOptions = {}): Promise<TrackOutcome> {
     const thread = await this.#acquire(options.signal);
     try {
       return await thread.run(frames, view, options);
     } finally {
-      this.#release(thread);
+      thread.places++;
+      this.#waiting[0]?.();
     }
   }
 
@@ -75,15 +79,14 @@ export class TrackerPool {
     return this.close();
   }
 
+  /** A thread with a place for one more stretch, which is taken. */
   async #acquire(signal: AbortSignal | undefined): Promise<TrackerThread> {
     for (;;) {
       signal?.throwIfAborted();
       if (this.#closed) throw new Error('The tracking pool was closed.');
-      const idle = this.#idle.pop();
-      if (idle !== undefined) return idle;
-      if (this.#all.size < this.#size) {
-        const thread = new TrackerThread((dead) => this.#bury(dead));
-        this.#all.add(thread);
+      const thread = this.#freest();
+      if (thread !== null) {
+        thread.places--;
         return thread;
       }
       await new Promise<void>((resolve) => {
@@ -99,15 +102,20 @@ export class TrackerPool {
     }
   }
 
-  #release(thread: TrackerThread): void {
-    if (this.#all.has(thread) && !this.#idle.includes(thread)) this.#idle.push(thread);
-    this.#waiting[0]?.();
+  /** An idle thread, else a new one, else one with a place left; null where there is none. */
+  #freest(): TrackerThread | null {
+    const [best] = [...this.#all].sort((a, b) => b.places - a.places);
+    if (best?.places === JOBS_A_THREAD) return best;
+    if (this.#all.size < this.#size) {
+      const thread = new TrackerThread((dead) => this.#bury(dead));
+      this.#all.add(thread);
+      return thread;
+    }
+    return best !== undefined && best.places > 0 ? best : null;
   }
 
   #bury(thread: TrackerThread): void {
     this.#all.delete(thread);
-    const at = this.#idle.indexOf(thread);
-    if (at >= 0) this.#idle.splice(at, 1);
     this.#waiting[0]?.();
   }
 }
@@ -117,6 +125,9 @@ class TrackerThread {
   readonly #worker: Worker;
   readonly #jobs = new Map<number, Job>();
   readonly #onDeath: (thread: TrackerThread) => void;
+  readonly #slots = new PictureSlots();
+  /** Stretches that it could follow beside those it does. */
+  places = JOBS_A_THREAD;
   #next = 1;
   #dead: Error | null = null;
 
@@ -146,7 +157,8 @@ class TrackerThread {
         const next = await this.#unlessBroken(job, iterator.next());
         if (next.done === true) break;
         this.#send(job, next.value);
-        while (job.underWay >= FRAMES_UNDER_WAY) await this.#unlessBroken(job, this.#room(job));
+        const most = framesUnderWay(next.value.grey.byteLength);
+        while (job.underWay >= most) await this.#unlessBroken(job, this.#room(job));
       }
       this.#post({ kind: 'end', job: job.number });
       return await job.outcome;
@@ -192,16 +204,17 @@ class TrackerThread {
     };
     this.#jobs.set(job.number, job);
     if (this.#dead !== null) job.fail(this.#dead);
-    else this.#post({ kind: 'begin', job: job.number, view });
+    else {
+      const { width, height } = view.region;
+      const forget = this.#slots.fits(width * height) ? [] : this.#slots.giveUpFree();
+      this.#post({ kind: 'begin', job: job.number, view, forget });
+    }
     return job;
   }
 
-  #send(job: Job, frame: Frame): void {
-    // Grey values that share their buffer with something else are copied, not torn away from it.
-    const alone = frame.grey.byteLength === frame.grey.buffer.byteLength;
-    const grey = alone ? frame.grey : frame.grey.slice();
+  #send(job: Job, { grey, ...frame }: Frame): void {
     job.underWay++;
-    this.#post({ kind: 'frame', job: job.number, frame: { ...frame, grey } }, [grey.buffer as ArrayBuffer]);
+    this.#post({ kind: 'frame', job: job.number, frame, grey: this.#slots.fill(grey) });
   }
 
   /** What is waited for, or the job's failure, if that comes first. (A race against the outcome would keep a handler per frame.) */
@@ -219,8 +232,8 @@ class TrackerThread {
     });
   }
 
-  #post(message: ToWorker, transfer: ArrayBuffer[] = []): void {
-    if (this.#dead === null) this.#worker.postMessage(message, transfer);
+  #post(message: ToWorker): void {
+    if (this.#dead === null) this.#worker.postMessage(message);
   }
 
   #receive(raw: unknown): void {
@@ -231,6 +244,7 @@ class TrackerThread {
       this.#die(error);
       return;
     }
+    if (message.kind !== 'poses') this.#slots.takeBack(message.slots);
     const job = this.#jobs.get(message.job);
     if (job === undefined) return;
     switch (message.kind) {

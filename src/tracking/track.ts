@@ -14,6 +14,8 @@ export interface TrackOptions {
   readonly onPoses?: (poses: PoseColumns) => void;
   /** Called now and then with the number of frames taken so far. */
   readonly onProgress?: (frames: number) => void;
+  /** Called once for every frame whose grey values are no longer needed. */
+  readonly onDone?: (frame: Frame) => void;
 }
 
 /** Bytes of opening frames kept to learn the bar from; memory is bounded by this, however long the stretch. */
@@ -54,12 +56,11 @@ export async function trackFrames(
     if (typeof model === 'string') {
       failure = model;
       enough *= 2;
-      if (bytes >= OPENING_BYTES) opening.length = 0;
+      if (bytes >= OPENING_BYTES) for (const frame of opening.splice(0)) options.onDone?.(frame);
       return;
     }
     following = new Following(view, model, options);
-    for (const frame of opening) following.take(frame);
-    opening.length = 0;
+    for (const frame of opening.splice(0)) following.take(frame);
   };
 
   for await (const frame of frames) {
@@ -72,7 +73,7 @@ export async function trackFrames(
       bytes += frame.grey.byteLength;
       const seen_s = frame.time_s - opening[0]!.time_s;
       if (bytes >= OPENING_BYTES || (opening.length >= enough && seen_s >= OPENING_S)) begin();
-    }
+    } else options.onDone?.(frame);
   }
   options.signal?.throwIfAborted();
   if (taken < FEWEST_FRAMES) {
@@ -109,6 +110,7 @@ class Following {
   take(frame: Frame): void {
     const picture = { width: frame.width_px, height: frame.height_px, data: frame.grey };
     this.#builder.add(frame, this.#follower.next(picture, frame.time_s));
+    this.#options.onDone?.(frame);
     if (this.#builder.waiting >= REPORT_EVERY) this.#options.onPoses?.(this.#builder.takeNew());
   }
 
