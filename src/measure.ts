@@ -41,38 +41,34 @@ export interface Measurement {
  * @throws InputError where the session or a recording can't be used; the signal's reason when aborted.
  */
 export async function measureSession(file: SessionFile, options: MeasureOptions = {}): Promise<Measurement> {
+  const cores = options.cores ?? availableParallelism();
+  // A thread follows two segments at once; more threads than that would only take time from the decoders.
+  await using pool = new TrackerPool(Math.ceil(Math.min(cores, Math.max(1, file.session.segments.length)) / 2));
+  pool.prepare();
   const tools = options.tools ?? (await findFfmpeg(process.env));
   const recordings = await openRecordings(file, tools, options.signal);
-  const segments = await measureSegments(file.session, recordings, tools, options);
+  const segments = await measureSegments(file.session, recordings, { tools, pool, cores, ...options });
   return { results: assembleResults(file, recordings, segments, tools), segments };
 }
 
 async function measureSegments(
   session: Session,
   recordings: SessionRecordings,
-  tools: FfmpegTools,
-  options: MeasureOptions,
+  kit: MeasureOptions & { readonly tools: FfmpegTools; readonly pool: TrackerPool; readonly cores: number },
 ): Promise<Map<string, MeasuredSegment>> {
-  const cores = options.cores ?? availableParallelism();
-  // A thread follows two segments at once; more threads than that would only take time from the decoders.
-  await using pool = new TrackerPool(Math.ceil(Math.min(cores, Math.max(1, session.segments.length)) / 2));
-  const meter = progressMeter(session, options.onProgress);
+  const meter = progressMeter(session, kit.onProgress);
   const measured = new Map<string, MeasuredSegment>();
   const waiting = [...session.segments];
   const work = async () => {
     for (let segment = waiting.shift(); segment; segment = waiting.shift()) {
       const { id } = segment;
-      const kit: MeasuringTools = {
-        tools,
-        pool,
-        signal: options.signal,
-        onFrames: (frames, upTo_s) => meter.at(id, frames, upTo_s),
-      };
-      measured.set(id, await measureSegment(session, segment, recordings, kit));
+      const { tools, pool, signal } = kit;
+      const onFrames: MeasuringTools['onFrames'] = (frames, upTo_s) => meter.at(id, frames, upTo_s);
+      measured.set(id, await measureSegment(session, segment, recordings, { tools, pool, signal, onFrames }));
       meter.finished(id);
     }
   };
-  const workers = Array.from({ length: Math.min(cores, waiting.length) }, work);
+  const workers = Array.from({ length: Math.min(kit.cores, waiting.length) }, work);
   // All of them are waited for even when one fails: no decoder may outlive the call.
   const failed = (await Promise.allSettled(workers)).find((outcome) => outcome.status === 'rejected');
   if (failed) throw failed.reason;

@@ -52,6 +52,11 @@ export class TrackerPool {
     return [...this.#all].map((thread) => thread.threadId);
   }
 
+  /** Starts a first worker before it is needed: it loads while its frames are still to be had. */
+  prepare(): void {
+    if (!this.#closed && this.#all.size === 0) this.#start();
+  }
+
   /**
    * Follows the bar through a stretch, as `trackFrames` does, in a worker; every frame's grey values are copied before
    * the next one is asked for. At most `framesUnderWay` frames are ahead of the worker, then `frames` waits. Rejects with the signal's
@@ -106,12 +111,14 @@ export class TrackerPool {
   #freest(): TrackerThread | null {
     const [best] = [...this.#all].sort((a, b) => b.places - a.places);
     if (best?.places === JOBS_A_THREAD) return best;
-    if (this.#all.size < this.#size) {
-      const thread = new TrackerThread((dead) => this.#bury(dead));
-      this.#all.add(thread);
-      return thread;
-    }
+    if (this.#all.size < this.#size) return this.#start();
     return best !== undefined && best.places > 0 ? best : null;
+  }
+
+  #start(): TrackerThread {
+    const thread = new TrackerThread((dead) => this.#bury(dead));
+    this.#all.add(thread);
+    return thread;
   }
 
   #bury(thread: TrackerThread): void {

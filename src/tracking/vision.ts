@@ -28,7 +28,7 @@ let loaded: OpenCv | undefined;
  * OpenCV, loaded on first use. Its loader installs handlers for uncaught exceptions and rejections that turn every
  * failure of the process into its own; they are taken out again.
  */
-function openCv(): OpenCv {
+export function openCv(): OpenCv {
   if (loaded === undefined) {
     const events = ['uncaughtException', 'unhandledRejection'] as const;
     const before = events.map((event) => process.listeners(event as 'uncaughtException'));

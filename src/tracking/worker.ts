@@ -4,6 +4,7 @@ import { type FromWorker, toWorker } from './protocol.ts';
 import type { Trace } from './trace.ts';
 import type { PoseColumns } from './trace-builder.ts';
 import { trackFrames } from './track.ts';
+import { openCv } from './vision.ts';
 
 /** Frames taken between two reports to the pool, which then sends more. */
 const TAKEN_EVERY = 8;
@@ -70,6 +71,9 @@ class Inbox {
 }
 
 const jobs = new Map<number, Inbox>();
+
+// Loading takes a while: better now, while the recording is still being looked at, than when its frames are waiting.
+openCv();
 
 function post(message: FromWorker, transfer: Transferable[] = []): void {
   parentPort!.postMessage(message, transfer);
