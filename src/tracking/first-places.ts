@@ -85,19 +85,23 @@ function placesBySwing(pictures: readonly Picture<Uint8Array>[], motion: Motion,
     }));
   // Every third picture is enough to tell.
   const few = (span: number) => placed(pictures, placesFor(span)).filter((_, t) => t % 3 === 0);
-  let best = 0;
-  let most = -1;
-  const tryIn = (spans: readonly number[]): void => {
+  const bestOf = (spans: readonly number[], stride: number): number => {
+    let best = 0;
+    let most = -1;
     for (const span of spans) {
-      const explained = energyExplained(few(span), grid, motion);
+      const explained = energyExplained(few(span), grid, motion, stride);
       if (explained > most) {
         most = explained;
         best = span;
       }
     }
+    return best;
   };
-  tryIn(SPANS.flatMap((size) => [size, -size]));
-  tryIn([best * 0.83, best * 1.2]);
+  const rough = bestOf(
+    SPANS.flatMap((size) => [size, -size]),
+    2,
+  );
+  const best = bestOf([rough, rough * 0.83, rough * 1.2], 1);
   return placesFor(best);
 }
 

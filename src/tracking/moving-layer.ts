@@ -34,10 +34,15 @@ export function movingLayer(pictures: readonly PlacedPicture[], grid: Grid, moti
   return { layers, explained: sum > 0 ? kept / sum : 0 };
 }
 
-/** The share of the motion's energy that the places explain, as `movingLayer` gives it, from every second row and column. */
-export function energyExplained(pictures: readonly PlacedPicture[], grid: Grid, motion: Motion): number {
+/** The share of the motion's energy that the places explain, as `movingLayer` gives it, from every `stride`-th row and column. */
+export function energyExplained(
+  pictures: readonly PlacedPicture[],
+  grid: Grid,
+  motion: Motion,
+  stride: number,
+): number {
   const { halfU, halfV, squash } = grid;
-  const { columns, rows, n, seen, seen2 } = addUp(pictures, grid, null, 2);
+  const { columns, rows, n, seen, seen2 } = addUp(pictures, grid, null, stride);
   const variance = new Float32Array(columns * rows).fill(-1);
   for (let at = 0; at < variance.length; at++) {
     const k = n[at]!;
@@ -49,7 +54,7 @@ export function energyExplained(pictures: readonly PlacedPicture[], grid: Grid, 
   for (let row = 0; row < rows; row++) {
     for (let column = 0; column < columns; column++) {
       if (variance[row * columns + column]! < 0) continue;
-      const energy = energyAt(2 * column - halfU, 2 * row - halfV);
+      const energy = energyAt(stride * column - halfU, stride * row - halfV);
       all += energy;
       kept += energy * steadyShare(energy, meanAround(variance, columns, rows, column, row), motion.noise);
     }
