@@ -34,6 +34,12 @@ export function runUnmeasured(segment: string): Check {
   return check('fibre_run_unmeasured', 'doubt', message);
 }
 
+/** The user left it out. */
+export function runLeftOut(segment: string): Check {
+  const message = `Segment ${segment} was to tell the fibre’s stiffness, but it is left out: that run is not used.`;
+  return check('fibre_run_left_out', 'note', message);
+}
+
 /** It has one that is doubtful. */
 export function runDoubtful(segment: string): Check {
   const message = `Segment ${segment}, which tells the fibre’s stiffness, is doubtful: its own checks say why.`;

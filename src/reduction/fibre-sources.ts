@@ -161,6 +161,10 @@ function frequencyOf(
     return { own: { value: run.f0_Hz, u: run.u_f0_Hz ?? 0, dof: Number.POSITIVE_INFINITY } };
   }
   const point = points.find(({ id }) => id === run.segment);
+  if (point?.leftOut !== undefined) {
+    checks.push(say.runLeftOut(run.segment));
+    return null;
+  }
   const shown = point?.status === 'unmeasured' ? null : torsion ? (point?.torsion_Hz ?? point?.f0_Hz) : point?.f0_Hz;
   if (point === undefined || shown == null || !(shown.value > 0)) {
     checks.push(say.runUnmeasured(run.segment));

@@ -40,7 +40,10 @@ export function selectPoints(points: readonly Point[], fibreRuns: ReadonlySet<st
   const kept = new Set(used.map((point) => point.id));
   const leftOut = points
     .filter((point) => !kept.has(point.id))
-    .map((point) => ({ id: point.id, reason: fibreRuns.has(point.id) ? fibreRun : reason(point) }));
+    .map((point) => ({
+      id: point.id,
+      reason: fibreRuns.has(point.id) && point.leftOut === undefined ? fibreRun : reason(point),
+    }));
   return { used, leftOut, doubtfulUsed };
 }
 

@@ -138,6 +138,13 @@ describe('the fibre’s stiffness from runs of its own', () => {
     const r = reduce({ points: [...points, bad], apparatus: withFibre({ run_without_field: { segment: 'free' } }) });
     expect(codes(r)).toContain('fibre_run_unmeasured');
     expect(r.model?.fibre).toBe('assumed');
+    const left = run('free', free, { leftOut: 'a draught' });
+    const without = reduce({
+      points: [...points, left],
+      apparatus: withFibre({ run_without_field: { segment: 'free' } }),
+    });
+    expect(codes(without)).toContain('fibre_run_left_out');
+    expect(without.points_left_out).toEqual([{ id: 'free', reason: 'a draught' }]);
     const some = [0.2, 0.5].map((length_m) => ({ length_m, f0_Hz: atLength(length_m) }));
     const too = reduce({ points, apparatus: withFibre({ length_m: 0.5, runs_at_lengths: some }) });
     expect(codes(too)).toContain('fibre_lengths_too_few');
