@@ -15,7 +15,7 @@ export interface AngleShape {
 }
 
 /** Powers of the angle that no motion has to this size; the square is in the model. */
-const POWERS = [3, 4, 5, 6, 7, 8, 9];
+const POWERS = [3, 4, 5, 6, 7, 8, 9] as const;
 
 /** Below this share of the twist it is not worth a closer look. */
 const FAINT = 0.002;
@@ -23,7 +23,12 @@ const FAINT = 0.002;
 /** Fits powers of the angle to what a fit leaves over, the fitted parameters free to follow. `twist` is the fitted motion at the used samples. */
 export function angleShape(fit: TwistFit, twist: Float64Array): AngleShape {
   const largest = twist.reduce((a, v) => Math.max(a, Math.abs(v)), 0);
-  const columns = POWERS.map((power) => twist.map((v) => (v / largest) ** power));
+  const relative = twist.map((v) => v / largest);
+  let power = relative.map((v) => v * v);
+  const columns = POWERS.map(() => {
+    power = power.map((v, i) => v * relative[i]!);
+    return power;
+  });
   const shape = orthonormalBasis(columns, [...columns.keys()], fit.basis.q);
   const parts = shape.q.slice(fit.basis.q.length).map((q) => ({ q, size: dot(q, fit.residual) }));
   const sum = parts.reduce((a, { size }) => a + size * size, 0);

@@ -78,7 +78,7 @@ export function findJump(fit: TwistFit, twist: Float64Array, later: Float64Array
   fit.jacobian.forEach((column, k) => {
     let product = 0;
     for (let i = at; i < n; i++) product += column[i]! * (b0 * c0[i]! + b1 * c1[i]!);
-    omegaShift -= (fit.inverse[OMEGA * parameters.length + k]! * product) / fit.level;
+    omegaShift += (fit.inverse[OMEGA * parameters.length + k]! * product) / fit.level;
   });
   return {
     time_s: samples.time_s[at]!,

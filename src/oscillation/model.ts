@@ -94,7 +94,7 @@ function addLine(
   }
 }
 
-/** A model at given samples: residuals (observed less model) and the model's derivatives by its parameters, one column each. */
+/** A model at given samples: residuals (observed less model) and their derivatives by its parameters, one column each. */
 export interface Evaluation {
   readonly parameters: Float64Array;
   readonly residual: Float64Array;
@@ -110,7 +110,7 @@ export function problemOf(model: Model, series: Series, known: Evaluation | null
       if (known?.parameters.length === p.length && p.every((v, k) => v === known.parameters[k])) {
         residual.set(known.residual);
         known.jacobian.forEach((column, k) => {
-          for (let i = 0; i < time_s.length; i++) jacobian[k]![i] = -column[i]!;
+          jacobian[k]!.set(column);
         });
         return true;
       }

@@ -97,8 +97,8 @@ export function combinationCovariance(noise: ResidualNoise, weights: readonly Fl
   const size = (slot[slot.length - 1] ?? -1) + 1;
   const order = coefficients.length;
   const filtered = weights.map((column) => {
-    const out = new Float64Array(size);
-    for (let i = 0; i < slot.length; i++) out[slot[i]!] = column[i]!;
+    if (order === 0) return column;
+    const out = onGrid(column, slot, size);
     for (let k = size - 1; k >= 0; k--) {
       let sum = out[k]!;
       for (let j = 1; j <= order && k + j < size; j++) sum += coefficients[j - 1]! * out[k + j]!;
@@ -116,6 +116,13 @@ export function combinationCovariance(noise: ResidualNoise, weights: readonly Fl
     }
   }
   return covariance;
+}
+
+/** Values on the grid of frames, zero where a frame is missing. */
+function onGrid(value: Float64Array, slot: Int32Array, size: number): Float64Array {
+  const grid = new Float64Array(size);
+  for (let i = 0; i < slot.length; i++) grid[slot[i]!] = value[i]!;
+  return grid;
 }
 
 function slots(time_s: Float64Array, step_s: number): Int32Array {
@@ -141,8 +148,7 @@ function countPairs(slot: Int32Array, highest: number): Float64Array {
 /** Mean products over the existing pairs, tapered like the biased estimate, which keeps the sequence positive definite where no frame is missing. */
 function autocovariance(value: Float64Array, slot: Int32Array, highest: number, pairs: Float64Array): Float64Array {
   const size = slot[slot.length - 1]! + 1;
-  const grid = new Float64Array(size);
-  for (let i = 0; i < slot.length; i++) grid[slot[i]!] = value[i]!;
+  const grid = size === value.length ? value : onGrid(value, slot, size);
   const covariance = new Float64Array(highest + 1);
   for (let lag = 0; lag <= highest; lag++) {
     let sum = 0;

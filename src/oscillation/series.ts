@@ -40,10 +40,15 @@ export function pick(series: Series, used: Uint8Array): Series {
 
 /** Intervals between samples; at least two samples are needed. */
 export function sampling({ time_s }: Series): Sampling {
-  const intervals = Float64Array.from({ length: time_s.length - 1 }, (_, i) => time_s[i + 1]! - time_s[i]!);
+  const intervals = new Float64Array(time_s.length - 1);
+  let longestInterval_s = 0;
+  for (let i = 0; i < intervals.length; i++) {
+    intervals[i] = time_s[i + 1]! - time_s[i]!;
+    longestInterval_s = Math.max(longestInterval_s, intervals[i]!);
+  }
   return {
     duration_s: time_s[time_s.length - 1]! - time_s[0]!,
     medianInterval_s: median(intervals),
-    longestInterval_s: intervals.reduce((a, b) => Math.max(a, b), 0),
+    longestInterval_s,
   };
 }

@@ -74,7 +74,7 @@ export function fitTwist(series: Series, model: Model, start: Float64Array, prev
     const found = Math.max(noiseLevel(noise, parameters[OMEGA]! / (2 * Math.PI)), floor);
     const settled = (round > 0 || previous !== undefined) && Math.abs(Math.log(found / level)) < 0.05;
     level = found;
-    known = { parameters, residual, jacobian: fit.jacobian.map((column) => column.map((value) => -value)) };
+    known = { parameters, residual, jacobian: fit.jacobian };
     if (!settled && round < MOST_ROUNDS) continue;
     return {
       ...known,
