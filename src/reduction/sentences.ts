@@ -217,7 +217,7 @@ export function modelSentence(
   fibreKnownFrom: string,
 ): string {
   const shape = {
-    line: 'One straight line of f0² against current, with uncertainties in both: all points lie on one side of the reversal, and frequencies show no bend.',
+    line: 'One straight line of f0² against current, with uncertainties in both: all points lie on one side of the reversal, and frequencies show no bend beyond doubt.',
     'two branches':
       'Two straight branches about the reversal, f0² against |k I + B|: the bar turned round within the sweep.',
     hyperbola:

@@ -31,6 +31,7 @@ const ARGUMENTS = [
   '--disable-quic',
   '--host-resolver-rules=MAP * ~NOTFOUND',
   '--no-pdf-header-footer',
+  '--print-to-pdf-no-header',
   '--hide-scrollbars',
 ];
 
