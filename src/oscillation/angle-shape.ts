@@ -17,6 +17,7 @@ export interface AngleShape {
 /** Powers of the angle that no motion has to this size; the square is in the model. */
 const POWERS = [3, 4, 5, 6, 7, 8, 9] as const;
 
+const SLOW = [2, 3, 4, 5] as const;
 /** Below this share of the twist it is not worth a closer look. */
 const FAINT = 0.002;
 
@@ -29,8 +30,13 @@ export function angleShape(fit: TwistFit, twist: Float64Array): AngleShape {
     power = power.map((v, i) => v * relative[i]!);
     return power;
   });
-  const shape = orthonormalBasis(columns, [...columns.keys()], fit.basis.q);
-  const parts = shape.q.slice(fit.basis.q.length).map((q) => ({ q, size: dot(q, fit.residual) }));
+  // Even powers have a slow part, which is not to be taken for a wander of the rest direction.
+  const { time_s } = fit.samples;
+  const middle = time_s[time_s.length - 1]! / 2;
+  const slow = SLOW.map((power) => time_s.map((t) => (t / middle - 1) ** power));
+  const known = orthonormalBasis(slow, [...slow.keys()], fit.basis.q).q;
+  const shape = orthonormalBasis(columns, [...columns.keys()], known);
+  const parts = shape.q.slice(known.length).map((q) => ({ q, size: dot(q, fit.residual) }));
   const sum = parts.reduce((a, { size }) => a + size * size, 0);
   const whole = dot(twist, twist);
   // They stand out where the third harmonic is, against what noise is left there without them.

@@ -1,6 +1,7 @@
 import type { Estimate } from '../numerics/estimate.ts';
 import type { AngleShape } from './angle-shape.ts';
 import type { Jump } from './jumps.ts';
+import type { RestStep } from './rest-step.ts';
 import type { Check, RingDown, RingDownOptions, Severity } from './ring-down.ts';
 import { type RingDownCode, SENTENCES } from './sentences.ts';
 import type { SwingLine } from './swing.ts';
@@ -24,6 +25,7 @@ export interface Facts {
   readonly levelRatio: number;
   readonly crossings: CrossingResult | null;
   readonly jump: Jump | null;
+  readonly restStep: RestStep | null;
   readonly swings: readonly SwingLine[];
   /** Motion of the bar's middle at the twist's own frequency over the twist's motion of the end, in step with it and a quarter cycle off. */
   readonly coherent: { readonly inPhase: number; readonly quadrature: number } | null;
@@ -125,7 +127,11 @@ function sampled(facts: Facts): Check[] {
 function disturbed(facts: Facts): Check[] {
   const { ringDown, jump } = facts;
   const out: Check[] = [];
+  const step = facts.restStep;
   if (jump !== null && isJump(facts, jump)) out.push(check('jump', 'doubt', { time_s: jump.time_s, size: jump.size }));
+  else if (step !== null && isRestStep(facts, step)) {
+    out.push(check('rest_jumps', 'doubt', { time_s: step.time_s, size: Math.abs(step.size), unit: ringDown.unit }));
+  }
   const twist_Hz = ringDown.fd_Hz.value;
   const swing = ringDown.swing;
   const closest = facts.swings
@@ -157,6 +163,14 @@ function isJump(facts: Facts, jump: Jump): boolean {
   // The uncertainty there would be without the jump's own part in the residuals.
   const u_Hz = facts.noiseOnlyU_Hz * Math.sqrt(Math.min(1, jump.level / facts.level));
   return jump.size > 0.05 || (jump.size > 0.005 && shift_Hz > 1.5 * u_Hz);
+}
+
+/** A step of the rest direction shifts the motion about it as suddenly; it counts where that would move the frequency by more than its uncertainty. */
+function isRestStep({ ringDown, noiseOnlyU_Hz }: Facts, step: RestStep): boolean {
+  const smaller = Math.min(ringDown.amplitudeStart, ringDown.amplitudeEnd);
+  // A phase that jumps in the middle of a record tilts it by 1.5 times the jump over its length.
+  const shift_Hz = ((1.5 * Math.abs(step.size)) / (smaller * 2 * Math.PI * ringDown.cycles)) * ringDown.fd_Hz.value;
+  return step.evidence > 45 && shift_Hz > 1.5 * noiseOnlyU_Hz;
 }
 
 /** How the bar moved. */

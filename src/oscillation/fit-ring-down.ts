@@ -9,6 +9,7 @@ import { derived, withRelative } from './derived.ts';
 import { findJump } from './jumps.ts';
 import { BEND, DRAG, DRIFT, evaluateModel, GAMMA, motionOf, OFFSET, OMEGA, SHARE, SKEW } from './model.ts';
 import { uncertaintyOf, withoutPrior } from './parameter-covariance.ts';
+import { findRestStep } from './rest-step.ts';
 import type { RingDown, RingDownOptions, RingDownOutcome } from './ring-down.ts';
 import { foldedFrom, gapRival, mayBeFolded } from './rivals.ts';
 import { angleSeries, type Series, sampling } from './series.ts';
@@ -162,6 +163,7 @@ function factsOf(
     crossings({ time_s: samples.time_s, value: twist }, period_s, size),
     period_s,
   );
+  const step = findRestStep(fit, Math.max(period_s, 0.05 * end));
   const half = trace.halfLength_px;
   const swing = swings[0];
   const shareOf = (amplitude: number) => amplitude / a0;
@@ -209,6 +211,7 @@ function factsOf(
     levelRatio: fit.level / Math.max(rootMeanSquare(fit.residual) ** 2, 1e-300),
     crossings: counted,
     jump: findJump(fit, twist, later, Math.max(period_s, 0.05 * end)),
+    restStep: step === null ? null : { ...step, size: step.size * unitScale },
     swings,
     coherent,
     angleLine: angleLine === null ? null : { ...angleLine, amplitude: angleLine.amplitude * unitScale },

@@ -51,6 +51,8 @@ export const SENTENCES = {
     `The bar's middle moves at the twist's own ${figure(f.twist_Hz, 3)} Hz, so that a swing can't be told from the twist; let the swing die down first, or hang the bar by its middle.`,
   jump: (f: { time_s: number; size: number }) =>
     `Amplitude and phase jump by ${relative(f.size)} about ${figure(f.time_s, 3)} s into the segment, as after a nudge or a touch; mark only the stretch before or after it.`,
+  rest_jumps: (f: { time_s: number; size: number; unit: 'rad' | 'px' }) =>
+    `The rest direction jumps by ${excursion(f.size, f.unit)} about ${figure(f.time_s, 3)} s into the segment, as when the current changes or the bench is knocked; mark only the stretch before or after it.`,
   crossings_disagree: (f: { counted_Hz: number; fitted_Hz: number }) =>
     `Counting passages through rest gives ${figure(f.counted_Hz, 6)} Hz where the fit says ${figure(f.fitted_Hz, 6)} Hz; look at the trace for a disturbance.`,
   amplitude_large: (f: { amplitude: number; shift: number }) =>

@@ -272,6 +272,29 @@ describe('disturbances', () => {
     expect(codes(fitRingDown(drifting(0.4), PLAN))).toContain('doubt rest_drifts');
   });
 
+  it('finds a rest direction that jumps, and takes none that wanders slowly for a distorted angle', () => {
+    const trace = drawTrace(typical, seededRandom(10));
+    const moved = (by: (t: number) => number) => ({
+      ...trace,
+      angle: trace.angle.map((a, i) => a + DEG * by(trace.time_s[i]!)),
+    });
+    const outcome = fitRingDown(
+      moved((t) => (t > 6.5 ? 0.4 : 0)),
+      PLAN,
+    );
+    const found = outcome.checks.find((c) => c.code === 'rest_jumps');
+    expect(found!.severity).toBe('doubt');
+    expect(Number(/jumps by ([\d.]+)°/.exec(found!.message)![1])).toBeCloseTo(0.4, 1);
+    expect(Number(/about ([\d.]+) s/.exec(found!.message)![1])).toBeCloseTo(6.5, 0);
+    const slowly = fitRingDown(
+      moved((t) => 0.3 * Math.sin((2 * Math.PI * t) / 9)),
+      PLAN,
+    );
+    expect(codes(slowly)).not.toContain('doubt angle_distorted');
+    expectWithin(measured(slowly).f0_Hz.value, 0.9, measured(slowly).f0_Hz.u, 3);
+    for (let seed = 1; seed <= 20; seed++) expect(codes(ringDownOf({}, 80 + seed))).not.toContain('doubt rest_jumps');
+  });
+
   it('says how far a rest direction that wanders slowly is known', () => {
     const u = (wander: number) => measured(ringDownOf({ noise_deg: 0.01, wander }, 9, KNOWN)).equilibrium.u;
     const plain = u(0);
