@@ -36,6 +36,7 @@ export interface HostApi {
     version: string;
     dialogs: boolean;
     uploads: boolean;
+    cautions: string[];
   };
   about(a: Empty): v.AboutFacts;
   /** The layout that a window before this one had; null: none is known. */
@@ -174,6 +175,7 @@ export const calls = {
       version: z.string(),
       dialogs: z.boolean(),
       uploads: z.boolean(),
+      cautions: z.array(z.string()),
     }),
   },
   about: { args: empty, result: v.aboutFacts },

@@ -43,7 +43,7 @@ export const commands = [
   { id: 'export-csv', menu: 'file', label: 'Export table (CSV)…', accelerator: null, needs: ['results'] },
   { id: 'export-json', menu: 'file', label: 'Export results (JSON)…', accelerator: null, needs: ['results'] },
   { id: 'export-traces', menu: 'file', label: 'Export traces (CSV)…', accelerator: null, needs: ['results'] },
-  { id: 'export-report', menu: 'file', label: 'Export page to print…', accelerator: null, needs: ['results'] },
+  { id: 'export-report', menu: 'file', label: 'Export report (HTML)…', accelerator: null, needs: ['results'] },
   {
     id: 'report-pdf',
     menu: 'file',

@@ -220,7 +220,6 @@ export const aboutFacts = z.object({
   runtime: z.array(z.object({ name: z.string(), version: z.string() })),
   ffmpeg: z.object({ version: z.string(), source: z.string() }).nullable(),
   ffprobe: z.object({ version: z.string(), source: z.string() }).nullable(),
-  cautions: z.array(z.string()),
 });
 export type AboutFacts = z.infer<typeof aboutFacts>;
 

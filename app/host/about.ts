@@ -25,6 +25,5 @@ export async function aboutFacts(env: NodeJS.ProcessEnv, runtime: AboutFacts['ru
     runtime,
     ffmpeg: tools && { version: tools.version.text, source: sources[tools.source] },
     ffprobe: tools && { version: tools.ffprobeVersion.text, source: '' },
-    cautions,
   };
 }

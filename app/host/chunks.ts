@@ -15,7 +15,8 @@ export function chunksOf(from_s: number, to_s: number, time_s: Float64Array): Ch
   return between.slice(1).map((end, i) => ({ from_s: between[i] ?? from_s, to_s: end }));
 }
 
-function betweenFrames(time_s: Float64Array, t_s: number): number {
+/** A time half-way between the frame shown at or after `t_s` and the one before it; `t_s` itself at the ends. */
+export function betweenFrames(time_s: Float64Array, t_s: number): number {
   const next = time_s.findIndex((t) => t >= t_s);
   if (next <= 0) return t_s;
   return ((time_s[next - 1] ?? t_s) + (time_s[next] ?? t_s)) / 2;

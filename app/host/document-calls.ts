@@ -1,6 +1,6 @@
 import { programVersion } from '../../src/report/program.ts';
 import { CONTRACT_VERSION } from '../contract.ts';
-import { aboutFacts } from './about.ts';
+import { aboutFacts, cautions } from './about.ts';
 import type { Parts, Some } from './parts.ts';
 import { Refusal } from './serve-window.ts';
 
@@ -34,7 +34,7 @@ export function documentCalls({
       }
       const { shell, browser } = options;
       const program = { program: 'Needlebeat', version: programVersion };
-      return { contract: CONTRACT_VERSION, ...program, dialogs: shell !== null, uploads: browser };
+      return { contract: CONTRACT_VERSION, ...program, dialogs: shell !== null, uploads: browser, cautions };
     },
     about: () => aboutFacts(options.env, options.runtime),
     layout: () => layout.read(),

@@ -2,10 +2,11 @@ import type { OpenRecording } from '../../src/measuring/open-recordings.ts';
 import { decodeFrames } from '../../src/recording/decode-frames.ts';
 import type { FfmpegTools } from '../../src/recording/find-ffmpeg.ts';
 import type { TrackerPool } from '../../src/tracking/pool.ts';
-import type { Trace, View } from '../../src/tracking/trace.ts';
+import type { View } from '../../src/tracking/trace.ts';
 import type { TraceColumns } from '../contract.ts';
-import { type Chunk, chunksOf } from './chunks.ts';
-import type { FollowedStretch } from './overview-trace.ts';
+import { betweenFrames, type Chunk, chunksOf } from './chunks.ts';
+import { LEAD_FRAMES, parted } from './lead-in.ts';
+import { type FollowedStretch, firstNotBefore } from './overview-trace.ts';
 
 /** What following a stretch needs. */
 export interface FollowRequest {
@@ -70,14 +71,14 @@ export async function followStretches(request: FollowRequest, listener: FollowLi
   const work = async () => {
     for (let i = next++; i < chunks.length; i = next++) {
       const chunk = chunks[i] as Chunk;
-      const trace = await followChunk(request, chunk, {
+      const followed = await followChunk(request, chunk, {
         poses: (poses) => (i === head ? listener.poses(poses) : early[i]?.push(poses)),
         frames: (frames, upTo_s) => {
           meters[i] = { frames, upTo_s };
           tell();
         },
       });
-      finished(i, { ...chunk, trace });
+      finished(i, { ...chunk, ...followed });
     }
   };
   const workers = Array.from({ length: Math.min(request.cores, chunks.length) }, work);
@@ -91,11 +92,18 @@ interface ChunkListener {
   readonly frames: (frames: number, upTo_s: number) => void;
 }
 
-/** Follows one chunk; null where no bar was found in it, as where a hand hides it all the time. */
-async function followChunk(request: FollowRequest, chunk: Chunk, listener: ChunkListener): Promise<Trace | null> {
-  const { opened, view, tools, pool, signal } = request;
-  const { from_s: start_s, to_s: end_s } = chunk;
+/** Follows one chunk and a few frames before it; no trace where no bar was found in it, as where a hand hides it all the time. */
+async function followChunk(
+  request: FollowRequest,
+  chunk: Chunk,
+  listener: ChunkListener,
+): Promise<Pick<FollowedStretch, 'trace' | 'lead'>> {
+  const { opened, view, time_s, tools, pool, signal } = request;
+  const { from_s, to_s: end_s } = chunk;
   const { region } = view;
+  const first = firstNotBefore(time_s, from_s);
+  const lead = Math.max(0, first - LEAD_FRAMES);
+  const start_s = lead === first ? from_s : betweenFrames(time_s, time_s[lead] ?? from_s);
   const stream = decodeFrames(opened.recording, { region, start_s, end_s, timeScale: opened.timeScale, signal }, tools);
   const counted = async function* () {
     let frames = 0;
@@ -105,8 +113,17 @@ async function followChunk(request: FollowRequest, chunk: Chunk, listener: Chunk
       if (frames % 8 === 0) listener.frames(frames, frame.time_s);
     }
   };
-  const outcome = await pool.track(counted(), view, { signal, onPoses: listener.poses });
-  return outcome.ok ? outcome.trace : null;
+  const onPoses = (poses: LivePoses) => listener.poses(from(poses, from_s));
+  const outcome = await pool.track(counted(), view, { signal, onPoses });
+  return outcome.ok ? parted(outcome.trace, first) : { trace: null };
+}
+
+/** The rows from a time on. */
+function from(poses: LivePoses, from_s: number): LivePoses {
+  const at = firstNotBefore(poses.time_s, from_s);
+  const { time_s, angle, x_px, y_px } = poses;
+  if (at === 0) return poses;
+  return { time_s: time_s.slice(at), angle: angle.slice(at), x_px: x_px.slice(at), y_px: y_px.slice(at) };
 }
 
 /** Columns in the unit of the window's border. */

@@ -73,10 +73,13 @@ export async function followView(
         },
         chunk: (done) => {
           shift = null;
-          overview = withStretch(overview, done);
+          const before = overview;
+          overview = withStretch(before, done);
           kit.overviews.put(key, overview);
-          const trace = shownColumns(rowsBetween(overview, done.from_s, done.to_s), unit);
-          events.poses({ job, view: view.id, from_s: done.from_s, to_s: done.to_s, trace });
+          // Where what came before was brought into line with it, that is told anew as well.
+          const from_s = hasMoved(before, overview, done.from_s) ? 0 : done.from_s;
+          const trace = shownColumns(rowsBetween(overview, from_s, done.to_s), unit);
+          events.poses({ job, view: view.id, from_s, to_s: done.to_s, trace });
         },
         progress: (done_s, frames) => {
           if (kit.now_ms() - told_ms < TELL_EVERY_MS && done_s < total_s) return;
@@ -93,6 +96,12 @@ export async function followView(
 /** An overview in the unit of the window's border. */
 export function shownOverview(overview: OverviewTrace): Overview {
   return { ...shownColumns(overview, overview.unit), covered: overview.covered.map(([start, end]) => [start, end]) };
+}
+
+/** Whether the last pose before a time isn't where it was. */
+function hasMoved(before: OverviewTrace, after: OverviewTrace, from_s: number): boolean {
+  const row = firstNotBefore(before.time_s, from_s) - 1;
+  return row >= 0 && before.angle[row] !== after.angle[row];
 }
 
 function rowsBetween(overview: OverviewTrace, from_s: number, to_s: number) {

@@ -25,7 +25,7 @@ export function fitKey(
 
 /** Hash of everything that the overview trace of a view depends on. */
 export function overviewKey(view: SessionView, opened: OpenRecording): string {
-  return hash(['overview', opened.facts.content, opened.timeScale, looks(view), programName]);
+  return hash(['overview in line', opened.facts.content, opened.timeScale, looks(view), programName]);
 }
 
 /** A view without its names. */

@@ -1,4 +1,5 @@
 import type { Refusal, Trace } from '../../src/tracking/trace.ts';
+import { type LeadIn, stepAbove } from './lead-in.ts';
 
 /** What has been followed of one view, as the stretches come in: rows as in `Trace`, and the stretches they cover. */
 export interface OverviewTrace {
@@ -21,6 +22,8 @@ export interface FollowedStretch {
   readonly from_s: number;
   readonly to_s: number;
   readonly trace: Trace | null;
+  /** Poses of frames just before it; left out: none. */
+  readonly lead?: LeadIn;
 }
 
 /** Nothing followed yet. */
@@ -43,8 +46,33 @@ export function emptyOverview(unit: 'rad' | 'px'): OverviewTrace {
 
 const columns = ['time_s', 'angle', 'quality', 'x_px', 'y_px'] as const;
 
-/** The overview with a stretch put in; rows that it had there are replaced. Half turns between stretches are taken out. */
-export function withStretch(overview: OverviewTrace, stretch: FollowedStretch): OverviewTrace {
+/**
+ * The overview with a stretch put in; rows that it had there are replaced. Half turns between stretches are taken out, and so is the step
+ * to the stretch before it, whose poses are brought into line where the new one's axis is known better.
+ */
+export function withStretch(before: OverviewTrace, next: FollowedStretch): OverviewTrace {
+  const { overview, stretch } = inLine(before, next);
+  return joinedWith(overview, stretch);
+}
+
+function inLine(
+  overview: OverviewTrace,
+  stretch: FollowedStretch,
+): { readonly overview: OverviewTrace; readonly stretch: FollowedStretch } {
+  const { trace, lead, from_s } = stretch;
+  const step = trace && lead && overview.unit === 'rad' ? stepAbove(overview, lead) : null;
+  if (step === null || !trace) return { overview, stretch };
+  if (trace.u_common >= overview.u_common) {
+    const angle = trace.angle.map((a) => a - step);
+    return { overview, stretch: { ...stretch, trace: { ...trace, angle, u_common: overview.u_common } } };
+  }
+  const run = overview.covered.find(([start, end]) => start < from_s && end >= from_s - 1e-9);
+  const [first, end] = run ? [firstNotBefore(overview.time_s, run[0]), firstAfter(overview.time_s, run[1])] : [0, 0];
+  const angle = overview.angle.map((a, row) => (row >= first && row < end ? a + step : a));
+  return { overview: { ...overview, angle, u_common: trace.u_common }, stretch };
+}
+
+function joinedWith(overview: OverviewTrace, stretch: FollowedStretch): OverviewTrace {
   const { from_s, to_s, trace } = stretch;
   const before = firstNotBefore(overview.time_s, from_s);
   const after = firstAfter(overview.time_s, to_s);

@@ -2,7 +2,7 @@ import { useEffect, useState } from 'preact/hooks';
 import type { Result } from '../contract.ts';
 import { documentState } from './state/document.ts';
 import { chooseAndOpen, openDemo, openRecent } from './state/files.ts';
-import { ask } from './state/host.ts';
+import { ask, hello } from './state/host.ts';
 
 const STEPS = [
   ['Open the recording', 'of the bench: any video that a phone writes.'],
@@ -34,12 +34,11 @@ function RingDownDrawing() {
 /** Nothing is open: what to do, the demo session, sessions used before, and the cautions. */
 export function EmptyState() {
   const [recent, setRecent] = useState<Result<'recentSessions'>>([]);
-  const [about, setAbout] = useState<Result<'about'> | null>(null);
+  const cautions = hello.value?.cautions ?? [];
   const asked = documentState.value !== null;
   useEffect(() => {
     if (!asked) return;
     void ask('recentSessions', {}).then((found) => setRecent(found ?? []));
-    void ask('about', {}).then(setAbout);
   }, [asked]);
   return (
     <main class="empty-state">
@@ -79,11 +78,11 @@ export function EmptyState() {
             </ul>
           </section>
         ) : null}
-        {about && about.cautions.length > 0 ? (
+        {cautions.length > 0 ? (
           <section class="cautions">
             <h2>Cautions</h2>
             <ul>
-              {about.cautions.map((text) => (
+              {cautions.map((text) => (
                 <li key={text}>{text}</li>
               ))}
             </ul>

@@ -1,7 +1,7 @@
 import { useEffect, useState } from 'preact/hooks';
 import type { Result } from '../../contract.ts';
 import { closeDialog } from '../state/dialogs.ts';
-import { ask } from '../state/host.ts';
+import { ask, hello } from '../state/host.ts';
 import { DialogFrame } from './dialog-frame.tsx';
 
 /** Versions, the ffmpeg in use, and the cautions. */
@@ -15,7 +15,7 @@ export function AboutBox() {
         [facts.program, facts.version],
         ...facts.runtime.map(({ name, version }): [string, string] => [name, version]),
         ['ffmpeg', facts.ffmpeg ? `${facts.ffmpeg.version} (${facts.ffmpeg.source})` : 'not found'],
-        ['ffprobe', facts.ffprobe ? `${facts.ffprobe.version} (${facts.ffprobe.source})` : 'not found'],
+        ['ffprobe', facts.ffprobe?.version ?? 'not found'],
       ]
     : [];
   return (
@@ -33,7 +33,7 @@ export function AboutBox() {
       </table>
       <h3>Cautions</h3>
       <ul class="cautions">
-        {facts?.cautions.map((text) => (
+        {hello.value?.cautions.map((text) => (
           <li key={text}>{text}</li>
         ))}
       </ul>

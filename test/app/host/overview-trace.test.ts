@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { chunksOf } from '../../../app/host/chunks.ts';
+import { parted } from '../../../app/host/lead-in.ts';
 import { emptyOverview, traceWithin, uncovered, withStretch } from '../../../app/host/overview-trace.ts';
 import type { Trace } from '../../../src/tracking/trace.ts';
 
@@ -40,6 +41,29 @@ describe('overview trace', () => {
       expect((whole.angle[row] ?? 0) - turned(frame)).toBeCloseTo(offset, 9);
     }
     expect(whole.refused.map((r) => r.frame_index)).toEqual([70, 71]);
+  });
+
+  it('takes out the step between stretches whose axis was learnt differently; the better known one stays', () => {
+    const off = (trace: Trace, by: number, u_common: number): Trace => ({
+      ...trace,
+      angle: trace.angle.map((a) => a + by),
+      u_common,
+    });
+    const join = (firstOff: [number, number], secondOff: [number, number]) => {
+      const second = parted(off(traceOf(44, 120, 2), ...secondOff), 60);
+      expect([second.lead.frame_index[0], second.lead.frame_index.at(-1)]).toEqual([44, 59]);
+      expect(second.trace.frame_index[0]).toBe(60);
+      const start = { from_s: 0, to_s: 1.99, trace: off(traceOf(0, 60, 0), ...firstOff) };
+      return [start, { from_s: 1.99, to_s: 4, ...second }].reduce(withStretch, emptyOverview('rad'));
+    };
+    for (const whole of [join([0.1, 0.014], [0, 0.0005]), join([0, 0.0005], [-0.2, 0.014])]) {
+      expect(whole.u_common).toBe(0.0005);
+      expect(whole.time_s).toHaveLength(120);
+      for (const [row, frame] of whole.frame_index.entries()) {
+        const error = (whole.angle[row] ?? 0) - turned(frame);
+        expect(error - Math.PI * Math.round(error / Math.PI)).toBeCloseTo(0, 9);
+      }
+    }
   });
 
   it('replaces what was followed before', () => {
