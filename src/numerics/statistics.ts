@@ -26,11 +26,36 @@ export function rootMeanSquare(values: ArrayLike<number>): number {
 /** Quantile `q` in [0, 1], linear between order statistics (definition 7 of Hyndman and Fan 1996). RangeError for no values. */
 export function quantile(values: ArrayLike<number>, q: number): number {
   demand(values, 1, 'quantile');
-  const sorted = Float64Array.from(values).sort();
-  const at = q * (sorted.length - 1);
+  const work = Float64Array.from(values);
+  const at = q * (work.length - 1);
   const low = Math.floor(at);
-  const high = Math.min(low + 1, sorted.length - 1);
-  return sorted[low]! + (at - low) * (sorted[high]! - sorted[low]!);
+  const below = select(work, low);
+  if (low === at) return below;
+  let above = work[low + 1]!;
+  for (let i = low + 2; i < work.length; i++) above = Math.min(above, work[i]!);
+  return below + (at - low) * (above - below);
+}
+
+/** Puts the value of rank `rank` (from 0) in its place, none larger before and none smaller behind it (Hoare 1961, Algorithm 65: Find), and returns it. */
+function select(work: Float64Array, rank: number): number {
+  let from = 0;
+  let to = work.length - 1;
+  while (from < to) {
+    const pivot = work[rank]!;
+    let i = from;
+    let j = to;
+    while (i <= j) {
+      while (work[i]! < pivot) i++;
+      while (pivot < work[j]!) j--;
+      if (i > j) break;
+      const swap = work[i]!;
+      work[i++] = work[j]!;
+      work[j--] = swap;
+    }
+    if (j < rank) from = i;
+    if (rank < i) to = j;
+  }
+  return work[rank]!;
 }
 
 /** Median. RangeError for no values. */

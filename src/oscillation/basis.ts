@@ -7,7 +7,7 @@ export interface Basis {
 }
 
 /**
- * Orthonormal basis of the columns in the order given by `order`, by the modified Gram-Schmidt process done twice; a column of which the
+ * Orthonormal basis of the columns in the order given by `order`, by the modified Gram-Schmidt process, done twice where that takes most of a column away; a column of which the
  * earlier ones leave less than 1e-9 adds nothing. Vectors orthonormal already may come `before` them: they stand first in `q` and not in `from`.
  */
 export function orthonormalBasis(
@@ -20,8 +20,11 @@ export function orthonormalBasis(
   for (const k of order) {
     const column = columns[k]!.slice();
     const length = Math.sqrt(dot(column, column));
-    for (let pass = 0; pass < 2; pass++) for (const other of q) subtract(column, other, dot(column, other));
-    const norm = Math.sqrt(dot(column, column));
+    let norm = length;
+    for (let pass = 0; pass === 0 || (pass === 1 && norm < 0.1 * length); pass++) {
+      for (const other of q) subtract(column, other, dot(column, other));
+      norm = Math.sqrt(dot(column, column));
+    }
     if (!(norm > 1e-9 * length)) continue;
     for (let i = 0; i < column.length; i++) column[i] = column[i]! / norm;
     q.push(column);
