@@ -25,7 +25,10 @@ export interface LeastSquaresOptions {
   /** Which parameters stay as they start; absent: none. */
   readonly fixed?: readonly boolean[];
   readonly priors?: readonly Prior[];
-  /** Stops when actual and predicted reduction of the sum of squares are both below this share of it, or the next step promises hardly any (default 1e-12). */
+  /**
+   * Stops when actual and predicted reduction of the sum of squares are both below this share of it, or the next step promises hardly any
+   * (default 1e-12).
+   */
   readonly sumTolerance?: number;
   /** Stops when every free parameter's step, in units of its own column scale, is below this share (default 1e-10). */
   readonly stepTolerance?: number;

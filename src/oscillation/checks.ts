@@ -64,7 +64,7 @@ const FEWEST_CYCLES = 2.5;
 const FEW_CYCLES = 3.5;
 /** From here on the user is told of it. */
 const PUSHED = 9;
-/** Below this quality factor the amplitude falls to a third in two to three cycles, and what is left of the motion is of the size of the angle's errors. */
+/** Below this quality factor the amplitude falls to a third in two to three cycles, and what is left is of the size of the angle's errors. */
 const LOWEST_Q = 8;
 
 /** Faults that leave a segment unmeasured. */
@@ -165,7 +165,7 @@ function isJump(facts: Facts, jump: Jump): boolean {
   return jump.size > 0.05 || (jump.size > 0.005 && shift_Hz > 1.5 * u_Hz);
 }
 
-/** A step of the rest direction shifts the motion about it as suddenly; it counts where that would move the frequency by more than its uncertainty. */
+/** A step of the rest direction shifts the motion about it as suddenly; it counts where that would move the frequency beyond its uncertainty. */
 function isRestStep({ ringDown, noiseOnlyU_Hz }: Facts, step: RestStep): boolean {
   const smaller = Math.min(ringDown.amplitudeStart, ringDown.amplitudeEnd);
   // A phase that jumps in the middle of a record tilts it by 1.5 times the jump over its length.

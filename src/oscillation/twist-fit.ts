@@ -12,7 +12,7 @@ export interface TwistFit extends Evaluation {
   readonly model: Model;
   /** Covariance of the parameters (zero for held ones), row by row: noise with its correlation, and priors. */
   readonly covariance: Float64Array;
-  /** The fit's inverse of J'J and priors for noise of variance `level`, row by row: turns J'y / level into a change of parameters. */
+  /** The fit's inverse of J'J and priors for noise of variance `level`, row by row: turns -J'y / level into the change that y added to the data makes. */
   readonly inverse: Float64Array;
   /** 1 for every row of the series that was used, 0 for outliers. */
   readonly used: Uint8Array;

@@ -10,8 +10,8 @@ const CHANCE = 2.5;
 /** What is nearer than one line can't be seen. Wander is stronger there; for the mean of a record it is taken to be this many times as strong. */
 const BELOW_OF_MEAN = 5;
 /**
- * The slope of a random walk through n samples has the variance that white noise of n D T / 10 a sample would give it (6/5 D / T), while its lines 1 to
- * 3 hold 0.0115 n D T a sample once a straight line is taken off: this many times less.
+ * The slope of a random walk through n samples has the variance that white noise of n D T / 10 a sample would give it (6/5 D / T), while
+ * its lines 1 to 3 hold 0.0115 n D T a sample once a straight line is taken off: this many times less.
  */
 const BELOW_OF_SLOPE = 9;
 
@@ -22,9 +22,9 @@ export function wanderOfMean(residual: Spectrum, count: number, level: number): 
 }
 
 /**
- * Variance per sample of the white noise that would move an oscillation of `frequency_Hz` as much as the wander of its amplitude and phase seen in the
- * residuals does: draughts and tremors push a bar at random, and it carries each push on. Their lines stand close about the frequency; broader
- * noise counts as none. Zero where there is none.
+ * Variance per sample of the white noise that would move an oscillation of `frequency_Hz` as much as the wander of its amplitude and phase
+ * seen in the residuals does: draughts and tremors push a bar at random, and it carries each push on. Their lines stand close about the
+ * frequency; broader noise counts as none. Zero where there is none.
  */
 export function wanderOfMotion(residual: Spectrum, count: number, frequency_Hz: number): number {
   const line = frequency_Hz / residual.step_Hz;
