@@ -72,7 +72,8 @@ export function barOutline(trace: Trace, view: View, row: number): [number, numb
   const squash = view.kind === 'oblique' ? Math.sin((view.elevation_deg * Math.PI) / 180) : 1;
   const angle = trace.angle[row] ?? 0;
   const along = [Math.cos(angle) * half, Math.sin(angle) * half] as const;
-  const across = [-along[1] * SLENDER, along[0] * SLENDER] as const;
+  const share = trace.halfWidth_px === undefined ? SLENDER : trace.halfWidth_px / half;
+  const across = [-along[1] * share, along[0] * share] as const;
   const corner = (u: number, v: number): [number, number] => [
     x + u * along[0] + v * across[0],
     y - squash * (u * along[1] + v * across[1]),

@@ -11,10 +11,16 @@ export interface PoseColumns {
   readonly y_px: Float64Array;
 }
 
+/** What is known of the bar as a body. */
+export interface BarSize {
+  readonly halfLength_px: number | null;
+  readonly halfWidth_px: number | null;
+}
+
 /** Collects the poses of a stretch into columns that grow as needed. */
 export class TraceBuilder {
   readonly #view: View;
-  readonly #halfLength_px: number | null;
+  readonly #size: BarSize;
   readonly #u_common: number;
   readonly #edges: EndEdges;
   #time_s = new Float64Array(1024);
@@ -27,10 +33,10 @@ export class TraceBuilder {
   #rows = 0;
   #reported = 0;
 
-  constructor(view: View, halfLength_px: number | null, u_common: number, edges: EndEdges) {
+  constructor(view: View, size: BarSize, u_common: number, edges: EndEdges) {
     this.#edges = edges;
     this.#view = view;
-    this.#halfLength_px = halfLength_px;
+    this.#size = size;
     this.#u_common = u_common;
   }
 
@@ -102,7 +108,8 @@ export class TraceBuilder {
       quality: sd.map((value) => Math.min(1, best / value)),
       frame_index: this.#frame_index.slice(0, n),
       refused: this.#refused,
-      halfLength_px: this.#halfLength_px,
+      halfLength_px: this.#size.halfLength_px,
+      ...(this.#size.halfWidth_px !== null && { halfWidth_px: this.#size.halfWidth_px }),
       u_common: this.#u_common,
     };
   }

@@ -54,6 +54,8 @@ export interface Trace {
   readonly refused: readonly { readonly frame_index: number; readonly reason: Refusal }[];
   /** Apparent half length of the bar in pixels of its horizontal plane (scales swing to twist); null where it can't be seen. */
   readonly halfLength_px: number | null;
+  /** Half of the bar's width in the same pixels, for drawing it; left out where it isn't known. */
+  readonly halfWidth_px?: number;
   /**
    * Standard uncertainty common to all angles of the stretch (where the bar's own axis is taken to lie, camera geometry),
    * in the unit of `angle`: goes into the rest direction, not into frequencies.

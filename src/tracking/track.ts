@@ -4,7 +4,7 @@ import { type BarModel, learnBar, type NoBar } from './learn-bar.ts';
 import { type Expected, learnEnd } from './learn-end.ts';
 import type { SideView, Trace, TrackOutcome, View } from './trace.ts';
 import type { PoseColumns } from './trace-builder.ts';
-import { TraceBuilder } from './trace-builder.ts';
+import { type BarSize, TraceBuilder } from './trace-builder.ts';
 
 /** What may be passed to `trackFrames`. */
 export interface TrackOptions {
@@ -100,7 +100,7 @@ class Following {
 
   constructor(view: View, model: BarModel, options: TrackOptions) {
     this.#follower = new Follower(model);
-    this.#builder = new TraceBuilder(view, halfLengthOf(view, model), commonUncertainty(view, model), {
+    this.#builder = new TraceBuilder(view, sizeOf(view, model), commonUncertainty(view, model), {
       edgeLean_px: model.edgeLean_px,
       restX_px: model.restX_px + view.region.x,
     });
@@ -142,8 +142,12 @@ function expectedEnd(view: SideView): Expected | null {
   return { x_px, spread_px: 6 + 0.1 * view.half_length_px };
 }
 
-function halfLengthOf(view: View, model: BarModel): number | null {
-  return view.kind === 'side' ? view.half_length_px : model.halfLength_px;
+function sizeOf(view: View, model: BarModel): BarSize {
+  if (view.kind === 'side') return { halfLength_px: view.half_length_px, halfWidth_px: null };
+  return {
+    halfLength_px: model.halfLength_px,
+    halfWidth_px: (model.outline.bottom - model.outline.top) / 2,
+  };
 }
 
 /** How well the line of sight is taken to be known, radians: along the fibre to 2 degrees, a stated elevation to half a degree. */

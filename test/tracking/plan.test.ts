@@ -62,9 +62,11 @@ describe('following a bar from above', () => {
     const tiny = await follow({ width: 64, height: 56, length_px: 40, thickness_px: 6 });
     expect(tiny.verdict!.noise_deg).toBeLessThan(0.04);
     expect(traceOf(tiny.outcome).halfLength_px).toBeCloseTo(20, 0);
+    expect(Math.abs(traceOf(tiny.outcome).halfWidth_px! - 3)).toBeLessThan(1);
     const big = await follow({ width: 640, height: 400, length_px: 600, thickness_px: 40, frames: 24 });
     expect(big.verdict!.noise_deg).toBeLessThan(0.005);
     expect(Math.abs(traceOf(big.outcome).halfLength_px! - 300)).toBeLessThan(2);
+    expect(Math.abs(traceOf(big.outcome).halfWidth_px! - 20)).toBeLessThan(1);
   });
 
   it('works in strong noise with as much scatter as the noise allows', async () => {
