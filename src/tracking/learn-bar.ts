@@ -29,6 +29,8 @@ export interface BarModel {
   readonly middleU_px: number;
   readonly middleV_px: number;
   readonly halfLength_px: number;
+  /** Share of what moves in the opening that the bar's turning explains, 0 to 1. */
+  readonly explained: number;
   /** What is usual of a sound frame. */
   readonly usualShare: number;
   readonly usualOdd: number;
@@ -86,6 +88,7 @@ export function learnBar(frames: readonly Frame[], squash: number): BarModel | N
     tried = recentre(tried, squash, motion.along_px);
     if (soundIndices(tried).length < 3) return 'no_likeness';
   }
+  const { explained } = movingLayer(placed(coarse, tried), wide, motion);
   const lean = straightenBy(separate(placed(coarse, tried), wide, null, null, motion.noise));
   tried = turned(tried, lean);
   layers = separate(placed(coarse, tried), wide, null, null, motion.noise);
@@ -125,7 +128,7 @@ export function learnBar(frames: readonly Frame[], squash: number): BarModel | N
     points = withSlides(points, placed(sample, tried), background, layers, outline);
     tried = again(sample, background, points, tried, [3, 3]);
   }
-  return describe(layers, outline, background, points, tried, squash);
+  return describe(layers, outline, background, points, tried, squash, explained);
 }
 
 function describe(
@@ -135,6 +138,7 @@ function describe(
   points: BarPoints,
   tried: readonly TriedPlace[],
   squash: number,
+  explained: number,
 ): BarModel | NoBar {
   const axis = findAxis(layers, outline);
   if (axis === null) return 'no_outline';
@@ -157,6 +161,7 @@ function describe(
     middleU_px: pivot.u_px,
     middleV_px: pivot.v_px,
     halfLength_px: length_px / 2,
+    explained,
     usualShare: middle(sound.map(({ agreement }) => agreement!.share)),
     usualOdd: middle(sound.map(({ agreement }) => agreement!.odd)),
     usualMisfit: middle(sound.map(({ agreement }) => agreement!.misfit)),

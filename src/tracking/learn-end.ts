@@ -88,6 +88,7 @@ export function learnEnd(frames: readonly Frame[], expected: Expected | null): B
     middleU_px: mirror.u_px,
     middleV_px: (mirror.top + mirror.bottom) / 2,
     halfLength_px: mirror.half_px,
+    explained: 1,
     usualShare: middle(sound.map(({ agreement }) => agreement!.share)),
     usualOdd: middle(sound.map(({ agreement }) => agreement!.odd)),
     usualMisfit: middle(sound.map(({ agreement }) => agreement!.misfit)),

@@ -23,6 +23,8 @@ const OPENING_BYTES = 64 * 2 ** 20;
 /** The bar is first learnt from so many frames and seconds; where that fails, again from twice as many, and so on. */
 const OPENING_FRAMES = 240;
 const OPENING_S = 8;
+/** A bar that explains less of what moves is rather learnt from more frames: of drawn recordings none that was right had less. */
+const WELL_EXPLAINED = 0.72;
 /** Fewest frames a bar can be learnt from. */
 const FEWEST_FRAMES = 8;
 /** Poses between two reports. */
@@ -51,12 +53,13 @@ export async function trackFrames(
   let following: Following | null = null;
   let failure: NoBar | null = null;
 
-  const begin = (): void => {
-    const model = learn(opening, view);
-    if (typeof model === 'string') {
-      failure = model;
+  const begin = (last: boolean): void => {
+    const model = learnBest(opening, view, last);
+    const later = !last && bytes < OPENING_BYTES;
+    if (typeof model === 'string' || (later && model.explained < WELL_EXPLAINED)) {
+      if (typeof model === 'string') failure = model;
       enough *= 2;
-      if (bytes >= OPENING_BYTES) for (const frame of opening.splice(0)) options.onDone?.(frame);
+      if (!later) for (const frame of opening.splice(0)) options.onDone?.(frame);
       return;
     }
     following = new Following(view, model, options);
@@ -72,7 +75,7 @@ export async function trackFrames(
       opening.push(frame);
       bytes += frame.grey.byteLength;
       const seen_s = frame.time_s - opening[0]!.time_s;
-      if (bytes >= OPENING_BYTES || (opening.length >= enough && seen_s >= OPENING_S)) begin();
+      if (bytes >= OPENING_BYTES || (opening.length >= enough && seen_s >= OPENING_S)) begin(false);
     } else options.onDone?.(frame);
   }
   options.signal?.throwIfAborted();
@@ -84,7 +87,7 @@ export async function trackFrames(
       frames: taken,
     };
   }
-  if (following === null && opening.length > 0) begin();
+  if (following === null && opening.length > 0) begin(true);
   options.onProgress?.(taken);
   const trace = (following as Following | null)?.finish() ?? null;
   return trace === null
@@ -119,6 +122,20 @@ class Following {
     if (this.#builder.waiting > 0) this.#options.onPoses?.(this.#builder.takeNew());
     return this.#builder.rows < FEWEST_FRAMES ? null : this.#builder.finish();
   }
+}
+
+/** The bar as learnt from the opening frames or, where that isn't convincing and `halves` or many frames allow it, from their later half alone. */
+function learnBest(opening: readonly Frame[], view: View, halves: boolean): BarModel | NoBar {
+  const model = learn(opening, view);
+  const enough = halves ? OPENING_FRAMES / 2 : 2 * OPENING_FRAMES;
+  if (opening.length < enough || explainedBy(model) >= WELL_EXPLAINED) return model;
+  // The first seconds may show something else: a hand that lets go, a bar that turns all the way round.
+  const other = learn(opening.slice(opening.length >> 1), view);
+  return explainedBy(other) > explainedBy(model) ? other : model;
+}
+
+function explainedBy(model: BarModel | NoBar): number {
+  return typeof model === 'string' ? -1 : model.explained;
 }
 
 function learn(opening: readonly Frame[], view: View): BarModel | NoBar {
