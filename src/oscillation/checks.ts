@@ -62,6 +62,9 @@ const DEG = Math.PI / 180;
 /** Fewer cycles than this give no frequency; fewer than the second number one to be doubted. */
 const FEWEST_CYCLES = 2.5;
 const FEW_CYCLES = 3.5;
+/** A frequency less well known than this, relative, is as good as unknown; where a jump is the reason, saying so helps more. */
+const LARGEST_u = 0.02;
+const LARGEST_JUMPED_u = 0.2;
 /** From here on the user is told of it. */
 const PUSHED = 9;
 /** Below this quality factor the amplitude falls to a third in two to three cycles, and what is left is of the size of the angle's errors. */
@@ -75,9 +78,12 @@ export const faults = {
     const { ringDown } = facts;
     const u = ringDown.f0_Hz.u / ringDown.f0_Hz.value;
     if (!facts.converged || !Number.isFinite(u)) return [check('fit_failed', 'fault', undefined)];
-    if (!(facts.signal > 60)) return faults.noOscillation();
+    const { jump } = facts;
+    const jumped = jump !== null && isJump(facts, jump) ? [check('jump', 'fault', sizeAndTime(jump))] : [];
+    if (!(facts.signal > 60)) return jumped.length > 0 ? jumped : faults.noOscillation();
     if (ringDown.cycles < FEWEST_CYCLES) return [check('too_few_cycles', 'fault', { cycles: ringDown.cycles })];
-    if (u > 0.02) return [check('not_determined', 'fault', { relative: u })];
+    if (jumped.length > 0) return u > LARGEST_JUMPED_u ? jumped : [];
+    if (u > LARGEST_u) return [check('not_determined', 'fault', { relative: u })];
     return [];
   },
 };
@@ -128,7 +134,7 @@ function disturbed(facts: Facts): Check[] {
   const { ringDown, jump } = facts;
   const out: Check[] = [];
   const step = facts.restStep;
-  if (jump !== null && isJump(facts, jump)) out.push(check('jump', 'doubt', { time_s: jump.time_s, size: jump.size }));
+  if (jump !== null && isJump(facts, jump)) out.push(check('jump', 'doubt', sizeAndTime(jump)));
   else if (step !== null && isRestStep(facts, step)) {
     out.push(check('rest_jumps', 'doubt', { time_s: step.time_s, size: Math.abs(step.size), unit: ringDown.unit }));
   }
@@ -154,6 +160,10 @@ function disturbed(facts: Facts): Check[] {
     out.push(check('swing_seen', 'note', { frequency_Hz: swing.frequency_Hz, share: swing.share }));
   }
   return out;
+}
+
+function sizeAndTime({ time_s, size }: Jump): { time_s: number; size: number } {
+  return { time_s, size };
 }
 
 /** A jump counts where it can't be chance and either is large or would move the frequency by more than its uncertainty. */

@@ -223,6 +223,21 @@ describe('disturbances', () => {
     expect(Number(/about ([\d.]+) s/.exec(jump!.message)![1])).toBeCloseTo(200 / 30, 0);
   });
 
+  it.each([
+    [2.4, 8],
+    [2.4, 5],
+    [2.8, 8],
+    [3.2, 8],
+  ])('nudged anew (phase %d, %d degrees): said is when, not that the frequency is unknown', (phase, amplitude_deg) => {
+    const trace = drawTrace({ ...typical, phase: 0.3 }, seededRandom(21));
+    const late = drawTrace({ ...typical, phase, amplitude_deg }, seededRandom(22));
+    const angle = trace.angle.map((a, i) => (i < 100 ? a : late.angle[i - 100]!));
+    const { checks } = fitRingDown({ ...trace, angle }, PLAN);
+    expect(statusOf(checks)).not.toBe('measured');
+    const jump = checks.find((c) => c.code === 'jump');
+    expect(Number(/about ([\d.]+) s/.exec(jump!.message)![1])).toBeCloseTo(100 / 30, 0);
+  });
+
   it('finds a small touch that would move the frequency, and sees none where there is none', () => {
     const clean = drawTrace(typical, seededRandom(27));
     const omega = 2 * Math.PI * typical.f0_Hz;
