@@ -43,8 +43,11 @@ export function findFfmpeg(env: NodeJS.ProcessEnv): Promise<FfmpegTools> {
 }
 
 async function search(env: NodeJS.ProcessEnv): Promise<FfmpegTools> {
-  const { source, ...ffmpeg } = await chooseFfmpeg(env);
-  const ffprobe = await chooseFfprobe(env, ffmpeg.path);
+  const tryBinary = triedOnce();
+  // Nearly always the one that is wanted in the end; asking takes as long as asking the ffmpegs.
+  const early = onSearchPath(env, 'ffprobe').then(tryBinary);
+  const { source, ...ffmpeg } = await chooseFfmpeg(env, tryBinary).finally(() => early);
+  const ffprobe = await chooseFfprobe(env, ffmpeg.path, tryBinary);
   return {
     ffmpeg: ffmpeg.path,
     version: ffmpeg.version,
@@ -54,8 +57,8 @@ async function search(env: NodeJS.ProcessEnv): Promise<FfmpegTools> {
   };
 }
 
-async function chooseFfmpeg(env: NodeJS.ProcessEnv): Promise<Binary & { source: FfmpegSource }> {
-  const named = await namedBinary(env, 'FFMPEG_PATH', 'ffmpeg');
+async function chooseFfmpeg(env: NodeJS.ProcessEnv, tryBinary: TryBinary): Promise<Binary & { source: FfmpegSource }> {
+  const named = await namedBinary(env, 'FFMPEG_PATH', 'ffmpeg', tryBinary);
   if (named !== null) return { ...named, source: 'FFMPEG_PATH' };
   const fetched = await tryBinary(ffmpegStaticPath());
   if (fetched !== null) return { ...fetched, source: 'ffmpeg-static' };
@@ -72,8 +75,8 @@ async function chooseFfmpeg(env: NodeJS.ProcessEnv): Promise<Binary & { source: 
   );
 }
 
-async function chooseFfprobe(env: NodeJS.ProcessEnv, ffmpegPath: string): Promise<Binary> {
-  const named = await namedBinary(env, 'FFPROBE_PATH', 'ffprobe');
+async function chooseFfprobe(env: NodeJS.ProcessEnv, ffmpegPath: string, tryBinary: TryBinary): Promise<Binary> {
+  const named = await namedBinary(env, 'FFPROBE_PATH', 'ffprobe', tryBinary);
   if (named !== null) return named;
   const beside = await tryBinary(join(dirname(ffmpegPath), executableName('ffprobe')));
   if (beside !== null) return beside;
@@ -88,7 +91,12 @@ async function chooseFfprobe(env: NodeJS.ProcessEnv, ffmpegPath: string): Promis
   );
 }
 
-async function namedBinary(env: NodeJS.ProcessEnv, variable: string, program: string): Promise<Binary | null> {
+async function namedBinary(
+  env: NodeJS.ProcessEnv,
+  variable: string,
+  program: string,
+  tryBinary: TryBinary,
+): Promise<Binary | null> {
   const path = env[variable];
   if (path === undefined || path === '') return null;
   const binary = isAbsolute(path) ? await tryBinary(path) : null;
@@ -99,8 +107,21 @@ async function namedBinary(env: NodeJS.ProcessEnv, variable: string, program: st
 }
 
 /** Runs the program for its version; null where there is none, or it is something else. */
-async function tryBinary(path: string | null): Promise<Binary | null> {
-  if (path === null || !(await isExecutable(path))) return null;
+type TryBinary = (path: string | null) => Promise<Binary | null>;
+
+/** Tries each path once, whoever asks. */
+function triedOnce(): TryBinary {
+  const tried = new Map<string, Promise<Binary | null>>();
+  return async (path) => {
+    if (path === null) return null;
+    const trying = tried.get(path) ?? tryBinary(path);
+    tried.set(path, trying);
+    return trying;
+  };
+}
+
+async function tryBinary(path: string): Promise<Binary | null> {
+  if (!(await isExecutable(path))) return null;
   const run = await childOutput(path, ['-version'], {
     deadlines: { whole_s: 20, silence_s: 20 },
     limit_bytes: 1 << 16,

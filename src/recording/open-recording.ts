@@ -17,9 +17,26 @@ import { parseStreamFacts, type StreamFacts, streamFactsArguments } from './stre
 export async function openRecording(path: string, tools: FfmpegTools, signal?: AbortSignal): Promise<Recording> {
   const absolute = resolve(path);
   const { bytes, head } = await readableFile(absolute);
-  const facts = await probeFacts(absolute, head, tools, signal);
+  const leaving = new AbortController();
+  const stop = signal === undefined ? leaving.signal : AbortSignal.any([signal, leaving.signal]);
+  // The packets are listed while the container is being described: either takes a while only to start.
+  const listing = listPackets(absolute, tools, stop);
+  // Whoever waits for it hears of a failure; nobody may be waiting yet.
+  listing.catch(() => {});
+  const facts = await probeFacts(absolute, head, tools, signal).catch(async (error) => {
+    leaving.abort();
+    await listing.catch(() => {});
+    throw error;
+  });
   const remarks = [...facts.remarks];
-  const { ticks, keyframes, seekable, packets } = await displayedFrames(absolute, facts, remarks, tools, signal);
+  const { ticks, keyframes, seekable, packets } = await displayedFrames(
+    absolute,
+    facts,
+    listing,
+    remarks,
+    tools,
+    signal,
+  );
   if (ticks.length === 0)
     throw new InputError(`"${absolute}" holds no picture that can be read: it is damaged or cut short.`);
   if (Math.abs(ticks[0] ?? 0) > Number.MAX_SAFE_INTEGER || Math.abs(ticks.at(-1) ?? 0) > Number.MAX_SAFE_INTEGER) {
@@ -74,12 +91,13 @@ function whyUnreadable(stderr: string, head: Buffer): string {
 async function displayedFrames(
   path: string,
   facts: StreamFacts,
+  listing: Promise<PacketList>,
   remarks: string[],
   tools: FfmpegTools,
   signal?: AbortSignal,
 ): Promise<{ ticks: Float64Array; keyframes: Uint32Array; seekable: boolean; packets: PacketList }> {
   const [packets, head] = await Promise.all([
-    listPackets(path, tools, signal),
+    listing,
     decodedTicks(path, facts.timebase, tools, { frames: 12, signal }),
   ]);
   if (head.length === 0 && packets.pts.length + packets.untimed > 0) {

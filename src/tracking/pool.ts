@@ -27,6 +27,9 @@ interface Job {
   broken: { readonly reason: unknown } | null;
 }
 
+/** What a worker holds for long are pictures in shared memory; room for what is soon thrown away would only grow with the recording's length. */
+const YOUNG_MB = 8;
+
 /** Stretches that one worker follows at once: following takes far less time than decoding, and learning a bar goes faster in a thread that has done it before. */
 const JOBS_A_THREAD = 2;
 
@@ -140,7 +143,7 @@ class TrackerThread {
 
   constructor(onDeath: (thread: TrackerThread) => void) {
     this.#onDeath = onDeath;
-    this.#worker = new Worker(WORKER);
+    this.#worker = new Worker(WORKER, { resourceLimits: { maxYoungGenerationSizeMb: YOUNG_MB } });
     this.#worker.on('message', (raw: unknown) => this.#receive(raw));
     this.#worker.on('messageerror', (error) => this.#die(error));
     this.#worker.on('error', (error) => this.#die(error));
