@@ -1,5 +1,6 @@
 import { availableParallelism } from 'node:os';
-import { type MeasuredSegment, type MeasuringTools, measureSegment } from './measuring/measure-segment.ts';
+import { type MeasuringTools, measureSegment } from './measuring/measure-segment.ts';
+import type { MeasuredSegment } from './measuring/measured-segment.ts';
 import { openRecordings, type SessionRecordings } from './measuring/open-recordings.ts';
 import { type FfmpegTools, findFfmpeg } from './recording/find-ffmpeg.ts';
 import { reduceSegments } from './reduce-results.ts';

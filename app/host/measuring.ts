@@ -1,9 +1,5 @@
-import {
-  apparatusOf,
-  followSegment,
-  type MeasuredSegment,
-  ringDownOptions,
-} from '../../src/measuring/measure-segment.ts';
+import { apparatusOf, followSegment, ringDownOptions } from '../../src/measuring/measure-segment.ts';
+import type { MeasuredSegment } from '../../src/measuring/measured-segment.ts';
 import { segmentResult } from '../../src/measuring/segment-result.ts';
 import type { FfmpegTools } from '../../src/recording/find-ffmpeg.ts';
 import type { Apparatus } from '../../src/reduction/apparatus.ts';

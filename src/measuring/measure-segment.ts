@@ -6,10 +6,10 @@ import type { DecodeAccount, Frame } from '../recording/recording.ts';
 import type { Apparatus } from '../reduction/apparatus.ts';
 import { fibreFindings, fibreSegments } from '../reduction/fibre-sources.ts';
 import { inertia } from '../reduction/inertia.ts';
-import type { SegmentResult } from '../report/results.ts';
 import type { Session, SessionSegment, SessionView } from '../session/session.ts';
 import type { TrackerPool } from '../tracking/pool.ts';
-import type { Trace, TrackOutcome, View } from '../tracking/trace.ts';
+import type { TrackOutcome, View } from '../tracking/trace.ts';
+import type { MeasuredSegment } from './measured-segment.ts';
 import { DEFAULT_U_TIME_SCALE, type OpenRecording, type SessionRecordings } from './open-recordings.ts';
 import { segmentResult } from './segment-result.ts';
 
@@ -20,13 +20,6 @@ export interface MeasuringTools {
   readonly signal?: AbortSignal | undefined;
   /** Told after every frame handed to the tracker: how many so far, and the time reached. */
   readonly onFrames?: (frames: number, upTo_s: number) => void;
-}
-
-/** One segment, from its frames to its row in the table. */
-export interface MeasuredSegment {
-  readonly trace: Trace | null;
-  readonly ringDown: RingDown | null;
-  readonly result: SegmentResult;
 }
 
 /** Decodes one segment, follows the bar through it and fits its ring-down. */

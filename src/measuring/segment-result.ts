@@ -4,7 +4,7 @@ import type { Check, RingDown } from '../oscillation/ring-down.ts';
 import type { DecodeAccount } from '../recording/recording.ts';
 import type { SessionSegment, SessionView } from '../session/session.ts';
 import type { TrackOutcome } from '../tracking/trace.ts';
-import type { MeasuredSegment } from './measure-segment.ts';
+import type { MeasuredSegment } from './measured-segment.ts';
 import type { OpenRecording } from './open-recordings.ts';
 
 const DEG = 180 / Math.PI;

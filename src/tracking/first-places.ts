@@ -5,8 +5,8 @@ import { energyExplained, movingLayer } from './moving-layer.ts';
 import type { Picture } from './picture.ts';
 import { emptyPicture, valueAt } from './picture.ts';
 import { pivotOf } from './pivot.ts';
+import type { Agreement, Placement } from './placement.ts';
 import { choosePoints, thinPoints } from './points.ts';
-import type { Agreement, Placement } from './register.ts';
 import { register } from './register.ts';
 import { searchShift, searchTurn } from './search.ts';
 

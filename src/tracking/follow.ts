@@ -1,9 +1,9 @@
 import { type Brightness, brightnessOf } from './brightness.ts';
 import type { BarModel } from './learn-bar.ts';
 import type { Picture } from './picture.ts';
+import type { Agreement, Placement } from './placement.ts';
 import type { BarPoints } from './points.ts';
 import { thinPoints } from './points.ts';
-import type { Agreement, Placement } from './register.ts';
 import { register } from './register.ts';
 import { disagreement, searchShift, searchTurn } from './search.ts';
 import type { Refusal } from './trace.ts';

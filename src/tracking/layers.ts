@@ -1,6 +1,6 @@
 import type { Picture } from './picture.ts';
 import { emptyPicture, valueAt } from './picture.ts';
-import type { Placement } from './register.ts';
+import type { Placement } from './placement.ts';
 
 /** One picture with the place at which the bar was found in it. */
 export interface PlacedPicture {

@@ -1,4 +1,4 @@
-import type { Placement } from './register.ts';
+import type { Placement } from './placement.ts';
 
 /** The point of the bar's own frame about which it turns, pixels, with the standard uncertainty of each coordinate. */
 export interface Pivot {

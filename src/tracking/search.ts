@@ -1,6 +1,6 @@
 import type { Picture } from './picture.ts';
+import type { Placement } from './placement.ts';
 import type { BarPoints } from './points.ts';
-import type { Placement } from './register.ts';
 
 /** Mean robust disagreement between picture and model at a place: 0 perfect, 1 nothing fits. */
 export function disagreement(
