@@ -11,8 +11,8 @@ const SWEEP_SIGNS = { rising: '▲', falling: '▼' } as const;
 /** One row per segment; a row selects its segment, Enter opens its sheet. */
 export function ResultsTable() {
   const rows = session.value?.segments ?? [];
-  const decimals = commonDecimals(rows.map((s) => s.current_A));
-  const uDecimals = commonDecimals(rows.map((s) => s.u_current_A ?? null));
+  // A current is as exact as its uncertainty says, however few digits were typed.
+  const decimals = commonDecimals(rows.flatMap((s) => [s.current_A, s.u_current_A ?? null]));
   if (rows.length === 0) return <p class="quiet">No segment has been marked yet.</p>;
   return (
     <div class="table-scroll">
@@ -47,7 +47,7 @@ export function ResultsTable() {
         </thead>
         <tbody onKeyDown={walk}>
           {rows.map((s) => (
-            <Row key={s.id} of={s} result={resultOf.value.get(s.id)} decimals={[decimals, uDecimals]} />
+            <Row key={s.id} of={s} result={resultOf.value.get(s.id)} decimals={decimals} />
           ))}
         </tbody>
       </table>
@@ -59,7 +59,7 @@ interface RowProps {
   readonly of: SessionSegment;
   readonly result: SegmentResult | undefined;
   /** Decimals of the currents and of their uncertainties. */
-  readonly decimals: readonly [number, number];
+  readonly decimals: number;
 }
 
 function Row({ of: s, result, decimals }: RowProps) {
@@ -92,8 +92,8 @@ function Row({ of: s, result, decimals }: RowProps) {
         <StandingMark standing={standing} />
       </td>
       <th scope="row">{s.id}</th>
-      <td class="value">{s.current_A === null ? '?' : fixedText(s.current_A, decimals[0])}</td>
-      <td class="u">{s.u_current_A ? `± ${fixedText(s.u_current_A, decimals[1])}` : ''}</td>
+      <td class="value">{s.current_A === null ? '?' : fixedText(s.current_A, decimals)}</td>
+      <td class="u">{s.u_current_A ? `± ${fixedText(s.u_current_A, decimals)}` : ''}</td>
       <td class="sweep">{s.sweep ? <span title={`${s.sweep} step`}>{SWEEP_SIGNS[s.sweep]}</span> : null}</td>
       <td class="value">{f0.value}</td>
       <td class="u">{f0.u}</td>
