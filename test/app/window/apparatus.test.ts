@@ -58,7 +58,7 @@ describe.skipIf(!hasChromium())('fibre and current meter in the apparatus sheet'
     await bench.page.locator('.lanes').focus();
     await bench.press('Control+z');
     await expect.poll(lacking).toEqual([]);
-    expect(await bench.page.locator('.fibre [data-entry="body inertia_kg_m2"]').count()).toBe(0);
+    await expect.poll(() => bench.page.locator('.fibre [data-entry="body inertia_kg_m2"]').count()).toBe(0);
   });
 
   test('runs on several lengths are typed or taken from a segment, which takes its run along when it is deleted', async () => {

@@ -30,8 +30,8 @@ describe.skipIf(!hasChromium())('files dropped on the window', { timeout: 300_00
   test('a recording opens with its facts and its first picture', async () => {
     await here.bench.drop(SAMPLE.recording);
     await here.bench.framed();
-    expect(await here.bench.fact('Picture')).toBe('1280 × 720 px');
-    expect(await here.bench.fact('File')).toContain('mp4');
+    await expect.poll(() => here.bench.fact('Picture')).toBe('1280 × 720 px');
+    await expect.poll(() => here.bench.fact('File')).toContain('mp4');
   });
 
   test('what isn’t saved is asked for before anything replaces it', async () => {
@@ -42,7 +42,7 @@ describe.skipIf(!hasChromium())('files dropped on the window', { timeout: 300_00
     await bench.drop(SAMPLE.session);
     await question.getByRole('button', { name: 'Cancel' }).click();
     await question.waitFor({ state: 'detached' });
-    expect(await bench.entry('region-x')).toBe(left);
+    await expect.poll(() => bench.entry('region-x')).toBe(left);
     await bench.drop(SAMPLE.session);
     await question.getByRole('button', { name: 'Don’t save' }).click();
     await question.waitFor({ state: 'detached' });

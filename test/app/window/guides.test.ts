@@ -71,7 +71,7 @@ describe.skipIf(!hasChromium() || !present)('the elevation of an oblique view', 
   afterAll(() => here?.end());
 
   test('is set by dragging the level circle on the picture', async () => {
-    expect(await elevation()).toBe(45);
+    await expect.poll(() => elevation()).toBe(45);
     const { x, y, width, height } = truth.session.views[0]!.region;
     const [middle, low] = [x + width / 2, y + height / 2];
     const height_px = (deg: number) => (width / 2) * Math.sin((deg * Math.PI) / 180);

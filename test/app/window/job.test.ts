@@ -52,9 +52,9 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', { timeou
   test('a recording opens with its facts and its first picture', async () => {
     await bench.openFile(SAMPLE.recording);
     await bench.page.locator('.facts-list').waitFor();
-    expect(await bench.fact('Picture')).toBe(`${truth.width} × ${truth.height} px`);
-    expect(await bench.fact('Length')).toContain('frames');
-    expect(await bench.fact('Rate')).toContain('it varies');
+    await expect.poll(() => bench.fact('Picture')).toBe(`${truth.width} × ${truth.height} px`);
+    await expect.poll(() => bench.fact('Length')).toContain('frames');
+    await expect.poll(() => bench.fact('Rate')).toContain('it varies');
   });
 
   test('the region is drawn and the bar in it is found at once', async () => {
@@ -92,9 +92,9 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', { timeou
 
   test('what can’t be a current is refused beside its field', async () => {
     await bench.type('current', 'much');
-    expect(await bench.page.locator('.mistake').innerText()).toBe(
-      'Current must be a number in A, such as 0.25 or 0,25.',
-    );
+    await expect
+      .poll(() => bench.page.locator('.mistake').innerText())
+      .toBe('Current must be a number in A, such as 0.25 or 0,25.');
     await bench.press('Escape');
     await expect.poll(() => bench.entry('current')).toBe('0.11');
   });
@@ -162,7 +162,7 @@ describe.skipIf(!hasChromium())('the job in the window, on the sample', { timeou
     bench = await BenchDriver.enter(browser, served.address);
     const withoutState = (names: string[]) => names.map((name) => name.replace(/, [a-z ]+$/, ''));
     expect(withoutState(await bench.segments(3))).toEqual(withoutState(before));
-    expect(await edge().getAttribute('aria-valuenow')).toBe('36');
+    await expect.poll(() => edge().getAttribute('aria-valuenow')).toBe('36');
     await bench.page.getByRole('tab', { name: 'Field', selected: true }).waitFor();
   });
 

@@ -62,7 +62,7 @@ describe.skipIf(!hasChromium())('the window without a pointer', { timeout: 300_0
   test('a segment is marked with B and E, its current typed, its edge moved', async () => {
     await bench.press('b', ...Array<string>(4).fill('Shift+ArrowRight'), 'e');
     const words = async () => (await bench.segments(1))[0];
-    expect(await words()).toContain('no current yet');
+    await expect.poll(() => words()).toContain('no current yet');
     await bench.press('c');
     await expect.poll(() => bench.focused()).toBe('current');
     await bench.page.keyboard.type('\u22120,05');
@@ -136,7 +136,7 @@ describe.skipIf(!hasChromium())('the window without a pointer', { timeout: 300_0
     await (await chooser).setFiles(lone);
     const search = bench.page.getByRole('button', { name: /Find boathouse.mp4/ });
     await search.waitFor();
-    expect(await bench.page.locator('.no-picture').innerText()).toContain('boathouse.mp4');
+    await expect.poll(() => bench.page.locator('.no-picture').innerText()).toContain('boathouse.mp4');
     // Its segments can be seen all the same.
     await bench.segments(11);
     const find = bench.page.waitForEvent('filechooser');

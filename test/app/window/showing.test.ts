@@ -90,7 +90,7 @@ describe.skipIf(!hasChromium())('playing and stopping', { timeout: 300_000 }, ()
     await line.waitFor({ state: 'detached' });
     await bench.page.locator('.notice', { hasText: 'stopped; the' }).waitFor();
     expect(await poses.innerText()).toBe(before);
-    expect(await button('Follow again').isEnabled()).toBe(true);
+    await expect.poll(() => button('Follow again').isEnabled()).toBe(true);
     await bench.page.getByRole('img', { name: 'Angle of the bar against time', exact: true }).waitFor();
 
     await button('Follow again').click();
