@@ -1,7 +1,6 @@
 import type { Estimate } from '../numerics/estimate.ts';
 import { linearLeastSquares } from '../numerics/linear-least-squares.ts';
 import { yorkLine } from '../numerics/york-line.ts';
-import { torqueConstant } from './torque-constant.ts';
 
 /** The same bar at the same place on a fibre of some length. */
 export interface FibreRun {
@@ -58,24 +57,6 @@ export function fibreFromLengths(runs: readonly FibreRun[]): FibreLengthLine | n
     covariance: fit.cofactor[1]! * variance,
     scatter_Hz2: Math.sqrt(variance),
   };
-}
-
-/** Stiffness of the fibre at one length, N m/rad, for a bar of known inertia. */
-export function stiffnessAtLength(line: FibreLengthLine, length_m: number, inertia_kg_m2: Estimate): Estimate {
-  const { slope_Hz2_m: slope } = line;
-  const value = (4 * Math.PI ** 2 * inertia_kg_m2.value * slope.value) / length_m;
-  const relative = Math.hypot(slope.u / slope.value, inertia_kg_m2.u / inertia_kg_m2.value);
-  return { value, u: Math.abs(value) * relative, dof: slope.dof };
-}
-
-/**
- * Stiffness of the fibre, N m/rad, from a bar of known inertia that no field turns: one of brass of the magnet's size and mass, or
- * the magnet itself where coils cancel the field.
- */
-export function stiffnessWithoutField(f0_Hz: Estimate, inertia_kg_m2: Estimate): Estimate {
-  const value = torqueConstant(f0_Hz.value, inertia_kg_m2.value);
-  const relative = Math.hypot((2 * f0_Hz.u) / f0_Hz.value, inertia_kg_m2.u / inertia_kg_m2.value);
-  return { value, u: value * relative, dof: f0_Hz.dof };
 }
 
 function scatter(x: Float64Array, y: Float64Array, intercept: number, slope: number): number | null {

@@ -1,5 +1,4 @@
 import { describe, expect, it } from 'vitest';
-import { stiffnessWithoutField } from '../../src/reduction/fibre-lengths.ts';
 import { reduce } from '../../src/reduction/reduce.ts';
 import type { Point } from '../../src/reduction/reduction.ts';
 import { naturalFrequency } from '../../src/reduction/torque-constant.ts';
@@ -85,15 +84,13 @@ describe('the synthetic sweep', () => {
   it('takes the stiffness from a bar that no field turns', () => {
     // An equal-inertia non-magnetic bar would swing at 0.070446222 Hz.
     expect(naturalFrequency(3.0e-6, 1.53125e-5)).toBeCloseTo(0.070446222, 9);
-    const stiffness = stiffnessWithoutField(
-      { value: 0.070446222, u: 1e-9, dof: 10 },
-      { value: 1.53125e-5, u: 0, dof: Number.POSITIVE_INFINITY },
-    );
     const one = sweep.filter(([current]) => current >= 0);
+    const run_without_field = { f0_Hz: 0.070446222, u_f0_Hz: 1e-9, body: { inertia_kg_m2: 1.53125e-5 } };
     const r = reduce({
-      apparatus: { ...apparatus, fibre: { stiffness_N_m_per_rad: stiffness.value } },
+      apparatus: { ...apparatus, fibre: { run_without_field } },
       points: one.map(([current]) => point(current, Math.sqrt(exact(current)))),
     });
+    expect(Math.abs(r.fibre_stiffness_N_m_per_rad! / 3.0e-6 - 1)).toBeLessThan(1e-7);
     expect(r.model?.fibre).toBe('given');
     expect(Math.abs(r.ambient_T! / 2.0e-5 - 1)).toBeLessThan(1e-8);
   });

@@ -1,5 +1,7 @@
 import { describe, expect, it } from 'vitest';
-import { fibreFromLengths, stiffnessAtLength } from '../../src/reduction/fibre-lengths.ts';
+import { fibreFromLengths } from '../../src/reduction/fibre-lengths.ts';
+import { fibreFindings } from '../../src/reduction/fibre-sources.ts';
+import { inertia } from '../../src/reduction/inertia.ts';
 
 /**
  * 10th Asian Physics Olympiad, experiment 1, official solution of 28 April 2009: time for ten oscillations of a magnet on nylon
@@ -47,10 +49,16 @@ describe('torsion against length (Asian Physics Olympiad 2009)', () => {
     expect(weighted.magnetic_Hz2.value).toBeCloseTo(line.magnetic_Hz2.value, 9);
     // Raised to the scatter, the uncertainties are those of the plain line.
     expect(weighted.magnetic_Hz2.u / line.magnetic_Hz2.u).toBeCloseTo(1, 6);
-    const inertia = { value: 2e-6, u: 2e-8, dof: Number.POSITIVE_INFINITY };
-    const stiffness = stiffnessAtLength(line, 0.1, inertia);
-    expect(stiffness.value).toBeCloseTo(4 * Math.PI ** 2 * 2e-6 * 0.0399571863, 12);
-    expect(stiffness.u / stiffness.value).toBeCloseTo(Math.hypot(line.slope_Hz2_m.u / line.slope_Hz2_m.value, 0.01), 6);
+    const fibre = {
+      length_m: 0.1,
+      runs_at_lengths: runs.map(({ length_m, f0_Hz }) => ({ length_m, f0_Hz: f0_Hz.value })),
+    };
+    const magnet = inertia({ inertia_kg_m2: 2e-6, u_inertia_kg_m2: 2e-8 });
+    const [found] = fibreFindings({ fibre }, [], magnet).sources;
+    const stiffness = found!.stiffness_N_m_per_rad!;
+    expect(stiffness).toBeCloseTo(4 * Math.PI ** 2 * 2e-6 * 0.0399571863, 12);
+    const relative = Math.hypot(line.slope_Hz2_m.u / line.slope_Hz2_m.value, 0.01);
+    expect(found!.u_stiffness_N_m_per_rad! / stiffness).toBeCloseTo(relative, 6);
   });
 
   it('needs two lengths, and three without uncertainties', () => {
