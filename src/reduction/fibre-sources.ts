@@ -8,6 +8,7 @@ import { inertia } from './inertia.ts';
 import { ownUncertainty } from './observations.ts';
 import type { FibreLengths, FibreOrigin, FibreSource, Point } from './reduction.ts';
 import { type BudgetInput, type Derived, derive } from './sensitivity.ts';
+import { torqueConstant } from './torque-constant.ts';
 
 /** The fibre's part of f0² in the sweep, Hz², as everything but the sweep itself has it. */
 export interface FibrePart extends Derived {
@@ -30,8 +31,6 @@ interface Found extends FibrePart {
   /** Its own input, not only what it shares with the magnet, has an uncertainty. */
   readonly stated: boolean;
 }
-
-const four = 4 * Math.PI ** 2;
 
 /** Segments that were made to find the fibre's stiffness: they are no steps of the sweep. */
 export function fibreSegments(apparatus: Apparatus | undefined): ReadonlySet<string> {
@@ -63,7 +62,7 @@ export function fibreFindings(
         source(
           'typed',
           [],
-          joined([stiffness], [magnet], ([k], [j]) => k! / (four * j!)),
+          joined([stiffness], [magnet], ([k], [j]) => k! / torqueConstant(1, j!)),
           0,
         ),
       );
@@ -88,8 +87,9 @@ export function fibreFindings(
       segments: one.segments,
       fibre_Hz2: one.value,
       u_fibre_Hz2: one.u,
-      stiffness_N_m_per_rad: magnet === null ? null : four * magnet.value * one.value,
-      u_stiffness_N_m_per_rad: magnet === null ? null : joined([], [one, magnet], (_, [y, j]) => four * y! * j!).u,
+      stiffness_N_m_per_rad: magnet === null ? null : torqueConstant(one.value, magnet.value),
+      u_stiffness_N_m_per_rad:
+        magnet === null ? null : joined([], [one, magnet], (_, [y, j]) => torqueConstant(y!, j!)).u,
       weight: part?.weights[i] ?? 0,
     })),
     lengths: line === null ? null : lengthsOf(line, runs),

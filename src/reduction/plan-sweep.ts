@@ -4,6 +4,7 @@ import { blankRest, restAt, wrappedLine } from './bar-on-fibre.ts';
 import { coilConstant } from './coil-constant.ts';
 import { inertia } from './inertia.ts';
 import { magneticConstant_N_per_A2 } from './loop-field.ts';
+import { torqueConstant } from './torque-constant.ts';
 
 /** What a user knows or guesses before the bench is set up. */
 export interface SweepPlanInput {
@@ -62,13 +63,13 @@ export function planSweep(input: SweepPlanInput): SweepPlan {
     return { ok: false, lacks };
   }
   const k = coilConstant(apparatus.coil, apparatus.magnet).value;
-  const four = 4 * Math.PI ** 2 * inertia(apparatus.magnet).value;
+  const perHz2 = torqueConstant(1, inertia(apparatus.magnet).value);
   const direction = ((input.misalignment_deg ?? 0) * Math.PI) / 180;
   const bar = {
-    slope: (moment * k) / four,
+    slope: (moment * k) / perHz2,
     along_A: (input.ambient_T * Math.cos(direction)) / k,
     across_A: (input.ambient_T * Math.sin(direction)) / k,
-    fibre_Hz2: (apparatus.fibre?.stiffness_N_m_per_rad ?? 0) / four,
+    fibre_Hz2: (apparatus.fibre?.stiffness_N_m_per_rad ?? 0) / perHz2,
     twist_rad: 0,
   };
   const rest = blankRest();

@@ -1,6 +1,7 @@
 import { wrappedLine } from './bar-on-fibre.ts';
 import type { ResultName } from './reduction.ts';
 import { at } from './sweep-model.ts';
+import { torqueConstant } from './torque-constant.ts';
 
 /** What the results are worked out from. */
 export interface ResultInputs {
@@ -52,8 +53,7 @@ export function results(inputs: ResultInputs): ResultValues {
   const across = p[at.across]!;
   const fibre = p[at.fibre]!;
   const size = horizontal ? Math.hypot(along, across) : Math.abs(along);
-  const four = 4 * Math.PI ** 2;
-  const ratio = k === null ? null : (four * slope) / k;
+  const ratio = k === null ? null : torqueConstant(slope, 1) / k;
   return {
     ambient_T: k === null ? null : size * k,
     apparent_ambient_T: k === null ? null : (size + fibre / slope) * k,
@@ -66,7 +66,7 @@ export function results(inputs: ResultInputs): ResultValues {
     moment_to_inertia: ratio,
     moment_A_m2: ratio === null || j === null ? null : ratio * j,
     inertia_kg_m2: j,
-    fibre_stiffness_N_m_per_rad: inputs.fibre && j !== null ? four * j * fibre : null,
+    fibre_stiffness_N_m_per_rad: inputs.fibre && j !== null ? torqueConstant(fibre, j) : null,
     fibre_share: inputs.fibre && size > 0 ? fibre / (slope * size) : null,
   };
 }

@@ -1,11 +1,7 @@
-const fourPiSquared = 4 * Math.PI ** 2;
-
-/** Restoring torque per radian, N m: 4 π² J f0². For a magnet without fibre this is moment times field. */
-export function torqueConstant(f0_Hz: number, inertia_kg_m2: number): number {
-  return fourPiSquared * inertia_kg_m2 * f0_Hz ** 2;
-}
-
-/** Undamped small-amplitude frequency, Hz, of an inertia held by a torque per radian (N m, not negative). */
-export function naturalFrequency(torque_N_m: number, inertia_kg_m2: number): number {
-  return Math.sqrt(torque_N_m / (fourPiSquared * inertia_kg_m2));
+/**
+ * Restoring torque per radian, N m, of an inertia (kg m²) whose undamped small-amplitude frequency has this square (Hz²):
+ * 4 π² J f0². For a magnet without fibre it is moment times field.
+ */
+export function torqueConstant(f0_squared_Hz2: number, inertia_kg_m2: number): number {
+  return 4 * Math.PI ** 2 * inertia_kg_m2 * f0_squared_Hz2;
 }

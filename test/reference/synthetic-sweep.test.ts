@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { reduce } from '../../src/reduction/reduce.ts';
 import type { Point } from '../../src/reduction/reduction.ts';
-import { naturalFrequency } from '../../src/reduction/torque-constant.ts';
+import { torqueConstant } from '../../src/reduction/torque-constant.ts';
 
 /**
  * A sweep with exact inputs, computed (not published): J = 1.53125e-5 kg m², m = 3.0 A m², B = 20 µT along the coil axis,
@@ -83,7 +83,7 @@ describe('the synthetic sweep', () => {
 
   it('takes the stiffness from a bar that no field turns', () => {
     // An equal-inertia non-magnetic bar would swing at 0.070446222 Hz.
-    expect(naturalFrequency(3.0e-6, 1.53125e-5)).toBeCloseTo(0.070446222, 9);
+    expect(torqueConstant(0.070446222 ** 2, 1.53125e-5) / 3.0e-6).toBeCloseTo(1, 7);
     const one = sweep.filter(([current]) => current >= 0);
     const run_without_field = { f0_Hz: 0.070446222, u_f0_Hz: 1e-9, body: { inertia_kg_m2: 1.53125e-5 } };
     const r = reduce({

@@ -39,7 +39,7 @@ describe('Weber’s observation of 1837', () => {
   });
 
   it('gives moment times field, and with Weber’s M/H his field', () => {
-    const momentTimesField = torqueConstant(1 / (2 * theirs_s), magnet.value);
+    const momentTimesField = torqueConstant((1 / (2 * theirs_s)) ** 2, magnet.value);
     // π² K / t² = 2.758677e7 mm-mg-s = 2.758677e-5 N m.
     expect(Math.abs(momentTimesField / 2.758677e-5 - 1)).toBeLessThan(1e-6);
     // M/H = 8.76584e6 mm³ follows from his result and is no check of its own; it carries MH to his printed H = 1.774 (mm-mg-s).
